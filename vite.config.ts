@@ -1,0 +1,29 @@
+import { sveltekit } from '@sveltejs/kit/vite';
+import tailwindcss from '@tailwindcss/vite';
+import { defineConfig } from 'vitest/config';
+
+export default defineConfig({
+	plugins: [tailwindcss(), sveltekit()],
+	server: { host: '127.0.0.1', port: 5173 },
+	test: {
+		projects: [
+			project('unit', ['src/**/*.test.ts', 'scheduler/**/*.test.ts']),
+			project('reference', ['tests/reference/**/*.test.ts']),
+			project('architecture', ['tests/architecture/**/*.test.ts']),
+			project('integration', ['tests/integration/**/*.test.ts'], {
+				globalSetup: ['tests/support/database-setup.ts'],
+				testTimeout: 60_000,
+				hookTimeout: 120_000
+			}),
+			project('e2e', ['tests/e2e/**/*.test.ts'], {
+				testTimeout: 600_000,
+				hookTimeout: 300_000,
+				fileParallelism: false
+			})
+		]
+	}
+});
+
+function project(name: string, include: string[], more: Record<string, unknown> = {}) {
+	return { extends: true as const, test: { name, include, environment: 'node', ...more } };
+}
