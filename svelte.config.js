@@ -32,7 +32,12 @@ const config = {
 		},
 		typescript: {
 			config(config) {
-				config.include.push('../scheduler/**/*.ts', '../drizzle.config.ts', '../tests/**/*.ts', '../tailwind.config.ts');
+				config.include.push(
+					'../scheduler/**/*.ts',
+					'../drizzle.config.ts',
+					'../tests/**/*.ts',
+					'../tailwind.config.ts'
+				);
 				return config;
 			}
 		}

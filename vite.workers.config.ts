@@ -5,7 +5,9 @@ import { defineConfig } from 'vite';
 const here = (path: string) => fileURLToPath(new URL(path, import.meta.url));
 const entries = ['jobs', 'migrate', 'seed', 'mailbox', 'sign-on', 'replay', 'verify-record'];
 const input: Record<string, string> = Object.fromEntries(
-	entries.map((name) => [name, here(`src/worker/${name}.ts`)]).filter(([, file]) => existsSync(file as string))
+	entries
+		.map((name) => [name, here(`src/worker/${name}.ts`)])
+		.filter(([, file]) => existsSync(file as string))
 );
 if (existsSync(here('scheduler/cli/engine.ts'))) input.engine = here('scheduler/cli/engine.ts');
 
@@ -20,7 +22,11 @@ export default defineConfig({
 		emptyOutDir: true,
 		rollupOptions: {
 			input,
-			output: { format: 'es', entryFileNames: '[name].js', chunkFileNames: 'shared/[name]-[hash].js' }
+			output: {
+				format: 'es',
+				entryFileNames: '[name].js',
+				chunkFileNames: 'shared/[name]-[hash].js'
+			}
 		}
 	}
 });
