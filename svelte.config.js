@@ -11,7 +11,6 @@ const config = {
 	kit: {
 		adapter: adapter({ out: 'build' }),
 		alias: { $scheduler: 'scheduler', '$scheduler/*': 'scheduler/*' },
-		csrf: { checkOrigin: true },
 		csp: {
 			mode: 'auto',
 			directives: {

@@ -1,0 +1,25 @@
+import { isAllowed, type Permission, type Standing } from './permissions';
+
+/** The sections of a study in the order of its life; a role sees only its own. */
+const sections: { path: string; label: string; permission: Permission }[] = [
+	{ path: 'today', label: 'Today', permission: 'today:read' },
+	{ path: 'protocol', label: 'Protocol', permission: 'protocol:read' },
+	{ path: 'power', label: 'Power', permission: 'power:read' },
+	{ path: 'allocation', label: 'Allocation', permission: 'allocation:read' },
+	{ path: 'people', label: 'People', permission: 'participant:list' },
+	{ path: 'calendar', label: 'Calendar', permission: 'booking:read' },
+	{ path: 'messages', label: 'Messages', permission: 'message:read' },
+	{ path: 'visits', label: 'Visits', permission: 'visit:run' },
+	{ path: 'decisions', label: 'Decisions', permission: 'decision:read' },
+	{ path: 'team', label: 'Team', permission: 'role:confirm' },
+	{ path: 'record', label: 'Record', permission: 'record:read' }
+];
+
+export type Section = { href: string; label: string };
+
+/** The sections that somebody of this standing may open, with their addresses. */
+export function findSections(studyId: string, standing: Standing): Section[] {
+	return sections
+		.filter((section) => isAllowed(section.permission, standing))
+		.map(({ path, label }) => ({ href: `/studies/${studyId}/${path}`, label }));
+}

@@ -1,0 +1,14 @@
+import type { QueueName } from './queues';
+import type { WorkContext } from './start-work';
+
+type QueueWork = {
+	queue: QueueName;
+	work(context: WorkContext, data: Record<string, unknown>): Promise<void>;
+};
+type DueWork = { name: string; work(context: WorkContext): Promise<void> };
+
+/** What each queue's jobs do. */
+export const queueWork: QueueWork[] = [];
+
+/** What falls due by the clock, looked at every second. */
+export const dueWork: DueWork[] = [];

@@ -1,0 +1,24 @@
+import { config } from './config';
+import { openDatabase, type DatabaseHandle } from './db/client';
+import { openJobs, type Jobs } from './jobs/open-jobs';
+
+/** What one process holds open: made at first use, closed at the end. */
+let database: DatabaseHandle | undefined;
+let jobs: Promise<Jobs> | undefined;
+
+export function runtimeDatabase(): DatabaseHandle['db'] {
+	database ??= openDatabase(config().DATABASE_URL);
+	return database.db;
+}
+
+export function runtimeJobs(): Promise<Jobs> {
+	jobs ??= openJobs(config().DATABASE_URL);
+	return jobs;
+}
+
+export async function closeRuntime(): Promise<void> {
+	if (jobs) await (await jobs).stop();
+	await database?.end();
+	database = undefined;
+	jobs = undefined;
+}

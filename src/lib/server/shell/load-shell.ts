@@ -1,0 +1,108 @@
+import { and, desc, eq, isNotNull, isNull } from 'drizzle-orm';
+import { loadRoles } from '$lib/server/access/require-permission';
+import { findSections, type Section } from '$lib/server/access/sections';
+import { config } from '$lib/server/config';
+import type { Database } from '$lib/server/db/client';
+import { lab, membership, protocolVersion, study, studyPause } from '$lib/server/db/schema';
+import { formatWithZone } from '$lib/time/format-instant';
+
+export type Shell = {
+	person: { name: string; email: string } | null;
+	lab: { id: string; name: string; zone: string } | null;
+	study: { id: string; workingTitle: string; state: string; versionNumber: number | null } | null;
+	sections: Section[];
+	nowMs: number;
+	nowText: string;
+	zoneText: string;
+	demo: { kind: 'demo' | 'rehearsal'; mailboxUrl: string | null; nowText: string } | null;
+};
+
+/** The masthead's content for whoever is signed in; a study only when they have a part in it. */
+export async function loadShell(
+	locals: App.Locals,
+	params: { studyId?: string; labId?: string }
+): Promise<Shell> {
+	const found = locals.person ? await findPlace(locals.db, locals.person.id, params) : null;
+	const zone = found?.lab.zone ?? 'UTC';
+	const [nowText = '', zoneText = ''] = splitZone(formatWithZone(locals.clock.now(), zone));
+	return {
+		person: locals.person ? { name: locals.person.name, email: locals.person.email } : null,
+		lab: found?.lab ?? null,
+		study: found?.study ?? null,
+		sections: found?.sections ?? [],
+		nowMs: locals.clock.now(),
+		nowText,
+		zoneText,
+		demo:
+			locals.instanceKind === 'own'
+				? null
+				: { kind: locals.instanceKind, mailboxUrl: config().OVALRY_MAILBOX_URL ?? null, nowText }
+	};
+}
+
+function splitZone(text: string): string[] {
+	const cut = text.search(/ [^ ]+ \(UTC/);
+	return cut < 0 ? [text, ''] : [text.slice(0, cut), text.slice(cut + 1)];
+}
+
+type Place = Pick<Shell, 'study' | 'sections'> & { lab: NonNullable<Shell['lab']> };
+
+async function findPlace(
+	db: Database,
+	personId: string,
+	params: { studyId?: string; labId?: string }
+): Promise<Place | null> {
+	const memberships = await db
+		.select({ id: lab.id, name: lab.name, zone: lab.zone, isSteward: membership.isSteward })
+		.from(membership)
+		.innerJoin(lab, eq(lab.id, membership.labId))
+		.where(and(eq(membership.personId, personId), isNull(membership.endedAt)));
+	const own = params.studyId ? await findStudy(db, params.studyId) : null;
+	const labId = own?.labId ?? params.labId;
+	const home = memberships.find((row) => row.id === labId) ?? memberships[0];
+	if (!home) return null;
+	const place = {
+		lab: { id: home.id, name: home.name, zone: home.zone },
+		study: null,
+		sections: []
+	};
+	if (!own || own.labId !== home.id) return place;
+	const roles = await loadRoles(db, { personId, studyId: own.id });
+	const standing = { isMember: true, isSteward: home.isSteward, roles };
+	const sections = findSections(own.id, standing);
+	// A steward without a role here sees that the study exists, not what its protocol says.
+	return sections.length > 0 ? { ...place, study: own.study, sections } : place;
+}
+
+async function findStudy(db: Database, studyId: string) {
+	if (!/^[0-9a-f-]{36}$/i.test(studyId)) return null;
+	const [row] = await db.select().from(study).where(eq(study.id, studyId));
+	if (!row) return null;
+	const [version] = await db
+		.select({ number: protocolVersion.number })
+		.from(protocolVersion)
+		.where(and(eq(protocolVersion.studyId, studyId), isNotNull(protocolVersion.hash)))
+		.orderBy(desc(protocolVersion.number))
+		.limit(1);
+	const [pause] = await db
+		.select({ id: studyPause.id })
+		.from(studyPause)
+		.where(
+			and(
+				eq(studyPause.studyId, studyId),
+				isNull(studyPause.participantId),
+				isNull(studyPause.liftedAt)
+			)
+		);
+	const state = row.closedAt ? 'closed' : pause ? 'paused' : version ? 'running' : 'in design';
+	return {
+		id: row.id,
+		labId: row.labId,
+		study: {
+			id: row.id,
+			workingTitle: row.workingTitle,
+			state,
+			versionNumber: version?.number ?? null
+		}
+	};
+}
