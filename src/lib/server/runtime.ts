@@ -1,10 +1,12 @@
 import { config } from './config';
 import { openDatabase, type DatabaseHandle } from './db/client';
 import { openJobs, type Jobs } from './jobs/open-jobs';
+import { createPeopleKeys, type PeopleKeys } from './keys/people-keys';
 
 /** What one process holds open: made at first use, closed at the end. */
 let database: DatabaseHandle | undefined;
 let jobs: Promise<Jobs> | undefined;
+let keys: PeopleKeys | undefined;
 
 export function runtimeDatabase(): DatabaseHandle['db'] {
 	database ??= openDatabase(config().DATABASE_URL);
@@ -14,6 +16,12 @@ export function runtimeDatabase(): DatabaseHandle['db'] {
 export function runtimeJobs(): Promise<Jobs> {
 	jobs ??= openJobs(config().DATABASE_URL);
 	return jobs;
+}
+
+export function runtimeKeys(): PeopleKeys {
+	const { OVALRY_KEYS: folder, OVALRY_WRAPPING_KEY: wrappingKey } = config();
+	keys ??= createPeopleKeys({ folder, wrappingKey });
+	return keys;
 }
 
 export async function closeRuntime(): Promise<void> {
