@@ -89,18 +89,21 @@ export const protocolContentSchema = z.object({
 		.max(24 * 14),
 	/** Range of hours after allocation from which everybody's earliest start is drawn. */
 	earliestStartHours: z.object({ min: hours, max: hours }),
-	comparison: z.object({
-		outcome: z.string().max(200),
-		armA: z.string(),
-		armB: z.string(),
-		effectD: z.number().min(0.01).max(5),
-		effectSource: z.string().max(500),
-		alpha: z.number().min(0.0001).max(0.5),
-		sides: z.union([z.literal(1), z.literal(2)]),
-		peoplePerArm: z.number().int().min(2).max(5000),
-		peopleLostShare: z.number().min(0).max(0.95),
-		effectLostShare: z.number().min(0).max(0.95)
-	}),
+	/** The primary comparison; null in a study of one arm, which compares nothing. */
+	comparison: z
+		.object({
+			outcome: z.string().max(200),
+			armA: z.string(),
+			armB: z.string(),
+			effectD: z.number().min(0.01).max(5),
+			effectSource: z.string().max(500),
+			alpha: z.number().min(0.0001).max(0.5),
+			sides: z.union([z.literal(1), z.literal(2)]),
+			peoplePerArm: z.number().int().min(2).max(5000),
+			peopleLostShare: z.number().min(0).max(0.95),
+			effectLostShare: z.number().min(0).max(0.95)
+		})
+		.nullable(),
 	limits: z.object({
 		minutesPerVisit: z.number().int().min(1).max(600),
 		trialsPerVisit: z.number().int().min(1).max(20000)
