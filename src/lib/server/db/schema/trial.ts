@@ -19,7 +19,7 @@ export type UploadMapping = {
 	/** File column name -> what it is. */
 	columns: Record<
 		string,
-		| { use: 'participant' | 'visit' | 'block' | 'trial' | 'ignore' }
+		| { use: 'participant' | 'visit' | 'block' | 'trial' | 'date' | 'ignore' }
 		| { use: 'variable'; variable: string; unit: string }
 	>;
 	delimiter: string;

@@ -1,0 +1,34 @@
+import type { ProtocolContent } from '$lib/protocol/protocol-content';
+
+export type HoldReason = { code: string; values: Record<string, number> };
+
+type Choice = {
+	kind: string;
+	code: string;
+	/** Share of the traced zero-error line inside the region, where one was placed. */
+	coverShare: number | null;
+	/** Distance of the nearest way out, in own standard deviations along the line. */
+	reachSd: number | null;
+};
+
+/**
+ * Why a decision may not act by itself; empty when it is inside the guard rails. Kinds `hold` and
+ * `stop` always wait for a person.
+ */
+export function findHoldReasons(
+	choice: Choice,
+	rails: ProtocolContent['guardRails']
+): HoldReason[] {
+	if (choice.kind === 'hold' || choice.kind === 'stop') return [{ code: choice.code, values: {} }];
+	if (choice.kind !== 'region') return [];
+	const reasons: HoldReason[] = [];
+	if (choice.coverShare !== null && choice.coverShare > rails.automaticCoverMax) {
+		const values = { cover: choice.coverShare, automatic: rails.automaticCoverMax };
+		reasons.push({ code: 'COVER-HIGH', values });
+	}
+	if (choice.reachSd !== null && choice.reachSd > rails.automaticReachSdMax) {
+		const values = { reachSd: choice.reachSd, automatic: rails.automaticReachSdMax };
+		reasons.push({ code: 'REACH-FAR', values });
+	}
+	return reasons;
+}
