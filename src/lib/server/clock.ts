@@ -8,3 +8,6 @@ export type Clock = {
 export function createClock(offsetMs: number): Clock {
 	return { now: () => Date.now() + offsetMs };
 }
+
+/** The system's own clock, for what browsers time themselves: sessions and sign-in links. */
+export const systemClock: Clock = createClock(0);

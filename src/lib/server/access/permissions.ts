@@ -5,12 +5,17 @@ import type { StudyRole } from '$lib/server/db/schema';
  *
  * `person`: anybody signed in. `lab`: members of the lab in the address. `study`: people with one of
  * `roles` in the study in the address (any role when `roles` is 'any'); `steward: true` lets the
- * lab's steward in as well.
+ * lab's steward in as well, `waiting: true` those whose role waits for its second person.
  */
 type Rule =
 	| { scope: 'person' }
 	| { scope: 'lab'; stewardOnly: boolean }
-	| { scope: 'study'; roles: readonly StudyRole[] | 'any'; steward?: boolean };
+	| {
+			scope: 'study';
+			roles: readonly StudyRole[] | 'any';
+			steward?: boolean;
+			waiting?: boolean;
+	  };
 
 const study = (...roles: StudyRole[]) => ({ scope: 'study', roles }) as const;
 
@@ -24,8 +29,10 @@ export const permissions = {
 
 	'study:read': { scope: 'study', roles: 'any' },
 	'today:read': { scope: 'study', roles: 'any' },
+	'team:read': { scope: 'study', roles: 'any', steward: true, waiting: true },
 	'role:give': { scope: 'study', roles: [], steward: true },
-	'role:confirm': { scope: 'study', roles: ['investigator'], steward: true },
+	// Whoever is neither giver nor receiver: three people can confirm each other.
+	'role:confirm': { scope: 'study', roles: 'any', steward: true, waiting: true },
 	'study:pause': { scope: 'study', roles: 'any' },
 	'pause:lift': { scope: 'study', roles: 'any' },
 
@@ -65,7 +72,13 @@ export const permissions = {
 
 export type Permission = keyof typeof permissions;
 
-export type Standing = { isMember: boolean; isSteward: boolean; roles: readonly StudyRole[] };
+export type Standing = {
+	isMember: boolean;
+	isSteward: boolean;
+	roles: readonly StudyRole[];
+	/** Roles given but not yet confirmed by a second person. */
+	waitingRoles?: readonly StudyRole[];
+};
 
 /** Whether somebody of this standing in the lab and study may do it. */
 export function isAllowed(permission: Permission, standing: Standing): boolean {
@@ -74,6 +87,7 @@ export function isAllowed(permission: Permission, standing: Standing): boolean {
 	if (!standing.isMember) return false;
 	if (rule.scope === 'lab') return standing.isSteward || !rule.stewardOnly;
 	if (rule.steward && standing.isSteward) return true;
+	if (rule.waiting && (standing.waitingRoles ?? []).length > 0) return true;
 	if (rule.roles === 'any') return standing.roles.length > 0;
 	return rule.roles.some((role) => standing.roles.includes(role));
 }

@@ -1,5 +1,5 @@
 import { error, redirect } from '@sveltejs/kit';
-import { and, desc, eq, isNotNull, isNull, or, notInArray } from 'drizzle-orm';
+import { and, desc, eq, isNotNull, isNull } from 'drizzle-orm';
 import {
 	lab,
 	membership,
@@ -10,7 +10,7 @@ import {
 } from '$lib/server/db/schema';
 import type { Queryable } from '$lib/server/db/client';
 import { isAllowed, permissions, type Permission, type Standing } from './permissions';
-import { findLevels, type Item, type Level } from './visibility';
+import { findLevels, seesArms, type Item, type Level } from './visibility';
 
 declare const granted: unique symbol;
 
@@ -111,35 +111,41 @@ async function findStudyStanding(
 	if (!owner) return null;
 	const standing = await findLabStanding(db, personId, owner.labId);
 	if (!standing) return null;
-	const [roles, variants] = [
-		await loadRoles(db, { personId, studyId }),
-		await loadVariants(db, studyId)
-	];
-	return { ...standing, studyId, roles, variants };
+	const held = await loadHeldRoles(db, { personId, studyId });
+	return { ...standing, studyId, ...held, variants: await loadVariants(db, studyId) };
 }
 
-const armsRoles: StudyRole[] = ['approver', 'unblinded-statistician'];
+type Place = { personId: string; studyId: string };
 
 /** The person's roles in the study that count now: not ended and, where they see arms, confirmed. */
-export async function loadRoles(
+export async function loadRoles(db: Queryable, place: Place): Promise<StudyRole[]> {
+	return (await loadHeldRoles(db, place)).roles;
+}
+
+/** The person's roles in the study: those that count now, and those that wait for a second person. */
+export async function loadHeldRoles(
 	db: Queryable,
-	{ personId, studyId }: { personId: string; studyId: string }
-): Promise<StudyRole[]> {
+	{ personId, studyId }: Place
+): Promise<{ roles: StudyRole[]; waitingRoles: StudyRole[] }> {
 	const rows = await db
-		.select({ role: studyRole.role })
+		.select({ role: studyRole.role, confirmedBy: studyRole.confirmedBy })
 		.from(studyRole)
 		.where(
 			and(
 				eq(studyRole.studyId, studyId),
 				eq(studyRole.personId, personId),
-				isNull(studyRole.endedAt),
-				or(notInArray(studyRole.role, armsRoles), isNotNull(studyRole.confirmedBy))
+				isNull(studyRole.endedAt)
 			)
 		);
-	return rows.map((row) => row.role);
+	const waits = (row: (typeof rows)[number]) => seesArms(row.role) && !row.confirmedBy;
+	return {
+		roles: rows.filter((row) => !waits(row)).map((row) => row.role),
+		waitingRoles: rows.filter(waits).map((row) => row.role)
+	};
 }
 
-async function loadVariants(db: Queryable, studyId: string): Promise<string[]> {
+/** The variants that the latest frozen protocol of a study declares. */
+export async function loadVariants(db: Queryable, studyId: string): Promise<string[]> {
 	const [row] = await db
 		.select({ content: protocolVersion.content })
 		.from(protocolVersion)

@@ -1,74 +1,68 @@
-import { DrizzleAdapter } from '@auth/drizzle-adapter';
-import { SvelteKitAuth, type SvelteKitAuthConfig } from '@auth/sveltekit';
-import type { Adapter } from '@auth/core/adapters';
-import Nodemailer from '@auth/sveltekit/providers/nodemailer';
-import { config, type Settings } from '$lib/server/config';
-import { account, person, session, verificationToken } from '$lib/server/db/schema';
-import { acceptMemberships, findMemberByEmail } from '$lib/server/members/find-member';
-import { runtimeDatabase } from '$lib/server/runtime';
-import { sendSignInLink } from './send-sign-in-link';
+import { Auth, raw, skipCSRFCheck } from '@auth/core';
+import { SvelteKitAuth } from '@auth/sveltekit';
+import type { Handle, RequestEvent } from '@sveltejs/kit';
+import { config } from '$lib/server/config';
+import { createAuthConfig } from './auth-config';
+import { sessionCookieName } from './session-cookie';
 
-const hoursToSeconds = 3600;
-const linkMinutes = 30;
+const callbackPath = '/auth/callback/';
 
-/** Sign-in by a mailed link or by the university's own sign-on. Sessions live in the database. */
-export const { handle, signIn, signOut } = SvelteKitAuth(async () => createAuthConfig(config()));
+const { handle: answerCallback } = SvelteKitAuth(async (event) => configFor(event));
 
-function createAuthConfig(settings: Settings): SvelteKitAuthConfig {
-	const db = runtimeDatabase();
-	return {
-		adapter: DrizzleAdapter(db, {
-			usersTable: person,
-			accountsTable: account,
-			sessionsTable: session,
-			verificationTokensTable: verificationToken
-		} as never) as Adapter,
-		secret: settings.AUTH_SECRET,
-		basePath: '/auth',
-		trustHost: true,
-		session: { strategy: 'database', maxAge: 12 * hoursToSeconds, updateAge: hoursToSeconds },
-		pages: { signIn: '/signin', verifyRequest: '/signin/sent', error: '/signin' },
-		providers: [
-			Nodemailer({
-				server: 'smtp://unused.invalid',
-				from: settings.MAIL_FROM,
-				maxAge: linkMinutes * 60,
-				sendVerificationRequest: ({ identifier, url }) =>
-					sendSignInLink({ db, settings, email: identifier, callbackUrl: url })
-			}),
-			...universityProviders(settings)
-		],
-		callbacks: {
-			// A link is asked for without saying whether the address is known; only members get in.
-			signIn: async ({ user, email }) =>
-				email?.verificationRequest === true ||
-				(user.email ? (await findMemberByEmail(db, user.email)) !== null : false)
-		},
-		events: {
-			signIn: async ({ user }) => {
-				if (user.email) await acceptMemberships(db, user.email);
-			}
-		},
-		logger: {
-			error: (error) => console.error(`sign-in: ${error.name}`),
-			warn: () => {},
-			debug: () => {}
-		}
-	};
+/** Lets Auth.js answer where a link or another institution's sign-on comes back, and nowhere else. */
+export const handle: Handle = async (input) => {
+	const { event, resolve } = input;
+	if (!event.url.pathname.startsWith(callbackPath)) return resolve(event);
+	return keepDeepLink(await answerCallback(input), event.url);
+};
+
+/** A refused sign-in goes to the sign-in page; what the link was for stays in its address. */
+function keepDeepLink(response: Response, asked: URL): Response {
+	const location = response.headers.get('location');
+	const wanted = asked.searchParams.get('callbackUrl');
+	if (!location || !wanted || !URL.canParse(wanted, asked.origin)) return response;
+	const target = new URL(location, asked.origin);
+	const goal = new URL(wanted, asked.origin);
+	if (target.pathname !== '/signin' || goal.origin !== asked.origin) return response;
+	target.searchParams.set('to', goal.pathname + goal.search);
+	const headers = new Headers(response.headers);
+	headers.set('location', target.pathname + target.search);
+	return new Response(null, { status: response.status, headers });
 }
 
-function universityProviders(settings: Settings) {
-	if (!settings.OIDC_ISSUER) return [];
-	return [
-		{
-			id: 'university',
-			name: settings.OIDC_LABEL,
-			type: 'oidc' as const,
-			issuer: settings.OIDC_ISSUER,
-			clientId: settings.OIDC_CLIENT_ID ?? '',
-			clientSecret: settings.OIDC_CLIENT_SECRET ?? '',
-			// The lab chose this issuer itself, so its verified address may join an invited person.
-			allowDangerousEmailAccountLinking: true
-		}
-	];
+type Start = { provider: 'nodemailer' | 'university'; email?: string; to: string };
+
+/**
+ * Begins a sign-in: mails a link, or gives the address of the university's sign-on to go to. The
+ * address of this site comes from the settings, never from what the request says of itself.
+ */
+export async function startSignIn(event: RequestEvent, { provider, email, to }: Start) {
+	const { ORIGIN } = config();
+	const request = new Request(new URL(`/auth/signin/${provider}`, ORIGIN), {
+		method: 'POST',
+		headers: {
+			cookie: event.request.headers.get('cookie') ?? '',
+			'content-type': 'application/x-www-form-urlencoded'
+		},
+		body: new URLSearchParams({
+			...(email ? { email } : {}),
+			callbackUrl: new URL(to, ORIGIN).toString()
+		})
+	});
+	const answer = await Auth(request, { ...configFor(event), raw, skipCSRFCheck });
+	for (const { name, value, options } of answer.cookies ?? []) {
+		event.cookies.set(name, value, { path: '/', ...options });
+	}
+	return answer.redirect ?? '/signin?error=Configuration';
+}
+
+function configFor(event: RequestEvent) {
+	const { db, clock } = event.locals;
+	return createAuthConfig({
+		db,
+		clock,
+		settings: config(),
+		userAgent: event.request.headers.get('user-agent') ?? '',
+		earlierToken: event.cookies.get(sessionCookieName(config().ORIGIN)) ?? null
+	});
 }

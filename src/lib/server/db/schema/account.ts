@@ -1,5 +1,5 @@
 import { sql } from 'drizzle-orm';
-import { integer, pgTable, primaryKey, text, uniqueIndex, uuid } from 'drizzle-orm/pg-core';
+import { index, integer, pgTable, primaryKey, text, uniqueIndex, uuid } from 'drizzle-orm/pg-core';
 import { instant, randomId } from './columns';
 
 /** A member of the team who can sign in. Participants are not persons in this sense. */
@@ -38,13 +38,21 @@ export const account = pgTable(
 );
 
 /** A sign-in session of a browser; deleting the row signs that browser out. */
-export const session = pgTable('session', {
-	sessionToken: text('session_token').primaryKey(),
-	userId: uuid('person_id')
-		.notNull()
-		.references(() => person.id, { onDelete: 'cascade' }),
-	expires: instant('expires').notNull()
-});
+export const session = pgTable(
+	'session',
+	{
+		/** SHA-256 of the token in the browser's cookie, hexadecimal: what is read here opens nothing. */
+		sessionToken: text('session_token').primaryKey(),
+		userId: uuid('person_id')
+			.notNull()
+			.references(() => person.id, { onDelete: 'cascade' }),
+		expires: instant('expires').notNull(),
+		startedAt: instant('started_at').notNull().defaultNow(),
+		/** In words, for the list of one's own sessions: "Firefox on Linux". */
+		browser: text('browser').notNull().default('')
+	},
+	(table) => [index('session_person').on(table.userId)]
+);
 
 /** A sign-in link that was mailed; the token is stored hashed by Auth.js. */
 export const verificationToken = pgTable(
