@@ -1,8 +1,10 @@
+import { regionSchema } from '$scheduler/perturbations/region-settings';
+import { taskRecordSchema } from '$scheduler/tasks/task-record';
 import type { RigLimits } from '$lib/server/db/schema';
 import type { ProtocolContent } from '$lib/protocol/protocol-content';
 
 export type BlockPlanToRun = { kind: string; parameters: Record<string, unknown> };
-export type LimitFault = { code: 'trials' | 'variable' | 'shift'; message: string };
+export type LimitFault = { code: 'trials' | 'variable'; message: string };
 
 type Limits = { protocol: ProtocolContent; rig: RigLimits; visitNumber: number };
 
@@ -25,18 +27,18 @@ export function findLimitFaults(
 			message: `${trials} trials; the visit's limit is ${mostTrials}.`
 		});
 	}
-	return [...faults, ...findVariableFaults(plan, rig)];
+	return [...faults, ...findVariableFaults(plan, { protocol, rig })];
 }
 
 /** The region's centre must be a movement that the rig allows. */
-function findVariableFaults(plan: BlockPlanToRun, rig: RigLimits): LimitFault[] {
-	const region = plan.parameters.region as
-		{ centerByVariable?: Record<string, number> } | undefined;
-	return Object.entries(region?.centerByVariable ?? {}).flatMap(([name, value]) => {
+function findVariableFaults(plan: BlockPlanToRun, { protocol, rig }: Omit<Limits, 'visitNumber'>) {
+	const region = regionSchema.safeParse(plan.parameters.region);
+	if (!region.success) return [];
+	const { variables } = taskRecordSchema.parse(protocol.task);
+	return variables.flatMap(({ name, unit }, index): LimitFault[] => {
+		const value = region.data.centerInUnits[index] ?? 0;
 		const most = rig.variableMax[name];
 		if (most === undefined || Math.abs(value) <= most) return [];
-		return [
-			{ code: 'variable' as const, message: `${name} ${value}; the rig's limit is ${most}.` }
-		];
+		return [{ code: 'variable', message: `${name} ${value} ${unit}; the rig's limit is ${most}.` }];
 	});
 }

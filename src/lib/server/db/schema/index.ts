@@ -8,3 +8,4 @@ export * from './participant';
 export * from './record-event';
 export * from './study';
 export * from './trial';
+export type { InstantRange } from './columns';
