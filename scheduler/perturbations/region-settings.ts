@@ -34,16 +34,16 @@ export type PlacementSettings = z.output<typeof placementSettingsSchema>;
 
 const vector = z.array(z.number());
 
-/** A penalized region {z: (z − center)ᵀ·shape⁻¹·(z − center) ≤ 1} with what it was expected to do. */
-export const regionSchema = z.strictObject({
+/** A penalized region as it was placed, with what it is expected to do. */
+export const placedRegionSchema = z.strictObject({
 	center: vector,
 	shape: z.array(vector),
-	centerInUnits: vector,
 	share,
+	/** Share of trials that hit outside the region if the cloud stays where it is. */
+	stay: z.number().min(0).lt(1),
+	centerInUnits: vector,
 	/** √k²: the next-trial factor of the share. */
 	k: z.number(),
-	/** Share of trials that hit outside the region if the cloud stays where it is. */
-	stay: z.number(),
 	/** Share of trials that hit without a region. */
 	hit0: z.number(),
 	/** Arc length of the exit along and against the tangent; null: none on that side. */
@@ -58,4 +58,13 @@ export const regionSchema = z.strictObject({
 	catch: z.number()
 });
 
+/**
+ * A region {z: (z − center)ᵀ·shape⁻¹·(z − center) ≤ 1} as a rig runs it: where it lies, for which share,
+ * and what leaks out of it; what else was expected of it may be missing, for instance in a yoked arm.
+ */
+export const regionSchema = placedRegionSchema
+	.partial()
+	.required({ center: true, shape: true, share: true, stay: true });
+
+export type PlacedRegion = z.output<typeof placedRegionSchema>;
 export type Region = z.output<typeof regionSchema>;

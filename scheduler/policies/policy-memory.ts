@@ -75,11 +75,15 @@ const activeSchema = z.discriminatedUnion('kind', [
 		blocks: count,
 		trials: count,
 		rule: shiftRuleSchema,
-		state: shiftStateSchema.nullable()
+		state: shiftStateSchema.nullable(),
+		/** The state before a gap was taken into account; null: no block since, or no gap. */
+		beforeGap: shiftStateSchema.nullable().default(null)
 	})
 ]);
 
 const aimName = z.enum(['region', 'shift']);
+
+const recentSchema = z.array(z.strictObject({ kind: z.enum(DECISION_KINDS), why: z.string() }));
 
 /** What the selector remembers about one person between blocks; empty at the start. */
 export const policyMemorySchema = z.strictObject({
@@ -116,11 +120,13 @@ export const policyMemorySchema = z.strictObject({
 	rested: z.boolean().default(false),
 	held: z.string().nullable().default(null),
 	stuckSeen: z.boolean().default(false),
-	recent: z.array(z.strictObject({ kind: z.enum(DECISION_KINDS), why: z.string() })).default([]),
+	recent: recentSchema.default([]),
 	planned: planSchema.nullable().default(null),
 	changed: z.boolean().default(false),
 	lastGates: z.array(z.string()).default([]),
-	whyProbe: z.array(z.string()).default([])
+	whyProbe: z.array(z.string()).default([]),
+	/** recent and noChallenge as the last block left them, so that asking twice counts once. */
+	sinceBlock: z.strictObject({ recent: recentSchema, noChallenge: count }).nullable().default(null)
 });
 
 export type ExecutedKind = (typeof EXECUTED_KINDS)[number];

@@ -21,7 +21,12 @@ const aimsSchema = z
 	.strictObject({
 		region: z.strictObject({ share: z.number().positive(), escapes: count.default(0) }).optional(),
 		/** goal: how far the target is moved, in SD of the person's own result. */
-		shift: z.strictObject({ share: z.number().positive(), goal: z.number() }).optional()
+		shift: z
+			.strictObject({
+				share: z.number().positive(),
+				goal: z.number().refine((goal) => goal !== 0, { error: 'a goal of 0 is no shift' })
+			})
+			.optional()
 	})
 	.refine(({ region, shift }) => region !== undefined || shift !== undefined, {
 		error: 'a protocol needs at least one aim'

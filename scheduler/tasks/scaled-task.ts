@@ -24,8 +24,21 @@ const RESOLUTION_UNKNOWN = 1e-3;
 
 export function createScaledTask(task: Task): ScaledTask {
 	const { variables } = task;
+	const origins = variables.map(({ origin }) => origin);
+	const scales = variables.map(({ scale }) => scale);
 	const toUnits = (z: Vector) =>
-		variables.map(({ origin, scale }, i) => origin + scale * entry(z, i));
+		origins.map((origin, i) => origin + entry(scales, i) * entry(z, i));
+	// One array for all evaluations: a decision needs a million of them.
+	const scratch = [...origins];
+	const fill = (z: Vector) => {
+		for (let i = 0; i < scratch.length; i++)
+			scratch[i] = entry(origins, i) + entry(scales, i) * entry(z, i);
+		return scratch;
+	};
+	const isInRange = (x: number, i: number) => {
+		const variable = variables[i];
+		return variable !== undefined && variable.min <= x && x <= variable.max;
+	};
 	return {
 		variableCount: task.variableCount,
 		resultCount: task.resultCount,
@@ -33,15 +46,10 @@ export function createScaledTask(task: Task): ScaledTask {
 		resolution:
 			Math.min(...variables.map(({ resolution, scale }) => resolution / scale)) ||
 			RESOLUTION_UNKNOWN,
-		evaluate: (z) => task.evaluate(toUnits(z)),
-		gradient: (z) =>
-			task.gradient(toUnits(z)).map((slope, i) => slope * (variables[i]?.scale ?? Number.NaN)),
-		isWithinRanges: (z) =>
-			toUnits(z).every((x, i) => {
-				const variable = variables[i];
-				return variable !== undefined && variable.min <= x && x <= variable.max;
-			}),
+		evaluate: (z) => task.evaluate(fill(z)),
+		gradient: (z) => task.gradient(toUnits(z)).map((slope, i) => slope * entry(scales, i)),
+		isWithinRanges: (z) => fill(z).every(isInRange),
 		toUnits,
-		toScaled: (x) => variables.map(({ origin, scale }, i) => (entry(x, i) - origin) / scale)
+		toScaled: (x) => origins.map((origin, i) => (entry(x, i) - origin) / entry(scales, i))
 	};
 }

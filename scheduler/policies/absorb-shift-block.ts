@@ -1,0 +1,105 @@
+import { entry } from '../linear-algebra/vector.ts';
+import { TargetShift } from '../perturbations/target-shift.ts';
+import type { ActiveBlock } from './policy-memory.ts';
+import type { LastBlock } from './policy-state.ts';
+import type { Turn } from './turn.ts';
+
+type ActiveShift = Extract<ActiveBlock, { kind: 'shift' }>;
+
+/** Levels of the rig and of the replay may differ by rounding only. */
+const LEVEL_TOLERANCE = 1e-9;
+
+/** A block under a moving target: the rule is replayed trial by trial on what the rig returned. */
+export function absorbShiftBlock(turn: Turn, last: LastBlock): void {
+	const { memory, facts, settings, task } = turn;
+	const active = continueShift(turn, last);
+	const hits = last.hits ?? last.errors.map((error) => Math.abs(error) <= task.tolerance);
+	const shift = new TargetShift(active.rule, active.state);
+	const levels = replay(shift, last, hits);
+	const state = shift.dump();
+	const trialCount = last.errors.length;
+	active.state = state;
+	active.trials += trialCount;
+	memory.done.shift += trialCount;
+	memory.lastChallenge = 'shift';
+	if (memory.avoid === 'region') memory.avoid = null;
+	if (trialCount >= settings.blockTrials / 2) {
+		active.blocks += 1;
+		memory.sinceProbe += 1;
+	}
+	const { theta: level, passed, stalls, status } = state;
+	facts.follow = { level, passed, stalls, status, log: shift.log };
+	if (last.levels !== null && !isSameTrace(last.levels, levels)) memory.held = 'TRACE';
+	else judgeShift(turn, { status, blocks: active.blocks, hits });
+}
+
+function continueShift({ memory }: Turn, last: LastBlock): ActiveShift {
+	if (memory.active?.kind === 'shift') return memory.active;
+	const rule = last.rule ?? memory.planned?.parameters.rule;
+	if (!rule)
+		throw new RangeError('a shift block was run, but neither it nor the last plan names a rule');
+	const active: ActiveShift = {
+		...{ kind: 'shift', blocks: 0, trials: 0, rule, state: null, beforeGap: null }
+	};
+	memory.active = active;
+	memory.offer = null;
+	return active;
+}
+
+/** Levels shown at each trial. */
+function replay(shift: TargetShift, last: LastBlock, hits: readonly boolean[]): number[] {
+	const { errors, leftToday } = last;
+	return errors.map((error, i) => {
+		const { level } = shift;
+		const after = errors.length - 1 - i;
+		shift.observe({
+			error,
+			hit: hits[i] ?? null,
+			leftToday: leftToday === null ? null : leftToday + after,
+			isLastOfBlock: after === 0
+		});
+		return level;
+	});
+}
+
+function isSameTrace(returned: readonly number[], replayed: readonly number[]): boolean {
+	return (
+		returned.length === replayed.length &&
+		returned.every((level, i) => Math.abs(level - entry(replayed, i)) <= LEVEL_TOLERANCE)
+	);
+}
+
+function judgeShift(
+	turn: Turn,
+	{ status, blocks, hits }: { status: string; blocks: number; hits: readonly boolean[] }
+): void {
+	const { memory, facts, settings } = turn;
+	if (status === 'done') {
+		memory.done.held = true;
+		endShift(turn, 'SHIFT-HELD');
+	} else if (status === 'frozen' || blocks >= settings.shift.maxBlocks) {
+		memory.done.frozen = true;
+		memory.avoid = 'shift';
+		endShift(turn, 'SHIFT-FROZEN');
+	} else if (isBurden(turn, hits)) {
+		memory.recover = 'BURDEN';
+		facts.ended = 'PAUSED';
+	}
+}
+
+/** The target goes back: washout, and a plain block after it. */
+function endShift({ memory, facts, settings }: Turn, why: string): void {
+	memory.active = null;
+	memory.due.push({ kind: 'washout', why: 'WASHOUT-DUE' });
+	memory.cool = {
+		blocks: settings.cool.blocks + 1,
+		trials: settings.cool.trials + settings.washoutTrials
+	};
+	facts.ended = why;
+}
+
+function isBurden({ settings }: Turn, hits: readonly boolean[]): boolean {
+	const { successWindow, successMin } = settings.limits;
+	if (hits.length < successWindow) return false;
+	return hits.slice(-successWindow).filter(Boolean).length < successWindow * successMin;
+}
