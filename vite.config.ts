@@ -16,6 +16,13 @@ export default defineConfig({
 				hookTimeout: 120_000
 			}),
 			project('e2e', ['tests/e2e/**/*.test.ts'], {
+				globalSetup: ['tests/support/database-setup.ts'],
+				testTimeout: 600_000,
+				hookTimeout: 300_000,
+				fileParallelism: false
+			}),
+			// Long: `npm run test:start`
+			project('start', ['tests/start/**/*.test.ts'], {
 				testTimeout: 600_000,
 				hookTimeout: 300_000,
 				fileParallelism: false

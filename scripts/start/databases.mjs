@@ -1,6 +1,6 @@
 import { existsSync, renameSync, rmSync } from 'node:fs';
 import { join } from 'node:path';
-import { clusterUrl, runSql } from './cluster.mjs';
+import { clusterUrl, runSql } from './run-sql.mjs';
 
 const names = { demo: 'ovalry_demo', rehearsal: 'ovalry_rehearsal', own: 'ovalry_own' };
 

@@ -1,6 +1,7 @@
 import { createHash } from 'node:crypto';
 import { join } from 'node:path';
-import { choosePostgres, createCluster, runsOn, startCluster, stopLeftover } from './cluster.mjs';
+import { choosePostgres } from './choose-postgres.mjs';
+import { createCluster, runsOn, startCluster, stopLeftover } from './cluster.mjs';
 import { provideDatabase } from './databases.mjs';
 import { StartFailure } from './failure.mjs';
 import { findPostgres } from './find-postgres.mjs';

@@ -15,7 +15,7 @@ const seedWords = { demo: '--demo', rehearsal: '--rehearse', own: '--empty' };
 /**
  * Marks the database and, for the demo, fills it.
  *
- * @returns {Promise<{ people?: object[], setupLink?: string }>} what the seed printed
+ * @returns {Promise<{ people?: { role: string, name: string, email: string }[], setupLink?: string }>} what the seed printed
  */
 export async function seed({ variant, folder, env, account, processes }) {
 	const words = [seedWords[variant]];

@@ -1,19 +1,14 @@
 import { existsSync, mkdirSync, readFileSync, writeFileSync } from 'node:fs';
 import { join } from 'node:path';
 import { announcement } from './announce.mjs';
-import {
-	applicationEnvironment,
-	baseEnvironment,
-	ownerEnvironment,
-	standInClient,
-	urlForRole
-} from './environment.mjs';
+import { applicationEnvironment, ownerEnvironment, urlForRole } from './environment.mjs';
 import { makePrivateFolder } from './folders.mjs';
 import { openDatabase } from './open-database.mjs';
 import { openHome } from './open-home.mjs';
 import { portNear, requireFreePort, freePort } from './ports.mjs';
 import { migrate, seed } from './prepare-database.mjs';
 import { prepareCheckout } from './prepare.mjs';
+import { serviceList } from './service-list.mjs';
 import { createServices } from './services.mjs';
 import { readSettings } from './settings.mjs';
 import { stageApplication } from './stage.mjs';
@@ -96,42 +91,16 @@ const mailboxUrl = ({ ports }) => `http://localhost:${ports.mailbox}`;
 
 function listServices(state, database) {
 	const { settings, ports, accounts } = state;
-	const env = environmentFor(state, database);
-	const all = [
-		{ name: 'worker', what: 'worker', script: 'build/workers/jobs.js', env },
-		{ name: 'web', what: 'web server', script: 'build/index.js', env, probe: probeOf(settings) }
-	];
-	if (usesMailbox(settings)) {
-		const mails = makePrivateFolder(join(database.folder, 'mailbox'), accounts.application);
-		const words = ['--smtp-port', ports.smtp, '--http-port', ports.mailbox, '--folder', mails].map(
-			String
-		);
-		all.push(standIn('mailbox', 'mailbox', words, `http://127.0.0.1:${ports.mailbox}/`));
-	}
-	if (database.variant !== 'own') {
-		const people = join(database.folder, 'people.json');
-		const words = [
-			'--port',
-			ports.signOn,
-			'--application',
-			settings.origin,
-			'--client',
-			standInClient
-		].map(String);
-		if (existsSync(people)) words.push('--people', people);
-		const probe = `http://127.0.0.1:${ports.signOn}/.well-known/openid-configuration`;
-		all.push(standIn('sign-on', 'sign-on stand-in', words, probe));
-	}
-	return all;
-}
-
-function standIn(name, what, words, probe) {
-	return { name, what, script: `build/workers/${name}.js`, words, env: baseEnvironment(), probe };
-}
-
-function probeOf({ host, port }) {
-	const address = ['0.0.0.0', '::', 'localhost'].includes(host) ? '127.0.0.1' : host;
-	return `http://${address.includes(':') ? `[${address}]` : address}:${port}/`;
+	return serviceList({
+		...settings,
+		variant: database.variant,
+		ports,
+		env: environmentFor(state, database),
+		people: join(database.folder, 'people.json'),
+		mails: usesMailbox(settings)
+			? makePrivateFolder(join(database.folder, 'mailbox'), accounts.application)
+			: null
+	});
 }
 
 function wordsAbout(state, { variant, said, folder }) {

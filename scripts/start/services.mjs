@@ -56,7 +56,7 @@ export function createServices({ processes, folder, account, logs, say }) {
 	async function startAll(list) {
 		for (const service of list) start(service);
 		await Promise.race([
-			Promise.all(list.map((service) => untilAnswers(service, processes))),
+			Promise.all(list.map((service) => untilAnswers(service, processes, logs))),
 			failed
 		]);
 		for (const service of list) service.isReady = true;
@@ -73,25 +73,35 @@ function ended(service, logFile, code, signal) {
 	);
 }
 
-async function untilAnswers(service, processes) {
+async function untilAnswers(service, processes, logs) {
 	if (!service.probe) return;
-	const until = Date.now() + 60_000;
+	let until = Date.now() + 60_000;
+	let sawFault = false;
 	while (Date.now() < until) {
 		if (processes.isClosing()) throw new Interrupted();
-		if (await answers(service.probe)) return;
+		const status = await statusOf(service.probe);
+		if (status !== null && status < 500) return;
+		// It listens already but fails: a little longer, then its log says why.
+		if (status !== null && !sawFault) until = Date.now() + 5_000;
+		sawFault ||= status !== null;
 		await wait(50);
 	}
-	throw new StartFailure(`The ${service.what} does not answer at ${service.probe}.`, [
-		'Look into its log below the data folder, in logs/.'
-	]);
+	const words = lastLines(readFileSync(join(logs, `${service.name}.log`), 'utf8'), 3);
+	throw new StartFailure(
+		`The ${service.what} ${sawFault ? 'answers with a fault' : 'does not answer'} at ${service.probe}.`,
+		[
+			...words.split('\n').map((line) => `| ${line}`),
+			`The full log: ${join(logs, `${service.name}.log`)}`
+		]
+	);
 }
 
-async function answers(url) {
+async function statusOf(url) {
 	try {
 		const reply = await fetch(url, { redirect: 'manual', signal: AbortSignal.timeout(5_000) });
 		await reply.arrayBuffer();
-		return reply.status < 500;
+		return reply.status;
 	} catch {
-		return false;
+		return null;
 	}
 }

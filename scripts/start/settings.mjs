@@ -75,7 +75,7 @@ export function readSettings(environment, checkout, variant) {
 	return {
 		given,
 		port,
-		host: given.HOST ?? '127.0.0.1',
+		host: demo || !given.HOST ? '127.0.0.1' : given.HOST,
 		origin: given.ORIGIN ?? `http://localhost:${port}`,
 		dataFolder: resolve(checkout, given.OVALRY_DATA ?? '.data'),
 		databaseUrl: given.DATABASE_URL,

@@ -24,7 +24,7 @@ h2 { font-size: 1.05rem; margin: 0 0 0.5rem; font-weight: 650; }
 	display: grid; grid-template-columns: minmax(0, 1fr) 17rem; gap: 2rem;
 	padding: 1.5rem clamp(1rem, 4vw, 3rem) 4rem; max-width: 84rem;
 }
-.sheet { background: var(--sheet); border: 1px solid var(--rule); padding: 1.25rem clamp(1rem, 2.5vw, 2rem); }
+.sheet { align-self: start; background: var(--sheet); border: 1px solid var(--rule); padding: 1.25rem clamp(1rem, 2.5vw, 2rem); }
 .margin { color: var(--muted); font-size: 0.925rem; }
 .margin p, .margin dl { margin: 0 0 1rem; }
 @media (max-width: 52rem) { .desk { grid-template-columns: minmax(0, 1fr); } }
@@ -39,15 +39,16 @@ td { overflow-wrap: anywhere; }
 dt { color: var(--muted); font-size: 0.875rem; }
 dd { margin: 0 0 0.6rem; overflow-wrap: anywhere; }
 section { padding-top: 1.25rem; margin-top: 1.25rem; border-top: 1px solid var(--rule); }
+.sheet > section:first-child { padding-top: 0; margin-top: 0; border-top: 0; }
 pre { white-space: pre-wrap; overflow-wrap: anywhere; font: inherit; margin: 0; }
-iframe { width: 100%; height: 34rem; border: 1px solid var(--rule); background: #ffffff; color-scheme: light; }
+iframe { width: 100%; height: 28rem; border: 1px solid var(--rule); background: #ffffff; color-scheme: light; }
 .mark { color: var(--caution); font-size: 0.875rem; }
 .choices { list-style: none; margin: 0; padding: 0; }
 .choices li { border-bottom: 1px solid var(--rule); }
 .choices a { display: block; padding: 0.65rem 0; text-decoration: none; }
 .choices a:hover strong { text-decoration: underline; }
 .choices span { color: var(--muted); }
-form { display: flex; flex-wrap: wrap; gap: 0.5rem; align-items: end; }
+form { display: flex; flex-wrap: wrap; gap: 0.5rem; align-items: end; margin-bottom: 1rem; }
 label { display: block; flex: 1 1 16rem; }
 input {
 	width: 100%; padding: 0.5rem 0.65rem; font: inherit; color: inherit; background: var(--paper);
