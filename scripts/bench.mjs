@@ -10,7 +10,9 @@ import { createProcessList } from './start/process-list.mjs';
 
 const checkout = fileURLToPath(new URL('..', import.meta.url)).replace(/\/$/, '');
 const folder = join(checkout, 'tests/bench');
-const names = existsSync(folder) ? readdirSync(folder).filter((name) => name.endsWith('.bench.ts')) : [];
+const names = existsSync(folder)
+	? readdirSync(folder).filter((name) => name.endsWith('.bench.ts'))
+	: [];
 
 try {
 	if (names.length === 0) console.log('There are no benchmarks yet (tests/bench/*.bench.ts).');
@@ -24,7 +26,10 @@ async function runBenchmarks() {
 	const processes = createProcessList();
 	await prepareCheckout({ checkout, processes, say: console.log }, { build: 'nothing' });
 	const vitest = join(checkout, 'node_modules/vitest/vitest.mjs');
-	const files = process.argv.slice(2).length > 0 ? process.argv.slice(2) : names.map((name) => join('tests/bench', name));
+	const files =
+		process.argv.slice(2).length > 0
+			? process.argv.slice(2)
+			: names.map((name) => join('tests/bench', name));
 	const words = [vitest, 'bench', '--run', '--project', 'bench', ...files];
 	const child = processes.begin('bench', process.execPath, words, {
 		cwd: checkout,

@@ -116,6 +116,11 @@ function isReady(folder, pid) {
 	return lines?.[0] === String(pid) && lines[7]?.trim() === 'ready';
 }
 
+/** Port of the server that runs on a folder, from its pid file. */
+export function readServerPort(folder) {
+	return Number(readPidFile(folder)?.[3]);
+}
+
 function readPidFile(folder) {
 	try {
 		return readFileSync(join(folder, 'postmaster.pid'), 'utf8').split('\n');

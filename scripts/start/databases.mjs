@@ -1,8 +1,20 @@
+import { createHash } from 'node:crypto';
 import { existsSync, renameSync, rmSync } from 'node:fs';
 import { join } from 'node:path';
 import { clusterUrl, runSql } from './run-sql.mjs';
 
-const names = { demo: 'ovalry_demo', rehearsal: 'ovalry_rehearsal', own: 'ovalry_own' };
+/** One database for each variant, so that they never mix. */
+export const databaseNames = {
+	demo: 'ovalry_demo',
+	rehearsal: 'ovalry_rehearsal',
+	own: 'ovalry_own'
+};
+
+/** Folder of the keys and mails that belong to a database on another server. */
+export function givenFolder(url) {
+	const { host, pathname } = new URL(url);
+	return `database-${createHash('sha256').update(`${host}${pathname}`).digest('hex').slice(0, 8)}`;
+}
 
 /**
  * Brings the database of a variant into being in the own cluster. The demo is migrated and seeded
@@ -14,7 +26,7 @@ const names = { demo: 'ovalry_demo', rehearsal: 'ovalry_rehearsal', own: 'ovalry
  *   migrates and seeds; `folder` is where that variant keeps its keys and mails
  */
 export async function provideDatabase({ variant, fresh, home, cluster }, fill) {
-	const name = names[variant];
+	const name = databaseNames[variant];
 	const urlOf = (database) => clusterUrl({ ...cluster, database });
 	const folder = join(home, variant);
 	await dropLeftover({ name: `${name}_new`, folder: `${folder}.new`, cluster });

@@ -1,8 +1,7 @@
-import { createHash } from 'node:crypto';
 import { join } from 'node:path';
 import { choosePostgres } from './choose-postgres.mjs';
 import { createCluster, runsOn, startCluster, stopLeftover } from './cluster.mjs';
-import { provideDatabase } from './databases.mjs';
+import { givenFolder, provideDatabase } from './databases.mjs';
 import { StartFailure } from './failure.mjs';
 import { findPostgres } from './find-postgres.mjs';
 import { chooseVariant, readInstanceKind } from './instance-kind.mjs';
@@ -60,9 +59,7 @@ async function openGiven(state, fill) {
 	const variant = chooseVariant(await readInstanceKind(ownerUrl), choice.variant);
 	const faults = variant === 'own' ? [] : findDemoFaults(settings.given);
 	if (faults.length > 0) throw badSettings(faults);
-	const { host, pathname } = new URL(ownerUrl);
-	const name = createHash('sha256').update(`${host}${pathname}`).digest('hex').slice(0, 8);
-	const folder = join(home, `database-${name}`);
+	const folder = join(home, givenFolder(ownerUrl));
 	const isNew = (await readInstanceKind(ownerUrl)) === 'blank';
 	const said = await fill({ ownerUrl, folder, isNew, variant });
 	return { ownerUrl, folder, variant, said, ended: new Promise(() => {}) };
