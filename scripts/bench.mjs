@@ -30,7 +30,7 @@ async function runBenchmarks() {
 		process.argv.slice(2).length > 0
 			? process.argv.slice(2)
 			: names.map((name) => join('tests/bench', name));
-	const words = [vitest, 'bench', '--run', '--project', 'bench', ...files];
+	const words = [vitest, 'bench', '--run', '--project', 'unit', ...files];
 	const child = processes.begin('bench', process.execPath, words, {
 		cwd: checkout,
 		stdio: ['ignore', 'inherit', 'inherit']
