@@ -1,5 +1,5 @@
 import type { CandidateStart } from './candidate-starts.ts';
-import { classifyGap, hoursBetween, longestGapMs, shortestGapMs } from './judge-gap.ts';
+import { classifyGap, hoursBetween, listGapSpans } from './judge-gap.ts';
 import { circularMinutes, MINUTE_MS } from './local-date.ts';
 import type { VisitPlan } from './types.ts';
 
@@ -34,44 +34,75 @@ export function startAt({ stages }: SearchSpace, { stage, index }: SearchState):
 	return start;
 }
 
+/** Called with a start of the next stage, the pauses used up to it and what the step costs. */
+export type StepVisitor = (index: number, pausesUsed: number, cost: number) => void;
+
 /**
- * Calls `visit` with every start of the next stage that may follow a state, and what the step costs.
+ * Calls `visit` with every start of the next stage that may follow a state.
  * Two fixed visits follow each other whatever the rules say: that is history.
  */
 export function forEachStep(
 	space: SearchSpace,
 	state: SearchState,
 	anchorMinute: number,
-	visit: (index: number, pausesUsed: number, cost: number) => void
+	visit: StepVisitor
 ): void {
 	const before = space.stages[state.stage];
 	const next = space.stages[state.stage + 1];
 	if (!before || !next) return;
 	const from = startAt(space, state);
 	const rule = next.plan.gapBefore;
-	const isHistory = before.fixed && next.fixed;
-	const { plan } = before;
-	const clearMs = (plan.minutes + plan.cleanupMinutes + next.plan.setupMinutes) * MINUTE_MS;
-	const soonestMs = from.startMs + Math.max(clearMs, rule ? shortestGapMs(rule) : 0);
-	const latestMs = rule && !isHistory ? from.startMs + longestGapMs(rule) : Infinity;
-	const firstIndex = isHistory ? 0 : indexAtOrAfter(next.starts, soonestMs);
-	for (let index = firstIndex; index < next.starts.length; index += 1) {
-		const to = next.starts[index];
-		if (!to || to.startMs > latestMs) return;
-		const gap = rule ? classifyGap(rule, hoursBetween(rule, from, to)) : 'within';
-		const isPause = gap === 'pause';
-		if (!isHistory && rule) {
-			if (gap === 'outside' || (isPause && state.pausesUsed >= rule.allowedPauses.count)) continue;
-			if (to.dayNumber - from.dayNumber < rule.nightsBetween) continue;
-		}
-		const driftMinutes = circularMinutes(to.minute, anchorMinute);
-		const tolerance = space.sameTimeToleranceMinutes;
-		if (tolerance !== null && !next.fixed && driftMinutes > tolerance) continue;
-		const gapCost = rule ? Math.abs(hoursBetween(rule, from, to) - rule.targetHours) : 0;
-		const driftCost = tolerance === null ? 0 : (driftMinutes / 60) * DRIFT_COST_PER_HOUR;
-		const pausesUsed = state.pausesUsed + (isPause ? 1 : 0);
-		visit(index, pausesUsed, (isPause ? PAUSE_COST : gapCost) + driftCost + to.extraCost);
+	if (before.fixed && next.fixed) {
+		return next.starts.forEach((to, index) => {
+			const isPause = rule && classifyGap(rule, hoursBetween(rule, from, to)) === 'pause';
+			visit(index, state.pausesUsed + (isPause ? 1 : 0), 0);
+		});
 	}
+	const canPause = rule !== null && state.pausesUsed < rule.allowedPauses.count;
+	const judge = { space, from, next, state, anchorMinute, canPause, visit };
+	const clearMs =
+		(before.plan.minutes + before.plan.cleanupMinutes + next.plan.setupMinutes) * MINUTE_MS;
+	const spans = rule ? listGapSpans(rule, canPause) : [{ fromMs: 0, toMs: Infinity }];
+	for (const { fromMs, toMs } of spans) {
+		const soonestMs = from.startMs + Math.max(clearMs, fromMs);
+		const endMs = from.startMs + toMs;
+		for (
+			let index = indexAtOrAfter(next.starts, soonestMs);
+			index < next.starts.length;
+			index += 1
+		) {
+			const to = next.starts[index];
+			if (!to || to.startMs >= endMs) break;
+			offerStep(judge, index, to);
+		}
+	}
+}
+
+type StepJudge = {
+	space: SearchSpace;
+	from: SearchStart;
+	next: SearchStage;
+	state: SearchState;
+	anchorMinute: number;
+	canPause: boolean;
+	visit: StepVisitor;
+};
+
+/** Judges one step by the rules that tie two visits, and offers it when it keeps them. */
+function offerStep(judge: StepJudge, index: number, to: SearchStart): void {
+	const { space, from, next, state, anchorMinute, canPause, visit } = judge;
+	const tolerance = space.sameTimeToleranceMinutes;
+	const driftMinutes = tolerance === null ? 0 : circularMinutes(to.minute, anchorMinute);
+	if (tolerance !== null && driftMinutes > tolerance && !next.fixed) return;
+	const stepCost = (driftMinutes / 60) * DRIFT_COST_PER_HOUR + to.extraCost;
+	const rule = next.plan.gapBefore;
+	if (!rule) return visit(index, state.pausesUsed, stepCost);
+	if (to.dayNumber - from.dayNumber < rule.nightsBetween) return;
+	const hours = hoursBetween(rule, from, to);
+	const gap = classifyGap(rule, hours);
+	if (gap === 'within')
+		visit(index, state.pausesUsed, stepCost + Math.abs(hours - rule.targetHours));
+	if (gap === 'pause' && canPause) visit(index, state.pausesUsed + 1, stepCost + PAUSE_COST);
 }
 
 /** Index of the first start at or after an instant. */

@@ -3,7 +3,7 @@ import { SLOT_MS, tryStart } from './candidate-starts.ts';
 import { forEachStep, pauseLimitOf, startAt } from './chain-search.ts';
 import type { SearchSpace, SearchState } from './chain-search.ts';
 import type { FreeTime } from './free-time.ts';
-import { classifyGap, hoursBetween, longestGapMs, shortestGapMs } from './judge-gap.ts';
+import { classifyGap, hoursBetween, listGapSpans } from './judge-gap.ts';
 import { listLeads, walkFixed } from './list-leads.ts';
 import { circularMinutes } from './local-date.ts';
 import type { Interval, VisitPlan } from './types.ts';
@@ -90,17 +90,30 @@ function listSlots(free: FreeTime, plan: VisitPlan, blocked: Blocked): Map<numbe
 		return slots;
 	}
 	const rule = plan.gapBefore;
-	for (const { state, anchorMinute } of before) {
-		const from = startAt(space, state);
-		const fromMs = from.startMs + (rule ? shortestGapMs(rule) : 0);
-		const toMs = rule ? from.startMs + longestGapMs(rule) + 1 : free.horizon.toMs;
-		forEachSlot({ fromMs, toMs }, (startMs) => {
-			const to = { startMs, ...free.labClock.read(startMs) };
-			const gap = rule ? classifyGap(rule, hoursBetween(rule, from, to)) : 'within';
-			if (gap !== 'outside') slots.set(startMs, chainRuleOf(blocked, { state, anchorMinute }, to));
-		});
+	for (const one of pickOnePerStart(before)) {
+		const from = startAt(space, one.state);
+		const spans = rule ? listGapSpans(rule, true) : [{ fromMs: 0, toMs: free.horizon.toMs }];
+		for (const { fromMs, toMs } of spans) {
+			const span = { fromMs: from.startMs + fromMs, toMs: from.startMs + toMs };
+			forEachSlot(span, (startMs) => {
+				if (slots.has(startMs)) return;
+				const to = { startMs, ...free.labClock.read(startMs) };
+				const gap = rule ? classifyGap(rule, hoursBetween(rule, from, to)) : 'within';
+				if (gap !== 'outside') slots.set(startMs, chainRuleOf(blocked, one, to));
+			});
+		}
 	}
 	return slots;
+}
+
+/** Of states with the same start the one with fewest pauses used: it was the freest. */
+function pickOnePerStart(reached: readonly Reached[]): Reached[] {
+	const byStart = new Map<number, Reached>();
+	for (const one of reached) {
+		const known = byStart.get(one.state.index);
+		if (!known || one.state.pausesUsed < known.state.pausesUsed) byStart.set(one.state.index, one);
+	}
+	return [...byStart.values()];
 }
 
 function chainRuleOf(

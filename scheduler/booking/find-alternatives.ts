@@ -47,8 +47,8 @@ const APART_MS = HOUR_MS;
 /**
  * Ways to move one visit that keep every rule, moving later visits along where they must.
  *
- * Shapes: chain and visit in; at most three whole chains out, fewest moved visits first, then
- * nearest to the wanted start; or what stands in the way.
+ * Shapes: chain and visit in; at most three whole chains out, fewest moved visits first, then by
+ * hours from the wanted start and from the target gaps together; or what stands in the way.
  * Units: epoch milliseconds; hours.
  * Method: the exact search of `findChains` with a price on every visit that leaves its place.
  * Source: method sheet "Booking" 7. Accuracy: exact for a grid of quarter hours;

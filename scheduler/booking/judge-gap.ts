@@ -1,5 +1,6 @@
+import { mergeIntervals } from './intervals.ts';
 import { HOUR_MS } from './local-date.ts';
-import type { GapRule } from './types.ts';
+import type { GapRule, Interval } from './types.ts';
 
 /** A start with its local time in the lab's zone. */
 export type LocalStart = { startMs: number; dayNumber: number; minute: number };
@@ -17,16 +18,18 @@ export function classifyGap(rule: GapRule, hours: number): 'within' | 'pause' | 
 	return count > 0 && hours >= minHours && hours <= maxHours ? 'pause' : 'outside';
 }
 
-/** Real time after which no gap can keep the rule; clocks may have moved by up to three hours. */
-export function longestGapMs(rule: GapRule): number {
-	const { count, maxHours } = rule.allowedPauses;
-	const hours = count > 0 ? Math.max(rule.maxHours, maxHours) : rule.maxHours;
-	return (hours + (rule.hoursMean === 'clock' ? 3 : 0)) * HOUR_MS;
-}
-
-/** Real time before which no gap can keep the rule. */
-export function shortestGapMs(rule: GapRule): number {
-	const { count, minHours } = rule.allowedPauses;
-	const hours = count > 0 ? Math.min(rule.minHours, minHours) : rule.minHours;
-	return (hours - (rule.hoursMean === 'clock' ? 3 : 0)) * HOUR_MS;
+/**
+ * Stretches of real time after a start in which its gap can keep the rule, in order. With hours by
+ * the clock they are three hours wider on each side: clocks may have moved.
+ */
+export function listGapSpans(rule: GapRule, canPause: boolean): Interval[] {
+	const slackHours = rule.hoursMean === 'clock' ? 3 : 0;
+	const ranges = canPause ? [rule, rule.allowedPauses] : [rule];
+	return mergeIntervals(
+		ranges.map(({ minHours, maxHours }) => ({
+			fromMs: (minHours - slackHours) * HOUR_MS,
+			// Half open, and the longest gap itself is allowed.
+			toMs: (maxHours + slackHours) * HOUR_MS + 1
+		}))
+	);
 }

@@ -43,6 +43,7 @@ export function getZoneClock(zone: string): ZoneClock {
 function createZoneClock(zone: string): ZoneClock {
 	const readOffset = createOffsetReader(zone);
 	const days = new Map<number, readonly ZoneSegment[]>();
+	let recent: ZoneSegment = { fromMs: 0, toMs: 0, offsetMs: 0 };
 
 	function segmentsOfDay(day: number): readonly ZoneSegment[] {
 		let segments = days.get(day);
@@ -53,9 +54,12 @@ function createZoneClock(zone: string): ZoneClock {
 		return segments;
 	}
 	function offsetMs(instantMs: number): number {
+		// Readings come in runs: most fall into the stretch of the one before.
+		if (instantMs >= recent.fromMs && instantMs < recent.toMs) return recent.offsetMs;
 		const segments = segmentsOfDay(Math.floor(instantMs / DAY_MS));
 		const found = segments.find((segment) => instantMs < segment.toMs);
 		if (!found) throw new Error(`no offset of ${zone} at ${instantMs}`);
+		recent = found;
 		return found.offsetMs;
 	}
 	function read(instantMs: number): LocalTime {

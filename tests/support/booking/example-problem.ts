@@ -1,4 +1,4 @@
-import { DAY_MS, toDayNumber } from '../local-date.ts';
+import { DAY_MS, toDayNumber } from '$scheduler/booking/local-date.ts';
 import type {
 	BookingProblem,
 	ChainPlan,
@@ -8,8 +8,8 @@ import type {
 	VisitPlan,
 	Weekday,
 	WeeklyWindow
-} from '../types.ts';
-import { getZoneClock } from '../zone-clock.ts';
+} from '$scheduler/booking/types.ts';
+import { getZoneClock } from '$scheduler/booking/zone-clock.ts';
 
 /** Monday to Friday, by the lab's clock. */
 export function workingHours(fromHour: number, toHour: number): WeeklyWindow[] {
@@ -54,7 +54,11 @@ export function makeVisit(number: number, part: Partial<VisitPlan> = {}): VisitP
 /** Baseline, six practice days, retention a week later. */
 export function makeStudyPlan(part: Partial<ChainPlan> = {}): ChainPlan {
 	const practice = [2, 3, 4, 5, 6, 7].map((number) => makeVisit(number));
-	const retention = makeVisit(8, { kind: 'retention', label: 'Retention', gapBefore: RETENTION_GAP });
+	const retention = makeVisit(8, {
+		kind: 'retention',
+		label: 'Retention',
+		gapBefore: RETENTION_GAP
+	});
 	return {
 		visits: [makeVisit(1, { kind: 'baseline', label: 'Baseline' }), ...practice, retention],
 		clockWindow: { earliestMinute: 540, latestMinute: 1020, sameTimeToleranceMinutes: 120 },
