@@ -73,28 +73,34 @@ export function computeEscape(options: {
 export interface CatchCheck {
 	readonly expected: number;
 	readonly realised: number;
-	/** 95 % interval of the realised share. */
+	/** Shares that 95 of 100 blocks of this length show when the expectation is right. */
 	readonly low: number;
 	readonly high: number;
-	/** Whether the expectation lies within the interval. */
 	readonly agrees: boolean;
 }
 
-/** Compares the realised catch of a region with the share it was placed for (method sheet D4, log). */
+/**
+ * Compares the realised catch of a region with the share it was placed for.
+ *
+ * Shapes:  executions (trials × d), scaled.
+ * Method:  Wilson interval of the expected share. Source: method sheet D4 (log).
+ * @throws {RangeError} no trial
+ */
 export function checkCatch(region: Region, executions: Matrix): CatchCheck {
-	const isInside = createRegionTest(region);
-	const caught = executions.filter(isInside).length;
 	const expected = region.catch ?? region.share;
+	const realised = executions.filter(createRegionTest(region)).length / executions.length;
+	const { low, high } = computeCatchInterval(expected, executions.length);
+	return { expected, realised, low, high, agrees: low <= realised && realised <= high };
+}
+
+/** 95 % Wilson interval of an expected share over a count of trials. */
+export function computeCatchInterval(
+	expected: number,
+	trialCount: number
+): { low: number; high: number } {
 	const { lower, upper } = computeWilsonInterval({
-		successCount: caught,
-		trialCount: executions.length,
-		level: 0.95
+		successCount: expected * trialCount,
+		...{ trialCount, level: 0.95 }
 	});
-	return {
-		expected,
-		realised: caught / executions.length,
-		low: lower,
-		high: upper,
-		agrees: lower <= expected && expected <= upper
-	};
+	return { low: lower, high: upper };
 }

@@ -1,21 +1,12 @@
 import { placeLeaningRegion, placeRegion } from '../../perturbations/place-region.ts';
 import { preparePlacement, type Cloud } from '../../perturbations/prepare-placement.ts';
-import type { Region } from '../../perturbations/region-settings.ts';
-import type { ShiftRule } from '../../perturbations/shift-rule.ts';
 import { computeCloudGeometry } from '../cloud-geometry.ts';
 import type { CloudGeometry } from '../decision.ts';
 import type { AimName } from '../policy-memory.ts';
 import { createShiftParameters, prepareShift } from '../prepare-shift.ts';
 import type { Answer, Turn } from '../turn.ts';
 import { isAimMet } from './goals.ts';
-import { pickAim } from './pick-aim.ts';
-
-/** What can be worked on now, and why the rest cannot. */
-export interface Openings {
-	region?: Region;
-	shift?: ShiftRule;
-	refused: Partial<Record<AimName, string>>;
-}
+import { pickAim, type Openings } from './pick-aim.ts';
 
 /** A new region or a new shift. */
 export function askChallenge(turn: Turn): Answer | null {

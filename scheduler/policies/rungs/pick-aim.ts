@@ -1,7 +1,15 @@
+import type { PlacedRegion } from '../../perturbations/region-settings.ts';
+import type { ShiftRule } from '../../perturbations/shift-rule.ts';
 import type { CloudGeometry } from '../decision.ts';
 import type { AimName, PolicyMemory } from '../policy-memory.ts';
 import type { PolicySettings } from '../policy-settings.ts';
-import type { Openings } from './challenge.ts';
+
+/** What can be worked on now, and why the rest cannot. */
+export interface Openings {
+	region?: PlacedRegion;
+	shift?: ShiftRule;
+	refused: Partial<Record<AimName, string>>;
+}
 
 export interface AimPick {
 	readonly aim: AimName;
