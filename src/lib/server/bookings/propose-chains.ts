@@ -1,0 +1,38 @@
+import type { Grant } from '$lib/server/access/require-permission';
+import type { Clock } from '$lib/server/clock';
+import type { Queryable } from '$lib/server/db/client';
+import type { ChainObstacle } from '$scheduler/booking/explain-no-chain.ts';
+import { findChains } from '$scheduler/booking/find-chains.ts';
+import type { ProposedChain } from '$scheduler/booking/propose-chain.ts';
+import { loadPersonPlan, type PersonPlan } from './load-person-plan';
+
+export type Proposals =
+	| { ok: true; plan: PersonPlan; chains: ProposedChain[] }
+	| { ok: false; reason: 'not-found' | 'nothing-to-book' }
+	| { ok: false; reason: 'no-chain'; plan: PersonPlan; obstacle: ChainObstacle };
+
+const horizonMs = 12 * 7 * 24 * 3_600_000;
+
+/**
+ * The earliest chains of all visits that have no place yet, each keeping every rule around the
+ * visits that have one. Nothing is held: a proposal can be taken by somebody else until it is booked.
+ */
+export async function proposeChains(
+	db: Queryable,
+	clock: Clock,
+	grant: Grant<'booking:read' | 'booking:change'>,
+	{ participantId, chainCount = 3 }: { participantId: string; chainCount?: number }
+): Promise<Proposals> {
+	const plan = await loadPersonPlan(db, clock, grant, participantId);
+	if (!plan) return { ok: false, reason: 'not-found' };
+	const { problem, chain } = plan;
+	if (chain.length === problem.plan.visits.length) return { ok: false, reason: 'nothing-to-book' };
+	const found = findChains({
+		problem,
+		fixed: chain.map((visit) => ({ ...visit, fixed: true })),
+		horizonEndMs: clock.now() + horizonMs,
+		chainCount
+	});
+	if (!found.ok) return { ...found, plan };
+	return { ok: true, plan, chains: found.chains };
+}
