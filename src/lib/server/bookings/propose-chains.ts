@@ -12,6 +12,8 @@ export type Proposals =
 	| { ok: false; reason: 'no-chain'; plan: PersonPlan; obstacle: ChainObstacle };
 
 const horizonMs = 12 * 7 * 24 * 3_600_000;
+/** Nobody is asked to come sooner than this. */
+export const noticeMs = 2 * 3_600_000;
 
 /**
  * The earliest chains of all visits that have no place yet, each keeping every rule around the
@@ -28,7 +30,7 @@ export async function proposeChains(
 	const { problem, chain } = plan;
 	if (chain.length === problem.plan.visits.length) return { ok: false, reason: 'nothing-to-book' };
 	const found = findChains({
-		problem,
+		problem: { ...problem, nowMs: clock.now() + noticeMs },
 		fixed: chain.map((visit) => ({ ...visit, fixed: true })),
 		horizonEndMs: clock.now() + horizonMs,
 		chainCount
