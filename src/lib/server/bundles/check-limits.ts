@@ -36,7 +36,7 @@ function findVariableFaults(plan: BlockPlanToRun, { protocol, rig }: Omit<Limits
 	if (!region.success) return [];
 	const { variables } = taskRecordSchema.parse(protocol.task);
 	return variables.flatMap(({ name, unit }, index): LimitFault[] => {
-		const value = region.data.centerInUnits[index] ?? 0;
+		const value = region.data.centerInUnits?.[index] ?? 0;
 		const most = rig.variableMax[name];
 		if (most === undefined || Math.abs(value) <= most) return [];
 		return [{ code: 'variable', message: `${name} ${value} ${unit}; the rig's limit is ${most}.` }];

@@ -3,6 +3,7 @@ import type { JWK } from 'jose';
 import type { Clock } from '$lib/server/clock';
 import type { Database, Transaction } from '$lib/server/db/client';
 import {
+	block,
 	booking,
 	bundle,
 	decision,
@@ -41,6 +42,16 @@ async function findDue(db: Database, clock: Clock): Promise<Due[]> {
 		.select({ one: sql`1` })
 		.from(bundle)
 		.where(and(eq(bundle.decisionId, decision.id), isNull(bundle.revokedAt)));
+	const scored = db
+		.select({ one: sql`1` })
+		.from(block)
+		.where(
+			and(
+				eq(block.participantId, decision.participantId),
+				eq(block.visitNumber, decision.visitNumber),
+				eq(block.blockNumber, decision.blockNumber)
+			)
+		);
 	return db
 		.select({ decisionId: decision.id, studyId: decision.studyId })
 		.from(decision)
@@ -59,7 +70,8 @@ async function findDue(db: Database, clock: Clock): Promise<Due[]> {
 				inArray(decision.state, ['automatic', 'settled', 'fallback']),
 				sql`${rig.publicKey} is not null`,
 				sql`upper(${booking.occupied}) > ${new Date(clock.now()).toISOString()}`,
-				notExists(live)
+				notExists(live),
+				notExists(scored)
 			)
 		);
 }

@@ -1,4 +1,4 @@
-import { regionSchema } from '$scheduler/perturbations/region-settings';
+import { placedRegionSchema } from '$scheduler/perturbations/region-settings';
 import type { SettleInput } from '$lib/decisions/settle-input';
 import type { BlockPlanned } from './effective-block';
 
@@ -9,7 +9,7 @@ export type Changed = { ok: true; block: BlockPlanned } | { ok: false; detail: s
  * way out that was found stays open. Axes shrink about the same centre.
  */
 export function changeBlock(block: BlockPlanned, input: SettleInput): Changed {
-	const region = regionSchema.safeParse(block.parameters.region);
+	const region = placedRegionSchema.safeParse(block.parameters.region);
 	if (block.kind !== 'region' || !region.success) {
 		return {
 			ok: false,

@@ -9,22 +9,11 @@ import {
 	uniqueIndex,
 	uuid
 } from 'drizzle-orm/pg-core';
+import type { Mapping } from '$lib/intake/column-use';
 import { person } from './account';
 import { bytes, instant, randomId } from './columns';
 import { participant } from './participant';
 import { study } from './study';
-
-/** How a file's columns became trials: what was read as what, and what was ignored. */
-export type UploadMapping = {
-	/** File column name -> what it is. */
-	columns: Record<
-		string,
-		| { use: 'participant' | 'visit' | 'block' | 'trial' | 'date' | 'ignore' }
-		| { use: 'variable'; variable: string; unit: string }
-	>;
-	delimiter: string;
-	decimalSign: '.' | ',';
-};
 
 /** A trial file as it came, write-once. */
 export const upload = pgTable(
@@ -37,7 +26,7 @@ export const upload = pgTable(
 		fileName: text('file_name').notNull(),
 		sha256: text('sha256').notNull(),
 		content: bytes('content').notNull(),
-		mapping: jsonb('mapping').$type<UploadMapping>().notNull(),
+		mapping: jsonb('mapping').$type<Mapping>().notNull(),
 		rowCount: integer('row_count').notNull(),
 		trialCount: integer('trial_count').notNull(),
 		uploadedBy: uuid('uploaded_by')

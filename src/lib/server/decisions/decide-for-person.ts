@@ -1,0 +1,184 @@
+import { eq } from 'drizzle-orm';
+import { decideNextBlock } from '$scheduler/policies/decide';
+import type { DecisionRecord } from '$scheduler/policies/decision-record';
+import type { Clock } from '$lib/server/clock';
+import type { Database, Transaction } from '$lib/server/db/client';
+import { decision } from '$lib/server/db/schema';
+import { canonicalJson, sha256Hex } from '$lib/server/record/canonical-json';
+import { recordEvent } from '$lib/server/record/record-event';
+import { buildInputs } from './build-inputs';
+import { findHoldReasons, type HoldReason } from './find-hold-reasons';
+import { findNextSlot, slotKey, type Slot } from './find-next-slot';
+import { findInheritedHold } from './find-inherited-hold';
+import { loadPerson, type PersonOnRecord } from './load-person';
+import { passBaseline } from './pass-baseline';
+import { readStoredTrials } from './read-stored-trials';
+import { applyFallback } from './settle-decision';
+import { currentVersions, hashPolicy } from './versions';
+
+/** Blocks inside a visit follow the trials in this fixed time, in every arm. */
+export const insideVisitReadyMs = 5_000;
+
+export type DecideServices = {
+	clock: Clock;
+	/** Releases the next entry of the sealed sequence for one person whose baseline passed. */
+	allocate: (tx: Transaction, participantId: string) => Promise<boolean>;
+};
+
+/**
+ * Decides everything that can be decided for one participant now, the same way in every arm: after
+ * baseline data passed the person is allocated, and each place whose data are in, or whose ready
+ * hour has come, gets its decision.
+ *
+ * @returns how many decisions were made
+ */
+export async function decideForPerson(
+	db: Database,
+	services: DecideServices,
+	participantId: string
+): Promise<number> {
+	let count = 0;
+	while (await db.transaction((tx) => decideOne(tx, services, participantId))) count += 1;
+	return count;
+}
+
+async function decideOne(
+	tx: Transaction,
+	services: DecideServices,
+	participantId: string
+): Promise<boolean> {
+	const { clock } = services;
+	const locked = await loadPerson(tx, participantId, { lock: true });
+	if (!locked || locked.state === 'withdrawn') return false;
+	const passed = await passBaseline(tx, services, locked);
+	const person = passed ? await loadPerson(tx, participantId, { lock: false }) : locked;
+	if (!person) return false;
+	const slot = findNextSlot(person.slots, describeProgress(person, clock));
+	if (!slot) return false;
+	await decideSlot(tx, services, { person, slot });
+	return true;
+}
+
+function describeProgress(person: PersonOnRecord, clock: Clock) {
+	const isDue = (visitNumber: number) => {
+		const readyAt = findVisitReadyAt(person, visitNumber);
+		return readyAt !== null && readyAt <= clock.now();
+	};
+	const later = [...person.visits.keys()].filter(isDue);
+	return {
+		decided: new Set(person.decisions.map(slotKey)),
+		stored: new Set(person.blocks.keys()),
+		isDue,
+		isOver: (visitNumber: number) => later.some((number) => number > visitNumber),
+		isAllocated: person.arm !== null
+	};
+}
+
+/** The hour at which a visit's first block becomes ready: the protocol's lead before its start. */
+export function findVisitReadyAt(person: PersonOnRecord, visitNumber: number): number | null {
+	const visit = person.visits.get(visitNumber);
+	if (!visit) return null;
+	return visit.during.startsAt.getTime() - person.content.readyLeadHours * 3_600_000;
+}
+
+type Place = { person: PersonOnRecord; slot: Slot };
+
+async function decideSlot(tx: Transaction, services: DecideServices, { person, slot }: Place) {
+	const { clock } = services;
+	const inputs = await buildInputs(person, slot, (blockId) => readStoredTrials(tx, blockId));
+	const policyHash = hashPolicy(person.content);
+	const record = decideNextBlock({
+		...inputs,
+		versions: currentVersions(policyHash),
+		digest: sha256Hex
+	});
+	const holdReasons = findHold(person, record);
+	const [row] = await tx
+		.insert(decision)
+		.values({
+			studyId: person.studyId,
+			participantId: person.id,
+			visitNumber: slot.visitNumber,
+			blockNumber: slot.blockNumber,
+			protocolHash: person.protocolHash,
+			policyHash,
+			...splitRecord(record),
+			holdReasons,
+			state: holdReasons.length > 0 ? 'held' : 'automatic',
+			decidedAt: new Date(clock.now()),
+			readyAt: findReadyAt({ person, slot }, clock)
+		})
+		.returning({ id: decision.id });
+	if (!row) throw new Error('decision was not stored');
+	await recordEvent(
+		tx,
+		clock,
+		{ kind: 'system' },
+		{
+			kind: 'decision-made',
+			item: 'decision',
+			studyId: person.studyId,
+			participantId: person.id,
+			body: { decisionId: row.id, inputsDigest: record.inputsDigest, policyHash }
+		}
+	);
+	if (holdReasons.length > 0 && slot.indexInVisit > 0) {
+		const reason = 'Inside a visit nobody is waited for.';
+		await applyFallback(tx, clock, { studyId: person.studyId, decisionId: row.id, reason });
+	}
+}
+
+function splitRecord(record: DecisionRecord) {
+	const { inputs, ...output } = record;
+	return {
+		engineVersion: record.engineVersion,
+		runtimeVersion: record.runtimeVersion,
+		inputsDigest: record.inputsDigest,
+		inputs: canonicalJson(inputs),
+		output: canonicalJson(output),
+		kind: record.kind,
+		code: record.reasons[0]?.code ?? 'NONE'
+	};
+}
+
+/** Why a person must look first; nothing for rules that only repeat what already ran. */
+function findHold(person: PersonOnRecord, record: DecisionRecord): HoldReason[] {
+	const code = record.reasons[0]?.code ?? 'NONE';
+	if (code === 'CONTINUE-REGION') return [];
+	if (code === 'UNCHANGED') return findInheritedHold(person, record);
+	const weighed = [...(record.facts.place ?? []), ...(record.facts.lean ?? [])];
+	const chosen = weighed.filter((rung) => rung.accepted).at(-1);
+	const choice = {
+		kind: record.kind,
+		code,
+		coverShare: chosen?.cover ?? null,
+		reachSd: record.parameters.region?.reachSd ?? null
+	};
+	return findHoldReasons(choice, person.content.guardRails);
+}
+
+/** Before a visit: its ready hour. Inside a visit: a fixed few seconds after the trials are in. */
+function findReadyAt({ person, slot }: Place, clock: Clock): Date | null {
+	const soon = clock.now() + insideVisitReadyMs;
+	if (slot.indexInVisit > 0) return new Date(soon);
+	const readyAt = findVisitReadyAt(person, slot.visitNumber);
+	return readyAt === null ? null : new Date(readyAt);
+}
+
+/** Moves the ready hours of decisions whose visit was booked or moved since. */
+export async function alignReadyHours(db: Database, participantId: string): Promise<void> {
+	await db.transaction(async (tx) => {
+		const person = await loadPerson(tx, participantId, { lock: true });
+		if (!person) return;
+		for (const found of person.decisions) {
+			const slot = person.slots.find((other) => slotKey(other) === slotKey(found));
+			if (!slot || slot.indexInVisit > 0 || person.blocks.has(slotKey(found))) continue;
+			const readyAt = findVisitReadyAt(person, found.visitNumber);
+			if (readyAt === (found.readyAt?.getTime() ?? null)) continue;
+			await tx
+				.update(decision)
+				.set({ readyAt: readyAt === null ? null : new Date(readyAt) })
+				.where(eq(decision.id, found.id));
+		}
+	});
+}

@@ -1,0 +1,42 @@
+import { TargetShift } from '$scheduler/perturbations/target-shift';
+import { shiftRuleSchema } from '$scheduler/perturbations/shift-rule';
+import { policyMemorySchema } from '$scheduler/policies/policy-memory';
+import type { PolicyStateInput } from '$scheduler/policies/policy-state';
+import { createTask } from '$scheduler/tasks/create-task';
+import { taskRecordSchema } from '$scheduler/tasks/task-record';
+import type { BlockPlanned } from './effective-block';
+import type { PersonOnRecord, StoredDecision } from './load-person';
+
+type ShiftTrials = { trials: number[][]; before: StoredDecision | null; planned: BlockPlanned };
+
+/**
+ * A block under a moving target, from its executions: the rule is deterministic, so the level at
+ * each trial, and with it the error against the moved target, follow from the results themselves.
+ */
+export function replayShiftTrials(
+	person: PersonOnRecord,
+	{ trials, before, planned }: ShiftTrials
+): NonNullable<PolicyStateInput['last']> {
+	const task = createTask(taskRecordSchema.parse(person.content.task));
+	const rule = shiftRuleSchema.parse(planned.parameters.rule);
+	const shift = new TargetShift(rule, findRunningState(before));
+	const errors: number[] = [];
+	const hits: boolean[] = [];
+	for (const [index, execution] of trials.entries()) {
+		const error = shift.level - task.evaluate(execution);
+		const hit = Math.abs(error) <= task.tolerance;
+		errors.push(error);
+		hits.push(hit);
+		const isLastOfBlock = index === trials.length - 1;
+		shift.observe({ error, hit, leftToday: null, isLastOfBlock });
+	}
+	return { kind: 'shift', trials, errors, hits, rule };
+}
+
+/** Where the running shift stood when the block began; null for its first block. */
+function findRunningState(before: StoredDecision | null) {
+	if (!before) return null;
+	const output = JSON.parse(before.output) as { memory: unknown };
+	const memory = policyMemorySchema.parse(output.memory);
+	return memory.active?.kind === 'shift' ? memory.active.state : null;
+}
