@@ -1,5 +1,6 @@
 import { config } from './config';
 import { openDatabase, type DatabaseHandle } from './db/client';
+import { mailSettingOf, type MailSetting } from './invitations/mail-setting';
 import { openJobs, type Jobs } from './jobs/open-jobs';
 import { createPeopleKeys, type PeopleKeys } from './keys/people-keys';
 
@@ -22,6 +23,11 @@ export function runtimeKeys(): PeopleKeys {
 	const { OVALRY_KEYS: folder, OVALRY_WRAPPING_KEY: wrappingKey } = config();
 	keys ??= createPeopleKeys({ folder, wrappingKey });
 	return keys;
+}
+
+/** What writing to participants needs. */
+export function runtimeMail(): MailSetting {
+	return mailSettingOf(config(), runtimeKeys());
 }
 
 export async function closeRuntime(): Promise<void> {

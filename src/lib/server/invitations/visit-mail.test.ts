@@ -6,7 +6,7 @@ import { writeVisitMail, type VisitMailKind } from './visit-mail';
 import { writeWithdrawalMail } from './withdrawal-mail';
 
 const HOUR_MS = 3_600_000;
-const kinds: VisitMailKind[] = ['invitation', 'moved', 'cancelled'];
+const kinds: VisitMailKind[] = ['invitation', 'moved', 'elsewhere', 'cancelled'];
 const text = (facts = visitMailFacts()) => renderMailText(writeVisitMail(facts).content);
 
 describe('invitation', () => {
@@ -72,6 +72,18 @@ describe('moved visit', () => {
 		expect(body).toContain('New time: Mon 15 March 2027, 10:00 to 11:15 New York (UTC-4)');
 		expect(mail.subject).toBe('Visit moved: Mon 15 Mar, 10:00 (New York time)');
 		expect(mail.event.description).not.toContain('Old time');
+	});
+});
+
+describe('visit at another place', () => {
+	it('says the old and the new place and that the time stays', () => {
+		const mail = writeVisitMail(visitMailFacts({ kind: 'elsewhere', oldPlace: 'Room 1.01' }));
+		const body = renderMailText(mail.content);
+		expect(body).toContain('Old place: Room 1.01');
+		expect(body).toContain('New place: Room 2.14, Tidewater Movement Lab');
+		expect(body).toContain('The time stays');
+		expect(mail.subject).toBe('Visit at another place: Mon 15 Mar, 10:00 (New York time)');
+		expect(mail.event.description).not.toContain('Room 1.01');
 	});
 });
 

@@ -1,8 +1,8 @@
 import type { MailBlock, MailContent, MailFact } from '$lib/server/mail/mail-content';
 import { subjectTime, visitTimeText, type VisitTime } from './visit-time';
-import { wordsFor, type InvitationWords } from './words';
+import { wordsFor, type InvitationWords, type VisitMailKind } from './words';
 
-export type VisitMailKind = 'invitation' | 'moved' | 'cancelled';
+export type { VisitMailKind };
 
 /** What a mail about one visit tells. Nothing here knows the study's design. */
 export interface VisitMailFacts {
@@ -10,8 +10,10 @@ export interface VisitMailFacts {
 	language: string;
 	publicTitle: string;
 	time: VisitTime;
-	/** Where the visit was before; needed when it moved. */
+	/** When it was before; given when the time changed. */
 	oldTime?: VisitTime | undefined;
+	/** Where it took place before; given when the place changed. */
+	oldPlace?: string | undefined;
 	participant: { name: string; zone: string };
 	lab: { name: string; zone: string; address: string; phone: string; email: string };
 	room: { name: string; directions: string };
@@ -31,16 +33,16 @@ export interface VisitMailText {
 /** The words of a mail about one visit, and of its event in the calendar. */
 export function writeVisitMail(facts: VisitMailFacts): VisitMailText {
 	const words = wordsFor(facts.language);
-	const { publicTitle, participant, lab } = facts;
+	const { kind, time, publicTitle, participant, lab } = facts;
 	return {
-		subject: subjectOf(facts, words),
+		subject: words.subject[kind](subjectTime(time.startMs, participant.zone, words)),
 		content: {
 			language: words.language,
 			direction: words.direction,
-			title: titleOf(facts, words),
+			title: words.title[kind](publicTitle),
 			blocks: [
 				{ kind: 'paragraph', text: words.greeting(participant.name) },
-				{ kind: 'paragraph', text: leadOf(facts, words) },
+				{ kind: 'paragraph', text: words.lead[kind](lab.name) },
 				...bodyOf(facts, words)
 			],
 			footer: words.footer(lab.name, publicTitle)
@@ -73,8 +75,7 @@ function timeRows(facts: VisitMailFacts, words: InvitationWords): MailFact[] {
 	const old: MailFact[] = oldTime
 		? [{ label: words.labelOldTime(), value: inZone(oldTime, participant.zone) }]
 		: [];
-	const main =
-		kind === 'cancelled' ? words.labelWasAt() : kind === 'moved' ? words.labelNewTime() : '';
+	const main = kind === 'cancelled' ? words.labelWasAt() : oldTime ? words.labelNewTime() : '';
 	if (participant.zone === lab.zone) {
 		return [...old, { label: main || words.labelWhen(), value: inZone(time, lab.zone) }];
 	}
@@ -86,8 +87,10 @@ function timeRows(facts: VisitMailFacts, words: InvitationWords): MailFact[] {
 }
 
 function placeRows(facts: VisitMailFacts, words: InvitationWords): MailFact[] {
+	const { oldPlace } = facts;
 	const rows: MailFact[] = [
-		{ label: words.labelWhere(), value: placeOf(facts) },
+		{ label: words.labelOldPlace(), value: oldPlace ?? '' },
+		{ label: oldPlace ? words.labelNewPlace() : words.labelWhere(), value: placeOf(facts) },
 		{ label: words.labelHowToFind(), value: facts.room.directions },
 		{ label: words.labelPrepare(), value: facts.preparation ?? '' }
 	];
@@ -115,34 +118,23 @@ function stopBlocks({ lab }: VisitMailFacts, words: InvitationWords): MailBlock[
 	];
 }
 
-function placeOf({ lab, room }: VisitMailFacts): string {
+/** Room, laboratory and address in one line. */
+export function placeOf({
+	lab,
+	room
+}: {
+	lab: { name: string; address: string };
+	room: { name: string };
+}): string {
 	return [room.name, lab.name, lab.address].filter((part) => part.trim() !== '').join(', ');
 }
 
 function descriptionOf(facts: VisitMailFacts, words: InvitationWords): string {
 	const rows = [
 		...timeRows({ ...facts, oldTime: undefined }, words),
-		...placeRows(facts, words).slice(1),
+		...placeRows({ ...facts, oldPlace: undefined }, words).slice(1),
 		...contactRows(facts, words)
 	];
 	const text = rows.map((row) => `${row.label}: ${row.value}`).join('\n');
 	return `${text}\n\n${words.stopText(facts.lab.phone)}`;
-}
-
-function subjectOf({ kind, time, participant }: VisitMailFacts, words: InvitationWords): string {
-	const when = subjectTime(time.startMs, participant.zone, words);
-	if (kind === 'moved') return words.movedSubject(when);
-	return kind === 'cancelled' ? words.cancelledSubject(when) : words.invitationSubject(when);
-}
-
-function titleOf({ kind, publicTitle }: VisitMailFacts, words: InvitationWords): string {
-	if (kind === 'moved') return words.movedTitle(publicTitle);
-	return kind === 'cancelled'
-		? words.cancelledTitle(publicTitle)
-		: words.invitationTitle(publicTitle);
-}
-
-function leadOf({ kind, lab }: VisitMailFacts, words: InvitationWords): string {
-	if (kind === 'moved') return words.movedLead();
-	return kind === 'cancelled' ? words.cancelledLead() : words.invitationLead(lab.name);
 }

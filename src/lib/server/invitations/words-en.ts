@@ -5,19 +5,29 @@ export const wordsEn: InvitationWords = {
 	direction: 'ltr',
 	greeting: (name) => `Hello ${name},`,
 	zoneTime: (city) => `${city} time`,
-	invitationSubject: (when) => `Your visit: ${when}`,
-	movedSubject: (when) => `Visit moved: ${when}`,
-	cancelledSubject: (when) => `Visit cancelled: ${when}`,
+	subject: {
+		invitation: (when) => `Your visit: ${when}`,
+		moved: (when) => `Visit moved: ${when}`,
+		elsewhere: (when) => `Visit at another place: ${when}`,
+		cancelled: (when) => `Visit cancelled: ${when}`
+	},
+	title: {
+		invitation: (publicTitle) => `Your visit for “${publicTitle}”`,
+		moved: (publicTitle) => `Your visit for “${publicTitle}” has a new time`,
+		elsewhere: (publicTitle) => `Your visit for “${publicTitle}” is at another place`,
+		cancelled: (publicTitle) => `Your visit for “${publicTitle}” is cancelled`
+	},
+	lead: {
+		invitation: (labName) => `${labName} has booked this visit for you.`,
+		moved: () =>
+			'This visit takes place at another time. The new time replaces the old one in your calendar once you open this message there.',
+		elsewhere: () =>
+			'The time stays, the place is another. Your calendar takes over the new place once you open this message there.',
+		cancelled: () =>
+			'This visit does not take place, you need not do anything. It disappears from your calendar once you open this message there.'
+	},
 	withdrawnSubject: () => 'You have stopped taking part',
-	invitationTitle: (publicTitle) => `Your visit for “${publicTitle}”`,
-	movedTitle: (publicTitle) => `Your visit for “${publicTitle}” has a new time`,
-	cancelledTitle: (publicTitle) => `Your visit for “${publicTitle}” is cancelled`,
 	withdrawnTitle: (publicTitle) => `You have stopped taking part in “${publicTitle}”`,
-	invitationLead: (labName) => `${labName} has booked this visit for you.`,
-	movedLead: () =>
-		'This visit takes place at another time. The new time replaces the old one in your calendar once you open this message there.',
-	cancelledLead: () =>
-		'This visit does not take place, you need not do anything. It disappears from your calendar once you open this message there.',
 	cancelledNext: () => 'If another visit is booked for you, you get a new message.',
 	withdrawnLead: () =>
 		'We have noted that you stop taking part. You need not give a reason, and nobody will try to change your mind.',
@@ -34,6 +44,8 @@ export const wordsEn: InvitationWords = {
 	labelNewTime: () => 'New time',
 	labelWasAt: () => 'It was at',
 	labelWhere: () => 'Where',
+	labelOldPlace: () => 'Old place',
+	labelNewPlace: () => 'New place',
 	labelHowToFind: () => 'How to find it',
 	labelCall: () => 'Call',
 	labelWrite: () => 'Write to',

@@ -1,5 +1,8 @@
 import { wordsEn } from './words-en';
 
+/** `elsewhere`: the time stays, the place is another. */
+export type VisitMailKind = 'invitation' | 'moved' | 'elsewhere' | 'cancelled';
+
 /** Every sentence of a participant's mail. A new language is one more object of this type. */
 export interface InvitationWords {
 	language: string;
@@ -7,17 +10,12 @@ export interface InvitationWords {
 	greeting(name: string): string;
 	/** 'Berlin time', for a subject line. */
 	zoneTime(city: string): string;
-	invitationSubject(when: string): string;
-	movedSubject(when: string): string;
-	cancelledSubject(when: string): string;
+	/** By kind of mail; `when` is day, time and zone. */
+	subject: Record<VisitMailKind, (when: string) => string>;
+	title: Record<VisitMailKind, (publicTitle: string) => string>;
+	lead: Record<VisitMailKind, (labName: string) => string>;
 	withdrawnSubject(): string;
-	invitationTitle(publicTitle: string): string;
-	movedTitle(publicTitle: string): string;
-	cancelledTitle(publicTitle: string): string;
 	withdrawnTitle(publicTitle: string): string;
-	invitationLead(labName: string): string;
-	movedLead(): string;
-	cancelledLead(): string;
 	cancelledNext(): string;
 	withdrawnLead(): string;
 	withdrawnVisits(): string;
@@ -31,6 +29,8 @@ export interface InvitationWords {
 	labelNewTime(): string;
 	labelWasAt(): string;
 	labelWhere(): string;
+	labelOldPlace(): string;
+	labelNewPlace(): string;
 	labelHowToFind(): string;
 	labelCall(): string;
 	labelWrite(): string;

@@ -1,3 +1,4 @@
+import { workMail } from '$lib/server/invitations/mail-work';
 import type { QueueName } from './queues';
 import type { WorkContext } from './start-work';
 
@@ -11,4 +12,4 @@ type DueWork = { name: string; work(context: WorkContext): Promise<void> };
 export const queueWork: QueueWork[] = [];
 
 /** What falls due by the clock, looked at every second. */
-export const dueWork: DueWork[] = [];
+export const dueWork: DueWork[] = [{ name: 'send-mail', work: workMail }];
