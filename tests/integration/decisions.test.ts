@@ -183,6 +183,11 @@ describe('a block for its rig', () => {
 	});
 });
 
+type LooseInputs = {
+	state: { last: { trials: [number, number][] }; memory: { suspect: number } };
+	protocol: { settle: { margin: number } };
+};
+
 describe('replay after something was altered', () => {
 	async function alter(change: (inputs: Record<string, never>) => void) {
 		const row = await readDecision('Q11', 2);
@@ -203,25 +208,24 @@ describe('replay after something was altered', () => {
 	it.each([
 		[
 			'one trial',
-			(inputs: any_) => (inputs.state.last.trials[3][0] += 0.001),
+			(inputs: LooseInputs) => inputs.state.last.trials.splice(3, 1, [2.5, 0.25]),
 			'trial 4, release_speed'
 		],
 		[
 			'one policy number',
-			(inputs: any_) => (inputs.protocol.settle.margin = 0.6),
+			(inputs: LooseInputs) => (inputs.protocol.settle.margin = 0.6),
 			'policy setting settle.margin'
 		],
-		['one memory field', (inputs: any_) => (inputs.state.memory.suspect = 1), 'memory suspect']
+		[
+			'one memory field',
+			(inputs: LooseInputs) => (inputs.state.memory.suspect = 1),
+			'memory suspect'
+		]
 	])('names %s', async (_, change, name) => {
 		const verdict = await alter(change as never);
 		expect(verdict).toMatchObject({ equal: false, name });
 	});
 });
-
-type any_ = {
-	state: { last: { trials: number[][] }; memory: { suspect: number } };
-	protocol: { settle: { margin: number } };
-};
 
 describe('a held decision', () => {
 	it('is settled once, with a reason where it is changed', async () => {
