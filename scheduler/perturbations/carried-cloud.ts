@@ -1,7 +1,7 @@
 import { computeCholesky, solveLower } from '../linear-algebra/cholesky.ts';
 import { entry, multiplyVector, type Matrix, type Vector } from '../linear-algebra/vector.ts';
 import type { ScaledTask } from '../tasks/scaled-task.ts';
-import { computeNormalPoints } from './r-sequence.ts';
+import { computeNormalPoints } from '../statistics/r-sequence.ts';
 
 /** What a person's cloud would do at another place: which of its points hit, and how many fall off. */
 export interface CarriedCloud {

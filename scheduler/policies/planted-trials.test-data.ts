@@ -1,4 +1,4 @@
-import { computeNormalPoints } from '../perturbations/r-sequence.ts';
+import { computeNormalPoints } from '../statistics/r-sequence.ts';
 import { createTask } from '../tasks/create-task.ts';
 import { createScaledTask } from '../tasks/scaled-task.ts';
 import { taskRecordSchema } from '../tasks/task-record.ts';

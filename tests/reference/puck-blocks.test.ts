@@ -13,6 +13,7 @@ import {
 	computeNextTrialFactor
 } from '../../scheduler/variability/ellipsoid-factors.ts';
 import { computeCovariance, computeMeanVector } from '../../scheduler/variability/moments.ts';
+import { computeToleranceFactor } from '../../scheduler/variability/tolerance-factor.ts';
 import { expectLike } from './expect-like.ts';
 import { useEngineNames } from './sheet-names.ts';
 
@@ -99,6 +100,21 @@ describe.each(expected.participants)('puck blocks of $participant', ({ participa
 		if (block['geometry']) expectLike(geometry, useEngineNames(block['geometry']), TOLERANCES);
 		if (block['dead_band']) expectLike(band, useEngineNames(block['dead_band']), TOLERANCES);
 		if (refused) expectLike(aims?.refused, refused, {});
+	});
+});
+
+describe('tolerance factors of the puck blocks', () => {
+	const blocks = expected.participants.flatMap((participant) => participant.blocks);
+	// Monte Carlo in R: 3 % for 60 trials, 6 % for 7.
+	it.each([
+		[60, 0.03],
+		[7, 0.06]
+	])('agree with Monte Carlo for %d trials', { timeout: 60_000 }, (trialCount, rel) => {
+		const block = blocks.find(({ trials }) => trials === trialCount);
+		const factor = computeToleranceFactor({
+			...{ trialCount, variableCount: 2, share: 0.9, confidence: 0.95 }
+		});
+		expectRelative(factor, block?.factors_c2_at_0_9.tolerance_0_9_with_confidence_0_95, rel);
 	});
 });
 

@@ -1,4 +1,4 @@
-import { computeNormalQuantile } from '../statistics/normal.ts';
+import { computeNormalQuantile } from './normal.ts';
 
 /**
  * Evenly spread points of the unit cube, the same every time.
