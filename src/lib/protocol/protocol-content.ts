@@ -97,6 +97,10 @@ export const protocolContentSchema = z.object({
 			armB: z.string(),
 			effectD: z.number().min(0.01).max(5),
 			effectSource: z.string().max(500),
+			peopleLostSource: z.string().max(500).optional(),
+			effectLostSource: z.string().max(500).optional(),
+			/** Who entered each assumption last, by its field's name. */
+			enteredBy: z.record(z.string(), z.string().max(200)).optional(),
 			alpha: z.number().min(0.0001).max(0.5),
 			sides: z.union([z.literal(1), z.literal(2)]),
 			peoplePerArm: z.number().int().min(2).max(5000),

@@ -1,0 +1,18 @@
+import type { Fault, RigLimit } from './fault';
+import { findComparisonFaults } from './find-comparison-faults';
+import { findGapFaults } from './find-gap-faults';
+import { findRuleFaults } from './find-rule-faults';
+import { findTaskFaults } from './find-task-faults';
+import { findVisitFaults } from './find-visit-faults';
+import type { ProtocolDraft } from './protocol-draft';
+
+/** Everything that keeps a draft from being frozen, and cautions, in the order of the forms. */
+export function findFaults(draft: ProtocolDraft, rigs: readonly RigLimit[]): Fault[] {
+	return [
+		...findTaskFaults(draft),
+		...findVisitFaults(draft, rigs),
+		...findGapFaults(draft),
+		...findRuleFaults(draft),
+		...findComparisonFaults(draft)
+	];
+}

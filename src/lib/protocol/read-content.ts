@@ -1,0 +1,95 @@
+import { equaliseBlockLengths, policySettingsSchema } from '$scheduler/policies/policy-settings';
+import { taskRecordSchema } from '$scheduler/tasks/task-record';
+import { readClockText } from './clock-text';
+import type { Fault } from './fault';
+import { hasAdaptiveTime } from './has-adaptive-time';
+import { protocolContentSchema, type ProtocolContent } from './protocol-content';
+import type { ProtocolDraft } from './protocol-draft';
+import { buildTaskRecord } from './read-task';
+
+export type ReadContent = { ok: true; content: ProtocolContent } | { ok: false; faults: Fault[] };
+
+/** A finished draft as the document that is frozen, with every value of the policy written out. */
+export function readContent(draft: ProtocolDraft): ReadContent {
+	const task = taskRecordSchema.safeParse(buildTaskRecord(draft.task));
+	const policy = policySettingsSchema.safeParse(buildPolicy(draft));
+	const content = protocolContentSchema.safeParse({
+		...buildContent(draft),
+		task: task.data ?? {},
+		policy: hasAdaptiveTime(draft) && policy.data ? equaliseBlockLengths(policy.data) : {}
+	});
+	const faults = [
+		...toFaults('Task', task.error?.issues),
+		...toFaults('Policy', policy.error?.issues),
+		...toFaults('Protocol', content.error?.issues)
+	];
+	return content.success && faults.length === 0
+		? { ok: true, content: content.data }
+		: { ok: false, faults };
+}
+
+function toFaults(
+	place: string,
+	issues: readonly { path: PropertyKey[]; message: string }[] = []
+): Fault[] {
+	return issues.map(({ path, message }) => ({
+		code: 'not-readable',
+		level: 'fault',
+		place: [place, ...path.map(String)].join(', '),
+		field: path.join('.'),
+		text: `${message}.`,
+		remedy: 'Correct this value.'
+	}));
+}
+
+function buildPolicy({ aims, settle, otherPolicy, visits, limits }: ProtocolDraft) {
+	const { region, shift } = aims;
+	const adaptive = visits.flatMap(({ blocks }) => blocks).find((b) => b.purpose === 'adaptive');
+	const other = (key: string) => (otherPolicy[key] ?? {}) as Record<string, unknown>;
+	return {
+		...otherPolicy,
+		blockTrials: adaptive?.trials ?? 60,
+		aims:
+			region.isOn || shift.isOn
+				? {
+						...(region.isOn ? { region: { share: region.share, escapes: region.escapes } } : {}),
+						...(shift.isOn ? { shift: { share: shift.share, goal: shift.goal } } : {})
+					}
+				: undefined,
+		settle: { ...other('settle'), minBlocks: settle.minBlocks, maxBlocks: settle.maxBlocks },
+		limits: { ...other('limits'), trialsPerDay: Math.min(2000, limits.trialsPerVisit ?? 2000) }
+	};
+}
+
+function buildContent(draft: ProtocolDraft) {
+	const { booking, comparison, visits, guardRails } = draft;
+	return {
+		format: 1,
+		arms: draft.arms,
+		visits: visits.map((visit, index) => ({
+			...visit,
+			number: index + 1,
+			gapBefore: index === 0 ? null : visit.gapBefore,
+			blocks: visit.blocks.map((block, at) => ({ ...block, number: at + 1 }))
+		})),
+		booking: {
+			earliestMinute: readClockText(booking.earliest),
+			latestMinute: readClockText(booking.latest),
+			sameTimeToleranceMinutes: booking.sameTimeToleranceMinutes,
+			weekdays: [...booking.weekdays].sort((a, b) => a - b),
+			pauses: {
+				...booking.pauses,
+				minHours: booking.pauses.minHours ?? 0,
+				maxHours: booking.pauses.maxHours ?? 0
+			}
+		},
+		guardRails: { ...guardRails, fallback: 'practice' },
+		readyLeadHours: draft.readyLeadHours,
+		invitationDelayHours: draft.invitationDelayHours,
+		earliestStartHours: draft.earliestStartHours,
+		comparison: draft.arms.length > 1 ? comparison : null,
+		limits: draft.limits,
+		consentTextVersion: draft.consentTextVersion,
+		variants: draft.variants
+	};
+}

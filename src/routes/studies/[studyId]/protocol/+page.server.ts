@@ -1,0 +1,81 @@
+import { error, fail, redirect } from '@sveltejs/kit';
+import { setError, superValidate } from 'sveltekit-superforms';
+import { zod4 } from 'sveltekit-superforms/adapters';
+import { z } from 'zod';
+import { ethicsApprovalSchema } from '$lib/protocol/ethics-approval';
+import { requirePermission } from '$lib/server/access/require-permission';
+import { listApprovals } from '$lib/server/ethics/list-approvals';
+import { recordApproval } from '$lib/server/ethics/record-approval';
+import { revokeApproval } from '$lib/server/ethics/revoke-approval';
+import { loadProtocol } from '$lib/server/protocols/load-protocol';
+import { startDraft } from '$lib/server/protocols/start-draft';
+import { loadProgress } from '$lib/server/studies/load-progress';
+import { loadStudyZone } from '$lib/server/studies/load-study-zone';
+import { formatWithZone } from '$lib/time/format-instant';
+import type { Actions, PageServerLoad } from './$types';
+
+const numberSchema = z.coerce.number().int().positive();
+
+export const load: PageServerLoad = async ({ locals, params, url }) => {
+	const grant = await requirePermission(locals, 'protocol:read', params);
+	const { db, clock } = locals;
+	const wanted = url.searchParams.get('version');
+	const number = wanted === null ? undefined : numberSchema.safeParse(wanted).data;
+	if (wanted !== null && number === undefined) error(404, 'Not found');
+	const protocol = await loadProtocol(db, grant, { number });
+	if (number !== undefined && !protocol.shown) error(404, 'Not found');
+	const zone = await loadStudyZone(db, grant.studyId);
+	const mayEdit = grant.roles.includes('investigator');
+	const defaults = { protocolHash: protocol.shown?.hash ?? '' };
+	return {
+		...protocol,
+		frozenText: protocol.shown ? formatWithZone(protocol.shown.frozenAtMs, zone) : '',
+		justFrozen: url.searchParams.get('frozen') === String(protocol.shown?.number),
+		approvals: await listApprovals(db, clock, grant),
+		progress: await loadProgress(db, clock, grant),
+		mayEdit,
+		ethicsForm: mayEdit
+			? await superValidate(defaults, zod4(ethicsApprovalSchema), { errors: false })
+			: null
+	};
+};
+
+const draftRefusals = {
+	'draft-exists': 'Another version is being written already.',
+	'nothing-frozen': 'No version is frozen yet: go on with the first draft.',
+	'task-not-editable': 'The forms cannot hold the task of the frozen version.'
+};
+
+export const actions: Actions = {
+	draft: async ({ locals, params }) => {
+		const grant = await requirePermission(locals, 'protocol:edit', params);
+		const started = await startDraft(locals.db, locals.clock, grant);
+		if (!started.ok && started.reason !== 'draft-exists') {
+			return fail(409, { refused: draftRefusals[started.reason] });
+		}
+		redirect(303, `/studies/${grant.studyId}/protocol/draft`);
+	},
+	approve: async ({ locals, params, request }) => {
+		const grant = await requirePermission(locals, 'ethics:record', params);
+		const form = await superValidate(request, zod4(ethicsApprovalSchema));
+		if (!form.valid) return { form };
+		const recorded = await recordApproval(locals.db, locals.clock, grant, form.data);
+		if (recorded.ok) return { form, recordedNumber: recorded.versionNumber };
+		if (recorded.reason === 'unknown-version') {
+			return setError(form, 'protocolHash', 'This study has no version with that hash.');
+		}
+		return recorded.reason === 'not-yet-given'
+			? setError(form, 'approvedOn', 'This day lies ahead; record the approval once it is given.')
+			: setError(form, 'expiresOn', 'This approval has ended already; record its renewal.');
+	},
+	revoke: async ({ locals, params, request }) => {
+		const grant = await requirePermission(locals, 'ethics:record', params);
+		const approvalId = z.uuid().safeParse((await request.formData()).get('approvalId'));
+		const revoked = approvalId.success
+			? await revokeApproval(locals.db, locals.clock, grant, { approvalId: approvalId.data })
+			: { ok: false as const };
+		return revoked.ok
+			? { revoked: true }
+			: fail(409, { refused: 'This approval no longer stands.' });
+	}
+};
