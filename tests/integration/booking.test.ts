@@ -1,6 +1,7 @@
 import { and, asc, eq, sql } from 'drizzle-orm';
 import { afterAll, beforeAll, beforeEach, describe, expect, it } from 'vitest';
 import { emptyCells } from '$lib/people/enrolment-columns';
+import type { MailSetting } from '$lib/server/invitations/mail-setting';
 import { cancelVisit } from '$lib/server/bookings/cancel-visit';
 import { judgeWindow, loadMovable } from '$lib/server/bookings/judge-visit';
 import { loadPlanVersion } from '$lib/server/bookings/load-person-plan';
@@ -9,7 +10,7 @@ import { proposeChains } from '$lib/server/bookings/propose-chains';
 import { savePlan } from '$lib/server/bookings/save-plan';
 import { settleRequest } from '$lib/server/bookings/settle-request';
 import { openDatabase, type DatabaseHandle } from '$lib/server/db/client';
-import { booking, participant, recordEvent, studyPause } from '$lib/server/db/schema';
+import { booking, outbox, participant, recordEvent, studyPause } from '$lib/server/db/schema';
 import type { PeopleKeys } from '$lib/server/keys/people-keys';
 import { enrolPeople } from '$lib/server/people/enrol-people';
 import { loadParticipants } from '$lib/server/people/load-participants';
@@ -30,6 +31,7 @@ let database: TestDatabase;
 let app: DatabaseHandle;
 let owner: DatabaseHandle;
 let keys: PeopleKeys;
+let mail: MailSetting;
 let home: PlantedStudy;
 let coordinator: Awaited<ReturnType<typeof plantMember>>;
 let clock: ReturnType<typeof createTestClock>;
@@ -40,6 +42,7 @@ beforeAll(async () => {
 	app = openDatabase(database.appUrl);
 	owner = openDatabase(database.ownerUrl);
 	keys = await createTestKeys();
+	mail = { keys: keys.folder, origin: 'http://ovalry.example', fromAddress: 'lab@lab.example' };
 });
 
 beforeEach(async () => {
@@ -88,7 +91,8 @@ async function bookFirst(participantId: string, member: Member = coordinator) {
 	return savePlan(app.db, clock, grant, {
 		participantId,
 		places,
-		planVersion: plan.planVersion
+		planVersion: plan.planVersion,
+		mail
 	});
 }
 
@@ -102,7 +106,7 @@ async function move(
 ) {
 	const grant = await coordinator.grantFor('booking:change');
 	const planVersion = await loadPlanVersion(app.db, home.studyId);
-	return savePlan(app.db, clock, grant, { participantId, places, planVersion });
+	return savePlan(app.db, clock, grant, { participantId, places, planVersion, mail });
 }
 
 describe('a chain of visits', () => {
@@ -134,7 +138,7 @@ describe('a chain of visits', () => {
 		const grant = await coordinator.grantFor('booking:change');
 		const input = { participantId: second, places: seen.chains[0]?.visits ?? [] };
 		const planVersion = seen.plan.planVersion;
-		const outcome = await savePlan(app.db, clock, grant, { ...input, planVersion });
+		const outcome = await savePlan(app.db, clock, grant, { ...input, planVersion, mail });
 		expect(outcome).toEqual({ ok: false, reason: 'stale' });
 		expect(await visitsOf(second)).toEqual([]);
 	});
@@ -167,7 +171,12 @@ describe('a chain of visits', () => {
 		const stranger = await plantMember(owner.db, other, 'coordinator');
 		const grant = await stranger.grantFor('booking:change');
 		const places = (await propose(participantId)).chains[0]?.visits ?? [];
-		const outcome = await savePlan(app.db, clock, grant, { participantId, places, planVersion: 0 });
+		const outcome = await savePlan(app.db, clock, grant, {
+			participantId,
+			places,
+			planVersion: 0,
+			mail
+		});
 		expect(outcome).toEqual({ ok: false, reason: 'not-found' });
 	});
 });
@@ -181,7 +190,7 @@ describe('a double booking', () => {
 		const place = (await propose(mine)).chains[0]?.visits ?? [];
 		const save = async (member: Member, participantId: string) => {
 			const grant = await member.grantFor('booking:change');
-			return savePlan(app.db, clock, grant, { participantId, places: place, planVersion: 0 });
+			return savePlan(app.db, clock, grant, { participantId, places: place, planVersion: 0, mail });
 		};
 		const outcomes = await Promise.all([save(coordinator, mine), save(colleague, theirs)]);
 		expect(outcomes.map(({ ok }) => ok).sort()).toEqual([false, true]);
@@ -222,7 +231,7 @@ describe('a double booking', () => {
 				createdAt: startsAt,
 				changedAt: startsAt
 			});
-			const input = { participantId: mine, places, planVersion: plan.planVersion };
+			const input = { participantId: mine, places, planVersion: plan.planVersion, mail };
 			saving = savePlan(app.db, clock, grant, input);
 			// The other booking is committed only when this one waits for it at its own commit.
 			await waitForBlockedCommit();
@@ -280,22 +289,36 @@ describe('moving visits', () => {
 		expect(moved.map(({ startMs }) => startMs)).toEqual(later.map(({ startMs }) => startMs));
 	});
 
-	it('gives an invited visit one further sequence number and asks for its answer again', async () => {
+	it('sends one update of the same event for a visit that was told, none for the others', async () => {
 		const [participantId = ''] = await enrol(1);
-		await bookFirst(participantId);
+		expect(await bookFirst(participantId)).toMatchObject({ mailCount: 1 });
 		const [first] = await visitsOf(participantId);
 		if (!first) throw new Error('nothing booked');
 		const at = new Date(plantedNowMs);
 		await owner.db
+			.update(outbox)
+			.set({ state: 'sent', sentAt: at })
+			.where(eq(outbox.participantId, participantId));
+		await owner.db
 			.update(booking)
-			.set({ invitedAt: at, answer: 'asks-other-time', answeredAt: at })
+			.set({ answer: 'asks-other-time', answeredAt: at })
 			.where(eq(booking.id, first.bookingId));
-		const startMs = first.startMs + 15 * 60_000;
-		await move(participantId, [{ visitNumber: 1, startMs, rigId: first.rigId }]);
+		const all = (await visitsOf(participantId)).map(({ visitNumber, startMs, rigId }) => {
+			return { visitNumber, startMs: startMs + 15 * 60_000, rigId };
+		});
+		expect(await move(participantId, all)).toMatchObject({ movedCount: 5, mailCount: 1 });
 		const [moved, untold] = await visitsOf(participantId);
-		expect(moved).toMatchObject({ startMs, sequence: first.sequence + 1, answer: 'none' });
-		expect(moved?.requestSettledAtMs).toBe(plantedNowMs);
-		expect(untold?.sequence).toBe(0);
+		expect(moved).toMatchObject({ sequence: first.sequence + 1, answer: 'none' });
+		expect(untold).toMatchObject({ sequence: 0, invitedAtMs: null });
+		const mails = await owner.db
+			.select({ kind: outbox.kind, sequence: outbox.sequence })
+			.from(outbox)
+			.where(eq(outbox.participantId, participantId))
+			.orderBy(asc(outbox.sequence));
+		expect(mails).toEqual([
+			{ kind: 'invitation', sequence: 0 },
+			{ kind: 'moved', sequence: 1 }
+		]);
 	});
 
 	it('obeys the earliest start once there is one', async () => {
@@ -345,8 +368,10 @@ describe('cancelling, settling and withdrawing', () => {
 		const [visit] = await visitsOf(first);
 		const grant = await coordinator.grantFor('booking:change');
 		const bookingId = visit?.bookingId ?? '';
-		expect(await cancelVisit(app.db, clock, grant, { bookingId })).toMatchObject({ ok: true });
-		expect(await cancelVisit(app.db, clock, grant, { bookingId })).toEqual({
+		expect(await cancelVisit(app.db, clock, grant, { bookingId, mail })).toMatchObject({
+			ok: true
+		});
+		expect(await cancelVisit(app.db, clock, grant, { bookingId, mail })).toEqual({
 			ok: false,
 			reason: 'not-booked'
 		});
@@ -379,8 +404,8 @@ describe('cancelling, settling and withdrawing', () => {
 			.where(eq(booking.id, first?.bookingId ?? ''));
 		clock.set((second?.startMs ?? 0) - hourMs);
 		const grant = await coordinator.grantFor('participant:withdraw');
-		const withdraw = () => withdrawPerson(app.db, clock, grant, { participantId });
-		expect(await withdraw()).toMatchObject({ ok: true, cancelledCount: 4 });
+		const withdraw = () => withdrawPerson(app.db, clock, grant, { participantId, mail });
+		expect(await withdraw()).toMatchObject({ ok: true, cancelledCount: 4, mailCount: 1 });
 		expect(await withdraw()).toEqual({ ok: false, reason: 'withdrawn-already' });
 		expect((await visitsOf(participantId)).map(({ state }) => state)).toEqual([
 			'attended',
@@ -393,9 +418,9 @@ describe('cancelling, settling and withdrawing', () => {
 		await bookFirst(participantId);
 		const visits = await visitsOf(participantId);
 		const grant = await coordinator.grantFor('booking:change');
-		await cancelVisit(app.db, clock, grant, { bookingId: visits[4]?.bookingId ?? '' });
+		await cancelVisit(app.db, clock, grant, { bookingId: visits[4]?.bookingId ?? '', mail });
 		const withdrawal = await coordinator.grantFor('participant:withdraw');
-		await withdrawPerson(app.db, clock, withdrawal, { participantId });
+		await withdrawPerson(app.db, clock, withdrawal, { participantId, mail });
 		const events = await owner.db
 			.select({ kind: recordEvent.kind })
 			.from(recordEvent)

@@ -159,6 +159,11 @@ describe('changeDetails', () => {
 		const change = (email: string) =>
 			changeDetails(app.db, clock, grant, {
 				keys,
+				mail: {
+					keys: keys.folder,
+					origin: 'http://ovalry.example',
+					fromAddress: 'lab@lab.example'
+				},
 				participantId,
 				cells: { ...emptyCells, ...ines, email, language: 'pt' }
 			});

@@ -1,11 +1,12 @@
-import { eq, sql } from 'drizzle-orm';
+import { eq } from 'drizzle-orm';
 import type { Grant } from '$lib/server/access/require-permission';
 import type { Clock } from '$lib/server/clock';
-import type { Queryable } from '$lib/server/db/client';
-import { booking, type Answer } from '$lib/server/db/schema';
+import type { Transaction } from '$lib/server/db/client';
+import { booking } from '$lib/server/db/schema';
 import { actorOf, recordEvent } from '$lib/server/record/record-event';
 import type { PlacedVisit } from '$scheduler/booking/types.ts';
 import { announceChange } from './announce-change';
+import type { MailSetting } from '$lib/server/invitations/mail-setting';
 import type { PersonPlan } from './load-person-plan';
 import { isLive, type StudyVisit } from './load-visits';
 import type { Placement } from './place-visits';
@@ -17,28 +18,38 @@ export type AppliedPlaces = {
 	mailCount: number;
 };
 
-type Input = { plan: PersonPlan; changed: readonly PlacedVisit[]; places: readonly Placement[] };
+type Input = {
+	plan: PersonPlan;
+	changed: readonly PlacedVisit[];
+	places: readonly Placement[];
+	mail: MailSetting;
+};
 type Change = { visit: PlacedVisit; now: StudyVisit | null };
 
 /** Writes the changed places, orders the mails they call for, and records what was done. */
 export async function applyPlaces(
-	tx: Queryable,
+	tx: Transaction,
 	clock: Clock,
 	grant: Grant<'booking:change'>,
 	input: Input
 ): Promise<AppliedPlaces> {
+	const { plan, mail } = input;
 	const changes = listChanges(input);
 	const booked = changes.filter(({ now }) => now === null);
 	const moved = changes.filter(({ now }) => now !== null);
-	const bookingIds: string[] = [];
-	for (const { visit } of booked) {
-		bookingIds.push(await insertVisit(tx, clock, grant, { plan: input.plan, visit }));
+	let mailCount = 0;
+	for (const { visit } of booked) await insertVisit(tx, clock, grant, { plan, visit });
+	if (booked.length > 0) {
+		const participantId = plan.participant.id;
+		mailCount += await announceChange(tx, clock, mail, { kind: 'booked', participantId });
 	}
-	let mailCount = await announceChange(tx, clock, { kind: 'booked', bookingIds });
 	for (const { visit, now } of moved) {
-		if (now) mailCount += await moveVisit(tx, clock, { plan: input.plan, visit, now });
+		if (!now) continue;
+		await updateVisit(tx, clock, { plan, visit, now });
+		const { bookingId } = now;
+		mailCount += await announceChange(tx, clock, mail, { kind: 'moved', bookingId });
 	}
-	await record(tx, clock, grant, { plan: input.plan, booked, moved });
+	await record(tx, clock, grant, { plan, booked, moved });
 	return { bookedCount: booked.length, movedCount: moved.length, mailCount };
 }
 
@@ -63,53 +74,31 @@ function isSamePlace(visit: PlacedVisit, now: StudyVisit): boolean {
 type Where = { plan: PersonPlan; visit: PlacedVisit };
 
 async function insertVisit(
-	tx: Queryable,
+	tx: Transaction,
 	clock: Clock,
 	grant: Grant<'booking:change'>,
 	{ plan, visit }: Where
-): Promise<string> {
+): Promise<void> {
 	const at = new Date(clock.now());
-	const [row] = await tx
-		.insert(booking)
-		.values({
-			studyId: grant.studyId,
-			participantId: plan.participant.id,
-			visitNumber: visit.visitNumber,
-			...placeColumns({ plan, visit }),
-			createdAt: at,
-			changedAt: at
-		})
-		.returning({ id: booking.id });
-	if (!row) throw new Error('a booking was not stored');
-	return row.id;
+	await tx.insert(booking).values({
+		studyId: grant.studyId,
+		participantId: plan.participant.id,
+		visitNumber: visit.visitNumber,
+		...placeColumns({ plan, visit }),
+		createdAt: at,
+		changedAt: at
+	});
 }
 
-/** A visit that was told and is at another time or in another room gets one update of its event. */
-async function moveVisit(
-	tx: Queryable,
+async function updateVisit(
+	tx: Transaction,
 	clock: Clock,
 	{ plan, visit, now }: Where & { now: StudyVisit }
-): Promise<number> {
-	const place = placeColumns({ plan, visit });
-	const isNews =
-		visit.startMs !== now.startMs || roomOf(plan, visit.rigId) !== roomOf(plan, now.rigId);
-	const isTold = now.invitedAtMs !== null && isNews;
-	const asked = now.answer === 'declined' || now.answer === 'asks-other-time';
-	const at = new Date(clock.now());
+): Promise<void> {
 	await tx
 		.update(booking)
-		.set({
-			...place,
-			changedAt: at,
-			...(asked && isNews ? { requestSettledAt: at } : {}),
-			...(isTold
-				? { sequence: sql`${booking.sequence} + 1`, answer: 'none' as Answer, answeredAt: null }
-				: {})
-		})
+		.set({ ...placeColumns({ plan, visit }), changedAt: new Date(clock.now()) })
 		.where(eq(booking.id, now.bookingId));
-	if (!isTold) return 0;
-	const oldTime = { startMs: now.startMs, endMs: now.endMs };
-	return announceChange(tx, clock, { kind: 'moved', bookingId: now.bookingId, oldTime });
 }
 
 function roomOf({ lab }: PersonPlan, rigId: string): string {
@@ -138,7 +127,7 @@ function placeColumns({ plan, visit }: Where) {
 type Done = { plan: PersonPlan; booked: readonly Change[]; moved: readonly Change[] };
 
 async function record(
-	tx: Queryable,
+	tx: Transaction,
 	clock: Clock,
 	grant: Grant<'booking:change'>,
 	{ plan, booked, moved }: Done

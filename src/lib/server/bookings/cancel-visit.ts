@@ -1,10 +1,11 @@
-import { and, eq, sql } from 'drizzle-orm';
+import { and, eq } from 'drizzle-orm';
 import type { Grant } from '$lib/server/access/require-permission';
 import type { Clock } from '$lib/server/clock';
-import type { Database, Queryable } from '$lib/server/db/client';
+import type { Database, Transaction } from '$lib/server/db/client';
 import { booking } from '$lib/server/db/schema';
 import { actorOf, recordEvent } from '$lib/server/record/record-event';
 import { announceChange } from './announce-change';
+import type { MailSetting } from '$lib/server/invitations/mail-setting';
 import { loadVisits, type StudyVisit } from './load-visits';
 import { countPlanChangeAnyway, lockLab } from './lock-plan';
 
@@ -16,7 +17,7 @@ export async function cancelVisit(
 	db: Database,
 	clock: Clock,
 	grant: Grant<'booking:change'>,
-	{ bookingId }: { bookingId: string }
+	{ bookingId, mail }: { bookingId: string; mail: MailSetting }
 ): Promise<CancelOutcome> {
 	return db.transaction(async (tx) => {
 		await lockLab(tx, grant.labId);
@@ -26,8 +27,7 @@ export async function cancelVisit(
 		if (visit.startMs <= clock.now()) return { ok: false, reason: 'over' };
 		await countPlanChangeAnyway(tx, grant.studyId);
 		await markCancelled(tx, clock, visit);
-		const told = visit.invitedAtMs !== null;
-		const mailCount = told ? await announceChange(tx, clock, { kind: 'cancelled', bookingId }) : 0;
+		const mailCount = await announceChange(tx, clock, mail, { kind: 'cancelled', bookingId });
 		await recordEvent(tx, clock, actorOf(grant), {
 			kind: 'visit-cancelled',
 			item: 'booking',
@@ -40,14 +40,14 @@ export async function cancelVisit(
 	});
 }
 
-/** Frees a visit's place; the event that was told, if any, goes one step on. */
-export async function markCancelled(tx: Queryable, clock: Clock, visit: StudyVisit): Promise<void> {
+/** Frees a visit's place. */
+export async function markCancelled(
+	tx: Transaction,
+	clock: Clock,
+	visit: StudyVisit
+): Promise<void> {
 	await tx
 		.update(booking)
-		.set({
-			state: 'cancelled',
-			changedAt: new Date(clock.now()),
-			...(visit.invitedAtMs === null ? {} : { sequence: sql`${booking.sequence} + 1` })
-		})
+		.set({ state: 'cancelled', changedAt: new Date(clock.now()) })
 		.where(and(eq(booking.id, visit.bookingId), eq(booking.state, 'booked')));
 }

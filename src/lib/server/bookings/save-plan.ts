@@ -1,9 +1,10 @@
 import type { Grant } from '$lib/server/access/require-permission';
 import type { Clock } from '$lib/server/clock';
-import type { Database, Queryable } from '$lib/server/db/client';
+import type { Database, Transaction } from '$lib/server/db/client';
 import { isPaused } from '$lib/server/pauses/is-paused';
 import { findMissingGates, type MissingGate } from '$lib/server/studies/load-gates';
 import type { PlacedVisit } from '$scheduler/booking/types.ts';
+import type { MailSetting } from '$lib/server/invitations/mail-setting';
 import { applyPlaces, type AppliedPlaces } from './apply-places';
 import { explainClash, isWorthRetrying, type Clash } from './explain-clash';
 import { loadPersonPlan, type PersonPlan } from './load-person-plan';
@@ -17,6 +18,7 @@ export type SaveInput = {
 	places: readonly Placement[];
 	/** The plan's version on which the places were chosen. */
 	planVersion: number;
+	mail: MailSetting;
 };
 
 export type SaveRefusal =
@@ -66,10 +68,10 @@ function tellClash(error: unknown, plan: PersonPlan): Clash | null {
 }
 
 async function saveOnce(
-	tx: Queryable,
+	tx: Transaction,
 	clock: Clock,
 	grant: Grant<'booking:change'>,
-	{ participantId, places, planVersion }: SaveInput,
+	{ participantId, places, planVersion, mail }: SaveInput,
 	onPlan: (plan: PersonPlan) => void
 ): Promise<SaveOutcome> {
 	await requireOpen(tx, clock, grant, participantId);
@@ -82,12 +84,12 @@ async function saveOnce(
 	requireBookable(plan, places);
 	const changed = placeVisits(plan, places);
 	requireRules(plan, changed);
-	const applied = await applyPlaces(tx, clock, grant, { plan, changed, places });
+	const applied = await applyPlaces(tx, clock, grant, { plan, changed, places, mail });
 	return { ok: true, planVersion: newVersion, ...applied };
 }
 
 async function requireOpen(
-	tx: Queryable,
+	tx: Transaction,
 	clock: Clock,
 	grant: Grant,
 	participantId: string

@@ -9,7 +9,10 @@ import type { PersonPlan } from './load-person-plan';
 export type ToldRule = { rule: string; visitNumber: number; short: string; sentence: string };
 
 /** The names and labels that sentences about this plan use. */
-export function describeContext({ problem, lab }: PersonPlan): DescribeContext {
+export function describeContext({
+	problem,
+	lab
+}: Pick<PersonPlan, 'problem' | 'lab'>): DescribeContext {
 	const rigs = lab.rigs.map(({ id, name }) => [id, name] as const);
 	return {
 		zone: problem.calendar.zone,

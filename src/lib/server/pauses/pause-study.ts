@@ -88,7 +88,8 @@ async function hasOwnPause(
 	return open !== undefined;
 }
 
-async function revokeBundles(
+/** Revokes every open bundle of the study, or of one participant; answers how many. */
+export async function revokeBundles(
 	tx: Queryable,
 	revokedAt: Date,
 	{ studyId, participantId }: Scope

@@ -6,6 +6,8 @@ import type { Grant } from '$lib/server/access/require-permission';
 import type { Clock } from '$lib/server/clock';
 import type { Database, Queryable } from '$lib/server/db/client';
 import { contact, participant } from '$lib/server/db/schema';
+import { renewFailedMail } from '$lib/server/invitations/enqueue-visit-change';
+import type { MailSetting } from '$lib/server/invitations/mail-setting';
 import type { PeopleKeys } from '$lib/server/keys/people-keys';
 import { actorOf, recordEvent } from '$lib/server/record/record-event';
 import { findEnrolled } from './find-enrolled';
@@ -16,17 +18,23 @@ export type DetailsOutcome =
 	| { ok: false; reason: 'faults'; faults: CellFault[] }
 	| { ok: false; reason: 'not-found' };
 
-type DetailsInput = { keys: PeopleKeys; participantId: string; cells: EnrolmentCells };
+type DetailsInput = {
+	keys: PeopleKeys;
+	mail: MailSetting;
+	participantId: string;
+	cells: EnrolmentCells;
+};
 
 /**
  * Mends a person's contact data, language, zone and hours. Bookings stay where they are; one that
- * the new hours rule out becomes a task of the coordinator.
+ * the new hours rule out becomes a task of the coordinator. Mail that could not be delivered is
+ * written anew.
  */
 export async function changeDetails(
 	db: Database,
 	clock: Clock,
 	grant: Grant<'participant:enrol'>,
-	{ keys, participantId, cells }: DetailsInput
+	{ keys, mail, participantId, cells }: DetailsInput
 ): Promise<DetailsOutcome> {
 	const answer = checkCells(cells, await loadCellDefaults(db, grant));
 	if (!answer.ok) return { ok: false, reason: 'faults', faults: answer.faults };
@@ -51,6 +59,7 @@ export async function changeDetails(
 			.update(participant)
 			.set({ language, zone, availability })
 			.where(eq(participant.id, participantId));
+		await renewFailedMail(tx, clock, mail, participantId);
 		await recordEvent(tx, clock, actorOf(grant), {
 			kind: 'contact-changed',
 			item: 'contact',

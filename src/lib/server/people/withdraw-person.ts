@@ -1,12 +1,14 @@
 import { and, eq, isNull } from 'drizzle-orm';
 import type { Grant } from '$lib/server/access/require-permission';
 import { announceChange } from '$lib/server/bookings/announce-change';
+import type { MailSetting } from '$lib/server/invitations/mail-setting';
 import { markCancelled } from '$lib/server/bookings/cancel-visit';
 import { loadVisits } from '$lib/server/bookings/load-visits';
 import { countPlanChangeAnyway, lockLab } from '$lib/server/bookings/lock-plan';
 import type { Clock } from '$lib/server/clock';
 import type { Database } from '$lib/server/db/client';
 import { participant } from '$lib/server/db/schema';
+import { revokeBundles } from '$lib/server/pauses/pause-study';
 import { actorOf, recordEvent } from '$lib/server/record/record-event';
 
 export type WithdrawOutcome =
@@ -14,14 +16,14 @@ export type WithdrawOutcome =
 	| { ok: false; reason: 'not-found' | 'withdrawn-already' };
 
 /**
- * Ends a person's part in the study at once: bookings to come are cancelled, waiting mails are
- * stopped, one mail confirms it. What was collected before is kept.
+ * Ends a person's part in the study at once: bookings to come are cancelled, bundles
+ * revoked, waiting mails stopped, one mail confirms it. What was collected before is kept.
  */
 export async function withdrawPerson(
 	db: Database,
 	clock: Clock,
 	grant: Grant<'participant:withdraw'>,
-	{ participantId }: { participantId: string }
+	{ participantId, mail }: { participantId: string; mail: MailSetting }
 ): Promise<WithdrawOutcome> {
 	return db.transaction(async (tx) => {
 		await lockLab(tx, grant.labId);
@@ -41,8 +43,11 @@ export async function withdrawPerson(
 		await countPlanChangeAnyway(tx, grant.studyId);
 		const visits = await loadVisits(tx, grant, { participantId });
 		const coming = visits.filter(({ state, endMs }) => state === 'booked' && endMs > clock.now());
+		await revokeBundles(tx, now, { studyId: grant.studyId, participantId });
 		for (const visit of coming) await markCancelled(tx, clock, visit);
-		const mailCount = await announceChange(tx, clock, { kind: 'withdrawn', participantId });
+		const cancelledBookingIds = coming.map(({ bookingId }) => bookingId);
+		const change = { kind: 'withdrawn', participantId, cancelledBookingIds } as const;
+		const mailCount = await announceChange(tx, clock, mail, change);
 		await recordEvent(tx, clock, actorOf(grant), {
 			kind: 'person-withdrawn',
 			item: 'participant-state',
