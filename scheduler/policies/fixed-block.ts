@@ -4,7 +4,6 @@ import { openTurn } from './choose-next-block.ts';
 import type { Decision } from './decision.ts';
 import type { ArmRule, DecisionInputs } from './decision-record.ts';
 import { finishDecision } from './finish-decision.ts';
-import { isPlain } from './turn.ts';
 import { askLimits } from './rungs/limits.ts';
 
 type FixedRule = Extract<ArmRule, { kind: 'fixed' }>;
@@ -13,7 +12,8 @@ type FixedRule = Extract<ArmRule, { kind: 'fixed' }>;
  * The rule of a fixed arm: the limits of the day, then the block that the protocol lists.
  *
  * The answer has the shape of an adaptive decision, so that every arm is decided, stored and replayed by
- * the same code. What a plain block showed is kept in memory; it changes nothing here.
+ * the same code. What the last block showed is kept in memory, for the adaptive blocks of a protocol
+ * that lists some blocks and leaves others to the policy; it changes nothing here.
  * Decision: the listed block, the readiness and the limits.
  */
 export function chooseFixedBlock(inputs: DecisionInputs, rule: FixedRule): Decision {
@@ -22,9 +22,7 @@ export function chooseFixedBlock(inputs: DecisionInputs, rule: FixedRule): Decis
 		settings: inputs.protocol,
 		task: createTask(inputs.task)
 	});
-	const { last } = inputs.state;
-	if (last && (isPlain(last.kind) || last.kind === 'rest')) absorbBlock(turn);
-	else if (last) turn.memory.rested = false;
+	absorbBlock(turn);
 	const limited = askLimits(turn);
 	if (limited)
 		return finishDecision({

@@ -1,0 +1,82 @@
+import { z } from 'zod';
+import type { Matrix } from '../linear-algebra/vector.ts';
+import { computeCloudGeometry } from '../policies/cloud-geometry.ts';
+import { createTask } from '../tasks/create-task.ts';
+import { createScaledTask } from '../tasks/scaled-task.ts';
+import { computeEllipsoid } from '../variability/compute-ellipsoid.ts';
+import {
+	computeCoverageFactor,
+	computeMeanFactor,
+	computeNextTrialFactor
+} from '../variability/ellipsoid-factors.ts';
+import { computeCovariance, computeMeanVector } from '../variability/moments.ts';
+import { computeToleranceFactor } from '../variability/tolerance-factor.ts';
+import { trimOutliers } from '../variability/trim-outliers.ts';
+import { trialsInputSchema } from './trial-inputs.ts';
+
+const probability = z.number().gt(0).lt(1);
+
+export const cloudInputSchema = z
+	.strictObject({
+		...trialsInputSchema.shape,
+		/** Probability of the ellipsoids; for the tolerance ellipsoid the share of the population. */
+		probability: probability.default(0.9),
+		/** Confidence of the tolerance ellipsoid. */
+		confidence: probability.default(0.95)
+	})
+	.superRefine((input, context) => {
+		const checked = trialsInputSchema.safeParse({ task: input.task, trials: input.trials });
+		for (const issue of checked.error?.issues ?? [])
+			context.addIssue({ code: 'custom', path: [...issue.path], message: issue.message });
+		if (input.trials.length <= input.task.variables.length)
+			context.addIssue({
+				code: 'custom',
+				path: ['trials'],
+				message: `a cloud of ${input.task.variables.length} variables needs more trials than that`
+			});
+	});
+
+/** Mean, covariance, the four ellipsoids, stray trials and the lie of the cloud. */
+export function describeCloud(input: z.output<typeof cloudInputSchema>) {
+	const task = createScaledTask(createTask(input.task));
+	const executions = input.trials.map((trial) => task.toScaled(trial));
+	const scaled = {
+		n: executions.length,
+		mean: computeMeanVector(executions),
+		cov: computeCovariance(executions)
+	};
+	const trimmed = trimOutliers(executions);
+	const mean = computeMeanVector(input.trials);
+	const covariance = computeCovariance(input.trials);
+	const factors = computeFactors(input);
+	return {
+		n: input.trials.length,
+		inUnits: { mean, covariance },
+		scaled: { mean: scaled.mean, covariance: scaled.cov },
+		ellipsoids: Object.entries(factors).map(([kind, factor]) => ({
+			...{ kind, factor, ...computeEllipsoid({ mean, covariance, factor }) }
+		})),
+		strayTrials: trimmed.ok ? listStray(trimmed.kept) : null,
+		geometry: isFlat(scaled.cov) ? null : computeCloudGeometry(task, scaled)
+	};
+}
+
+function computeFactors(input: z.output<typeof cloudInputSchema>) {
+	const { probability: share, confidence } = input;
+	const counts = { trialCount: input.trials.length, variableCount: input.task.variables.length };
+	return {
+		coverage: computeCoverageFactor({ ...counts, probability: share }),
+		mean: computeMeanFactor({ ...counts, probability: share }),
+		nextTrial: computeNextTrialFactor({ ...counts, probability: share }),
+		tolerance: computeToleranceFactor({ ...counts, share, confidence })
+	};
+}
+
+/** Numbers of the trials that trimming leaves out; the first is 1. */
+function listStray(kept: readonly boolean[]): number[] {
+	return kept.flatMap((isKept, i) => (isKept ? [] : [i + 1]));
+}
+
+function isFlat(covariance: Matrix): boolean {
+	return covariance.some((values, i) => !((values[i] ?? 0) > 0));
+}

@@ -1,0 +1,48 @@
+import { z } from 'zod';
+import { createTask } from '../tasks/create-task.ts';
+import { parseFormula } from '../tasks/formula/parse-formula.ts';
+import { taskRecordSchema } from '../tasks/task-record.ts';
+
+/** A task whose formula, if it has one, can be read. */
+export const readableTaskSchema = taskRecordSchema.superRefine((record, context) => {
+	if (record.type !== 'formula') return;
+	const names = record.variables.map(({ name }) => name);
+	const parsed = parseFormula(record.formula, names);
+	if (parsed.ok) return;
+	const message = `character ${parsed.position + 1}: ${parsed.message}`;
+	context.addIssue({ code: 'custom', path: ['formula'], message });
+});
+
+/** A task and trials of it, in task units, one value for each variable. */
+export const trialsInputSchema = z
+	.strictObject({
+		task: readableTaskSchema,
+		trials: z.array(z.array(z.number())).min(1)
+	})
+	.superRefine(({ task, trials }, context) => {
+		trials.forEach((trial, i) => {
+			if (trial.length === task.variables.length) return;
+			const message = `has ${trial.length} values, the task has ${task.variables.length} variables`;
+			context.addIssue({ code: 'custom', path: ['trials', i], message });
+		});
+	});
+
+export type TrialsInput = z.output<typeof trialsInputSchema>;
+
+/** Result and hit of each trial. */
+export function computeOutcome({ task: record, trials }: TrialsInput) {
+	const task = createTask(record);
+	const results = trials.map((trial) => task.evaluate(trial));
+	const defined = results.filter(Number.isFinite);
+	const hits = results.map((result) => Math.abs(result) <= task.tolerance);
+	const total = defined.reduce((sum, result) => sum + Math.abs(result), 0);
+	return {
+		unit: task.resultUnit,
+		trialCount: trials.length,
+		hitCount: hits.filter(Boolean).length,
+		undefinedResultCount: trials.length - defined.length,
+		meanAbsoluteResult: defined.length > 0 ? total / defined.length : null,
+		results: results.map((result) => (Number.isFinite(result) ? result : null)),
+		hits
+	};
+}
