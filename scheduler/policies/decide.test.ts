@@ -150,7 +150,8 @@ describe('replayDecision', () => {
 	it('says on another runtime that only the runtime differs', () => {
 		const stored = decide();
 		const shifted = structuredClone(stored);
-		if (shifted.parameters.region) shifted.parameters.region.k += 1e-12;
+		const { region } = shifted.parameters;
+		if (region?.k) region.k += 1e-12;
 		const other = { ...versions, runtimeVersion: 'node 22' };
 		const replay = replayDecision({
 			...{ stored: shifted, inputs: stored.inputs, versions: other, digest }
