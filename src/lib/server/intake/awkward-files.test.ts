@@ -46,7 +46,7 @@ describe('awkward trial files', () => {
 		);
 	});
 
-	it.each(manifest.files)('$file ends in a plain answer', (entry) => {
+	it.each(manifest.files)('$file ends in a plain answer', { timeout: 60_000 }, (entry) => {
 		const { isRefused, words } = readOut(entry);
 		if (isRefused) expect(words).not.toBe('');
 		expect(words.length).toBeLessThan(60_000);

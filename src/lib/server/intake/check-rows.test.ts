@@ -101,6 +101,21 @@ describe('checkRows', () => {
 		expect(check(text).blocks[0]?.trials[0]?.execution).toEqual([2.5, 0.2]);
 	});
 
+	it('needs no visit column in a study of one visit', () => {
+		const checked = check(`${header.replace('day,', '')}\nTW-001,1,1,2.5,0.2\n`);
+		expect(checked.faults).toEqual([]);
+		expect(checked.blocks[0]?.visitNumber).toBe(1);
+	});
+
+	it('asks for the visit column in a study of several', () => {
+		const two = roster([
+			[1, visit()],
+			[2, visit()]
+		]);
+		const text = `${header.replace('day,', '')}\nTW-001,1,1,2.5,0.2\n`;
+		expect(codes(check(text, two).faults)).toEqual(['column-missing']);
+	});
+
 	it('refuses the same trial twice', () => {
 		const row = 'TW-001,1,1,1,2.5,0.2';
 		expect(codes(check(`${header}\n${row}\n${row}\n`).faults)).toContain('trial-twice');

@@ -60,6 +60,8 @@ class FileCheck {
 	private readonly keys: Partial<Record<KeyUse, number>> = {};
 	private readonly values: { index: number; factor: number; column: string }[] = [];
 	private suppressed = 0;
+	/** In a study of one visit the file need not name it. */
+	private readonly onlyVisit: number | null;
 
 	constructor(
 		private readonly table: Table,
@@ -67,6 +69,7 @@ class FileCheck {
 		private readonly roster: Roster
 	) {
 		this.warnings.push(...table.warnings);
+		this.onlyVisit = findOnlyVisit(roster);
 	}
 
 	checkColumns(): void {
@@ -75,6 +78,7 @@ class FileCheck {
 		);
 		uses.forEach((use, index) => this.checkColumn(use, index));
 		for (const key of required) {
+			if (key === 'visit' && this.onlyVisit !== null) continue;
 			if (this.keys[key] === undefined) {
 				this.fault(
 					'column-missing',
@@ -175,7 +179,8 @@ class FileCheck {
 	private findBlock(line: number, fields: string[]): CheckedBlock | null {
 		const code = fields[this.keys.participant ?? -1] ?? '';
 		const person = this.roster.people.get(code);
-		const visitNumber = this.readCount('visit', line, fields);
+		const visitNumber =
+			this.keys.visit === undefined ? this.onlyVisit : this.readCount('visit', line, fields);
 		const blockNumber = this.readCount('block', line, fields);
 		if (!person)
 			return this.keyFault(
@@ -365,6 +370,11 @@ class FileCheck {
 			blankCounts: this.blankCounts
 		};
 	}
+}
+
+function findOnlyVisit({ people }: Roster): number | null {
+	const [numbers] = [...people.values()].map((visits) => [...visits.keys()]);
+	return numbers?.length === 1 ? (numbers[0] ?? null) : null;
 }
 
 function findMissing(inOrder: TrialRow[]): number[] {

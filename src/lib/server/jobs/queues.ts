@@ -1,3 +1,3 @@
 /** Names of the job queues; the migration makes them, the worker works them. */
-export const queueNames = ['send-mail', 'decide', 'after-visit'] as const;
+export const queueNames = ['decide'] as const;
 export type QueueName = (typeof queueNames)[number];

@@ -1,3 +1,4 @@
+import { workDecide, workDueDecisions } from '$lib/server/decisions/decision-work';
 import { workMail } from '$lib/server/invitations/mail-work';
 import type { QueueName } from './queues';
 import type { WorkContext } from './start-work';
@@ -9,7 +10,10 @@ type QueueWork = {
 type DueWork = { name: string; work(context: WorkContext): Promise<void> };
 
 /** What each queue's jobs do. */
-export const queueWork: QueueWork[] = [];
+export const queueWork: QueueWork[] = [{ queue: 'decide', work: workDecide }];
 
 /** What falls due by the clock, looked at every second. */
-export const dueWork: DueWork[] = [{ name: 'send-mail', work: workMail }];
+export const dueWork: DueWork[] = [
+	{ name: 'decisions', work: workDueDecisions },
+	{ name: 'send-mail', work: workMail }
+];

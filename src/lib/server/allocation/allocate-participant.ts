@@ -1,0 +1,102 @@
+import { and, count, eq, sql } from 'drizzle-orm';
+import { deriveEntry } from '$scheduler/allocation/permuted-blocks';
+import type { Clock } from '$lib/server/clock';
+import type { Settings } from '$lib/server/config';
+import type { Transaction } from '$lib/server/db/client';
+import { allocation, allocationSeal, participant, protocolVersion } from '$lib/server/db/schema';
+import { createAllocationStream, openAllocation } from '$lib/server/keys/allocation-seal';
+import { recordEvent } from '$lib/server/record/record-event';
+
+type Services = { clock: Clock; settings: Pick<Settings, 'OVALRY_ALLOCATION_KEY'> };
+
+const quarterHourMs = 900_000;
+
+/**
+ * Releases the next entry of the sealed sequence for one person whose baseline passed, and gives
+ * them an earliest start, drawn from one distribution whatever the arm. Only that entry is derived;
+ * nothing is kept from which a later one could be read.
+ *
+ * @returns false while the person is not ready, is allocated already, or nothing is sealed
+ */
+export async function allocateParticipant(
+	tx: Transaction,
+	{ clock, settings }: Services,
+	participantId: string
+): Promise<boolean> {
+	const person = await loadReady(tx, participantId);
+	if (!person) return false;
+	await tx.execute(sql`select pg_advisory_xact_lock(hashtext(${`allocation:${person.studyId}`}))`);
+	const seal = await loadSeal(tx, person);
+	if (!seal) return false;
+	const [taken] = await tx
+		.select({ n: count() })
+		.from(allocation)
+		.where(eq(allocation.sealId, seal.id));
+	const sequenceIndex = taken?.n ?? 0;
+	const { seed } = openAllocation(settings.OVALRY_ALLOCATION_KEY, person.studyId, {
+		sealed: seal.sealedSeed,
+		commitment: seal.commitment
+	});
+	const { armId } = deriveEntry({
+		scheme: {
+			arms: seal.method.arms.map((id) => ({ id, weight: 1 })),
+			blockSizes: seal.method.blockSizes
+		},
+		stratum: 'all',
+		index: sequenceIndex,
+		openStream: (name) => createAllocationStream(seed, name)
+	});
+	const at = new Date(clock.now());
+	const entry = { participantId, studyId: person.studyId, sealId: seal.id, sequenceIndex };
+	await tx.insert(allocation).values({ ...entry, arm: armId, allocatedAt: at });
+	const earliestStartAt = drawEarliestStart(seed, { sequenceIndex, at, ...person.earliest });
+	await tx
+		.update(participant)
+		.set({ state: 'allocated', allocatedAt: at, earliestStartAt })
+		.where(eq(participant.id, participantId));
+	await recordEvent(
+		tx,
+		clock,
+		{ kind: 'system' },
+		{
+			kind: 'participant-allocated',
+			item: 'participant-state',
+			studyId: person.studyId,
+			participantId
+		}
+	);
+	return true;
+}
+
+async function loadReady(tx: Transaction, participantId: string) {
+	const [row] = await tx
+		.select({
+			studyId: participant.studyId,
+			hash: protocolVersion.hash,
+			content: protocolVersion.content
+		})
+		.from(participant)
+		.innerJoin(protocolVersion, eq(protocolVersion.id, participant.protocolVersionId))
+		.where(and(eq(participant.id, participantId), eq(participant.state, 'baseline-done')))
+		.for('update', { of: participant });
+	if (!row?.hash) return null;
+	return { studyId: row.studyId, hash: row.hash, earliest: row.content.earliestStartHours };
+}
+
+async function loadSeal(tx: Transaction, { studyId, hash }: { studyId: string; hash: string }) {
+	const [seal] = await tx
+		.select()
+		.from(allocationSeal)
+		.where(and(eq(allocationSeal.studyId, studyId), eq(allocationSeal.protocolHash, hash)));
+	return seal ?? null;
+}
+
+type Draw = { sequenceIndex: number; at: Date; min: number; max: number };
+
+/** Uniform between the protocol's hours after allocation, on the next quarter of an hour. */
+function drawEarliestStart(seed: Uint8Array, { sequenceIndex, at, min, max }: Draw): Date {
+	const stream = createAllocationStream(seed, `earliest-start ${sequenceIndex}`);
+	const hours = min + (stream.nextUint32() / 2 ** 32) * (max - min);
+	const ms = at.getTime() + hours * 3_600_000;
+	return new Date(Math.ceil(ms / quarterHourMs) * quarterHourMs);
+}
