@@ -1,6 +1,7 @@
 import { fitLag } from './shift-lag.ts';
 import { computeFollowedShare, isHitRateLost } from './shift-follow.ts';
 import type { ShiftRule, ShiftState } from './shift-rule.ts';
+import { copyShiftState, createShiftState } from './shift-state.ts';
 
 export interface ShiftLogEntry {
 	/** 1-based count of trials under the rule. */
@@ -48,7 +49,7 @@ export class TargetShift {
 
 	constructor(rule: ShiftRule, state: ShiftState | null = null) {
 		this.rule = rule;
-		this.state = structuredCopy(state ?? createShiftState(rule));
+		this.state = copyShiftState(state ?? createShiftState(rule));
 	}
 
 	get level(): number {
@@ -57,7 +58,7 @@ export class TargetShift {
 
 	/** A copy of everything that the next trial depends on. */
 	dump(): ShiftState {
-		return structuredCopy(this.state);
+		return copyShiftState(this.state);
 	}
 
 	observe({ error, hit, leftToday, isLastOfBlock }: ObservedTrial): void {
@@ -184,22 +185,4 @@ export class TargetShift {
 			followedLow: followed?.low ?? null
 		});
 	}
-}
-
-/** The state before the first trial. */
-export function createShiftState(rule: ShiftRule): ShiftState {
-	return {
-		...{ theta: 0, passed: 0, previous: 0, hold: 0, errors: [], hits: [], stalls: 0 },
-		...{ status: 'run', trial: 0, holdMax: rule.holdMax, rate: [], fit: [], holds: 0 }
-	};
-}
-
-function structuredCopy(state: ShiftState): ShiftState {
-	return {
-		...state,
-		errors: [...state.errors],
-		hits: [...state.hits],
-		rate: [...state.rate],
-		fit: state.fit.map(({ step, errors }) => ({ step, errors: [...errors] }))
-	};
 }

@@ -1,5 +1,5 @@
 import type { EscapeStatistics } from '../perturbations/escape-statistics.ts';
-import type { PlacementRung } from '../perturbations/place-region.ts';
+import type { PlacementRung } from '../perturbations/weigh-share.ts';
 import type { ShiftLogEntry } from '../perturbations/target-shift.ts';
 import type { BandFacts } from './change-level.ts';
 import type { GateStatistics } from './gates.ts';

@@ -1,4 +1,5 @@
-import { createShiftState, TargetShift } from '../../perturbations/target-shift.ts';
+import { createShiftState } from '../../perturbations/shift-state.ts';
+import { TargetShift } from '../../perturbations/target-shift.ts';
 import type { ActiveBlock } from '../policy-memory.ts';
 import type { Answer, Turn } from '../turn.ts';
 

@@ -1,4 +1,4 @@
-import type { PlacementRung, ShareRefusal } from '../../perturbations/place-region.ts';
+import type { PlacementRung, ShareRefusal } from '../../perturbations/weigh-share.ts';
 import type { PlacementSettings } from '../../perturbations/region-settings.ts';
 import { formatDecimal, formatPercent } from './read-values.ts';
 
