@@ -59,8 +59,9 @@ const TELLINGS: Tellings = {
 	},
 	nights: ({ visitNumber, previousVisitNumber, nights, minNights }, context) => {
 		const [visit, before] = [labelOf(visitNumber, context), labelOf(previousVisitNumber, context)];
-		const between = nights === 1 ? '1 night lies' : `${nights} nights lie`;
-		const text = `Between ${before} and ${visit} ${between}; the protocol wants at least ${minNights}.`;
+		const count =
+			nights === 0 ? 'No night lies' : nights === 1 ? '1 night lies' : `${nights} nights lie`;
+		const text = `${count} between ${before} and ${visit}; the protocol wants at least ${minNights}.`;
 		return { short: 'night between', name: 'Night between', text };
 	},
 	order: ({ visitNumber, previousVisitNumber, previousEndMs }, context) => {

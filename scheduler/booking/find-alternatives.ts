@@ -52,7 +52,7 @@ const APART_MS = HOUR_MS;
  * Units: epoch milliseconds; hours.
  * Method: the exact search of `findChains` with a price on every visit that leaves its place.
  * Source: method sheet "Booking" 7. Accuracy: exact for a grid of quarter hours;
- * find-alternatives.test.ts.
+ * judge-starts.test.ts.
  * @throws RangeError when the chain does not hold the visit, or holds it as fixed
  * @example findAlternatives({ problem, chain, visitNumber: 6, wantedStartMs, horizonEndMs })
  */

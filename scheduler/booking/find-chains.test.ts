@@ -72,7 +72,7 @@ describe('finder and brute force agree', () => {
 				.map((c) => priceOf(problem, c));
 			expect(best?.cost.total).toBeCloseTo(Math.min(...prices), 9);
 		});
-		fc.assert(property, { seed: 31, numRuns: 60 });
+		fc.assert(property, { seed: 31, numRuns: 50 });
 		expect(foundCount).toBeGreaterThan(10);
 		expect(noneCount).toBeGreaterThan(10);
 	}, 60_000);
@@ -158,7 +158,8 @@ describe('the usual study: baseline, six practice days, retention', () => {
 	});
 });
 
-describe('when no chain keeps every rule', () => {
+// Twenty seconds: what would help is searched for once for each rule, on machines under any load.
+describe('when no chain keeps every rule', { timeout: 20_000 }, () => {
 	it('a Monday, Wednesday and Friday person cannot follow a daily gap', () => {
 		const days = workingHours(9, 17).filter(({ weekday }) => [1, 3, 5].includes(weekday));
 		const participant = makeParticipant({ availability: days });

@@ -4,10 +4,18 @@ import type { FindChainsOptions } from './find-chains.ts';
 import { layOutFreeTime } from './free-time.ts';
 import { listLeads } from './list-leads.ts';
 import { createSearchSpace } from './search-space.ts';
-import type { BookingProblem, GapRule, LabCalendar, Weekday, WeeklyWindow } from './types.ts';
+import type {
+	BookingProblem,
+	ClockWindow,
+	GapRule,
+	LabCalendar,
+	Participant,
+	Weekday,
+	WeeklyWindow
+} from './types.ts';
 
-/** The same problem without one rule. */
-type Relaxation = (problem: BookingProblem) => BookingProblem;
+/** The same problem without one rule; null where the rule takes nothing away. */
+type Relaxation = (problem: BookingProblem) => BookingProblem | null;
 
 const EVERY_DAY: readonly Weekday[] = [1, 2, 3, 4, 5, 6, 7];
 const ALWAYS: WeeklyWindow[] = EVERY_DAY.map((weekday) => {
@@ -23,15 +31,15 @@ const RELAXATIONS: readonly [RuleName, Relaxation][] = [
 	['same-time', (problem) => withWindow(problem, { sameTimeToleranceMinutes: null })],
 	['clock-window', (problem) => withWindow(problem, { earliestMinute: 0, latestMinute: 1439 })],
 	['weekday', ({ plan, ...rest }) => ({ ...rest, plan: { ...plan, weekdays: EVERY_DAY } })],
-	['holiday', (problem) => withCalendar(problem, () => ({ holidays: [] }))],
-	['rig-hours', (problem) => withCalendar(problem, ({ rigs }) => ({ rigs: openAlways(rigs) }))],
-	['rig-busy', (problem) => withCalendar(problem, ({ rigs }) => ({ rigs: clear(rigs) }))],
-	['room-busy', (problem) => withCalendar(problem, ({ rooms }) => ({ rooms: clear(rooms) }))],
+	['holiday', (problem) => withCalendar(problem, { holidays: [] })],
+	['rig-hours', (problem) => withCalendar(problem, { rigs: openAlways(problem.calendar.rigs) })],
+	['rig-busy', (problem) => withCalendar(problem, { rigs: clear(problem.calendar.rigs) })],
+	['room-busy', (problem) => withCalendar(problem, { rooms: clear(problem.calendar.rooms) })],
 	[
 		'staff-hours',
-		(problem) => withCalendar(problem, ({ staff }) => ({ staff: openAlways(staff) }))
+		(problem) => withCalendar(problem, { staff: openAlways(problem.calendar.staff) })
 	],
-	['staff-busy', (problem) => withCalendar(problem, ({ staff }) => ({ staff: clear(staff) }))]
+	['staff-busy', (problem) => withCalendar(problem, { staff: clear(problem.calendar.staff) })]
 ];
 
 /**
@@ -46,7 +54,10 @@ const RELAXATIONS: readonly [RuleName, Relaxation][] = [
  * @example findWhatWouldHelp({ problem, horizonEndMs }) // ['availability']
  */
 export function findWhatWouldHelp(options: Omit<FindChainsOptions, 'chainCount'>): RuleName[] {
-	const helpful = RELAXATIONS.filter(([, relax]) => hasChain(relax(options.problem), options));
+	const helpful = RELAXATIONS.filter(([, relax]) => {
+		const relaxed = relax(options.problem);
+		return relaxed !== null && hasChain(relaxed, options);
+	});
 	return helpful.map(([rule]) => rule);
 }
 
@@ -65,7 +76,10 @@ function allowOneMorePause(rule: GapRule): GapRule {
 	return { ...rule, allowedPauses: { ...allowedPauses, count: allowedPauses.count + 1 } };
 }
 
-function withGaps({ plan, ...rest }: BookingProblem, change: (rule: GapRule) => GapRule) {
+function withGaps(
+	{ plan, ...rest }: BookingProblem,
+	change: (rule: GapRule) => GapRule
+): BookingProblem {
 	const visits = plan.visits.map(({ gapBefore, ...visit }) => ({
 		...visit,
 		gapBefore: gapBefore && change(gapBefore)
@@ -73,25 +87,25 @@ function withGaps({ plan, ...rest }: BookingProblem, change: (rule: GapRule) => 
 	return { ...rest, plan: { ...plan, visits } };
 }
 
-function withWindow(
-	{ plan, ...rest }: BookingProblem,
-	change: Partial<BookingProblem['plan']['clockWindow']>
-): BookingProblem {
-	return { ...rest, plan: { ...plan, clockWindow: { ...plan.clockWindow, ...change } } };
+function withWindow({ plan, ...rest }: BookingProblem, change: Partial<ClockWindow>) {
+	const clockWindow = changed(plan.clockWindow, change);
+	return clockWindow && { ...rest, plan: { ...plan, clockWindow } };
 }
 
-function withParticipant(
-	{ participant, ...rest }: BookingProblem,
-	change: Partial<BookingProblem['participant']>
-): BookingProblem {
-	return { ...rest, participant: { ...participant, ...change } };
+function withParticipant({ participant, ...rest }: BookingProblem, change: Partial<Participant>) {
+	const freer = changed(participant, change);
+	return freer && { ...rest, participant: freer };
 }
 
-function withCalendar(
-	{ calendar, ...rest }: BookingProblem,
-	change: (calendar: LabCalendar) => Partial<LabCalendar>
-): BookingProblem {
-	return { ...rest, calendar: { ...calendar, ...change(calendar) } };
+function withCalendar({ calendar, ...rest }: BookingProblem, change: Partial<LabCalendar>) {
+	const freer = changed(calendar, change);
+	return freer && { ...rest, calendar: freer };
+}
+
+/** The whole with parts replaced; null when that changes nothing. */
+function changed<Whole extends object>(whole: Whole, change: Partial<Whole>): Whole | null {
+	const result = { ...whole, ...change };
+	return JSON.stringify(result) === JSON.stringify(whole) ? null : result;
 }
 
 function openAlways<One>(resources: readonly One[]): (One & { hours: WeeklyWindow[] })[] {

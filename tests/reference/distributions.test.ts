@@ -32,9 +32,9 @@ import {
 } from '$scheduler/statistics/wilson-interval.ts';
 
 // Tail probabilities by mpmath with 30 to 50 digits, cross-checked with SciPy: make-distributions.py.
-const { cases } = readJson('distributions.json');
+const { cases } = readJson<DistributionCases>('distributions.json');
 // Values printed by R 4.2.2 with the function named in each case.
-const fromR = readJson('r-distributions-and-power.json').cases;
+const fromR = readJson<{ cases: RCases }>('r-distributions-and-power.json').cases;
 
 const RELATIVE = 1e-10;
 
@@ -89,13 +89,13 @@ describe('values of R 4.2.2', () => {
 	it('chi-square quantiles equal qchisq', () => {
 		const { inputs, expected } = fromR['quantile-chisq'];
 		inputs.p.forEach((p: number, i: number) => {
-			expectRelative(computeChiSquareQuantile(p, inputs.df[i]), expected.q[i], 1e-9);
+			expectRelative(computeChiSquareQuantile(p, at(inputs.df, i)), at(expected.q, i), 1e-9);
 		});
 	});
 	it('Student t quantiles equal qt', () => {
 		const { inputs, expected } = fromR['quantile-t'];
 		inputs.p.forEach((p: number, i: number) => {
-			expectRelative(computeStudentTQuantile(p, inputs.df[i]), expected.q[i], 1e-8);
+			expectRelative(computeStudentTQuantile(p, at(inputs.df, i)), at(expected.q, i), 1e-8);
 		});
 	});
 	it('the Wilson interval equals prop.test without continuity correction', () => {
@@ -113,7 +113,35 @@ describe('values of R 4.2.2', () => {
 	});
 });
 
+type DistributionCases = {
+	cases: {
+		normal: TailCase[];
+		normalQuantile: { p: number; x: number }[];
+		chiSquare: TailCase[];
+		f: TailCase[];
+		studentT: TailCase[];
+		noncentralT: (TailCase & { ncp: number })[];
+	};
+};
+
+type RCases = {
+	'quantile-chisq': QuantileCase;
+	'quantile-t': QuantileCase;
+	'binomial-intervals': {
+		inputs: { x: number; n: number; level: number };
+		expected: { wilson: [number, number] };
+	};
+};
+
+type QuantileCase = { inputs: { p: number[]; df: number[] }; expected: { q: number[] } };
+
 type TailCase = { x: number; df: number; df1: number; df2: number; lower: number; upper: number };
+
+function at(values: readonly number[], index: number): number {
+	const value = values[index];
+	if (value === undefined) throw new RangeError(`the case has no value ${index}`);
+	return value;
+}
 
 /** Near 1 a probability has too few digits left to lead back to its point. */
 function isLowerTail({ lower }: TailCase): boolean {
@@ -125,6 +153,6 @@ function expectRelative(got: number, expected: number, relative = RELATIVE): voi
 	expect(error, `got ${got}, expected ${expected}`).toBeLessThanOrEqual(relative);
 }
 
-function readJson(name: string) {
+function readJson<Content>(name: string): Content {
 	return JSON.parse(readFileSync(new URL(`data/${name}`, import.meta.url), 'utf8'));
 }
