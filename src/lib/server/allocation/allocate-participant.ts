@@ -3,9 +3,16 @@ import { deriveEntry } from '$scheduler/allocation/permuted-blocks';
 import type { Clock } from '$lib/server/clock';
 import type { Settings } from '$lib/server/config';
 import type { Transaction } from '$lib/server/db/client';
-import { allocation, allocationSeal, participant, protocolVersion } from '$lib/server/db/schema';
+import {
+	allocation,
+	participant,
+	protocolVersion,
+	type AllocationMethod
+} from '$lib/server/db/schema';
 import { createAllocationStream, openAllocation } from '$lib/server/keys/allocation-seal';
+import { isPaused } from '$lib/server/pauses/is-paused';
 import { recordEvent } from '$lib/server/record/record-event';
+import { findSeal } from './find-seal';
 
 type Services = { clock: Clock; settings: Pick<Settings, 'OVALRY_ALLOCATION_KEY'> };
 
@@ -16,7 +23,7 @@ const quarterHourMs = 900_000;
  * them an earliest start, drawn from one distribution whatever the arm. Only that entry is derived;
  * nothing is kept from which a later one could be read.
  *
- * @returns false while the person is not ready, is allocated already, or nothing is sealed
+ * @returns false while the person is not ready, is allocated already, is paused, or nothing is sealed
  */
 export async function allocateParticipant(
 	tx: Transaction,
@@ -24,9 +31,9 @@ export async function allocateParticipant(
 	participantId: string
 ): Promise<boolean> {
 	const person = await loadReady(tx, participantId);
-	if (!person) return false;
+	if (!person || (await isPaused(tx, person.studyId, participantId))) return false;
 	await tx.execute(sql`select pg_advisory_xact_lock(hashtext(${`allocation:${person.studyId}`}))`);
-	const seal = await loadSeal(tx, person);
+	const seal = await findSeal(tx, person.studyId, person.hash);
 	if (!seal) return false;
 	const [taken] = await tx
 		.select({ n: count() })
@@ -37,15 +44,7 @@ export async function allocateParticipant(
 		sealed: seal.sealedSeed,
 		commitment: seal.commitment
 	});
-	const { armId } = deriveEntry({
-		scheme: {
-			arms: seal.method.arms.map((id) => ({ id, weight: 1 })),
-			blockSizes: seal.method.blockSizes
-		},
-		stratum: 'all',
-		index: sequenceIndex,
-		openStream: (name) => createAllocationStream(seed, name)
-	});
+	const armId = deriveArm(seed, seal.method, sequenceIndex);
 	const at = new Date(clock.now());
 	const entry = { participantId, studyId: person.studyId, sealId: seal.id, sequenceIndex };
 	await tx.insert(allocation).values({ ...entry, arm: armId, allocatedAt: at });
@@ -54,18 +53,34 @@ export async function allocateParticipant(
 		.update(participant)
 		.set({ state: 'allocated', allocatedAt: at, earliestStartAt })
 		.where(eq(participant.id, participantId));
-	await recordEvent(
-		tx,
-		clock,
-		{ kind: 'system' },
-		{
-			kind: 'participant-allocated',
-			item: 'participant-state',
-			studyId: person.studyId,
-			participantId
-		}
-	);
+	const system = { kind: 'system' } as const;
+	const { studyId } = person;
+	const kind = 'participant-allocated';
+	await recordEvent(tx, clock, system, { kind, item: 'participant-state', studyId, participantId });
+	await recordEvent(tx, clock, system, {
+		kind: 'arm-released',
+		item: 'arm',
+		studyId,
+		participantId,
+		body: { arm: armId, sequenceIndex, protocolHash: person.hash }
+	});
 	return true;
+}
+
+/** The arm of one entry. A study of one arm has nothing to draw. */
+function deriveArm(seed: Uint8Array, method: AllocationMethod, index: number): string {
+	const [only, second] = method.arms;
+	if (only !== undefined && second === undefined) return only;
+	const { armId } = deriveEntry({
+		scheme: {
+			arms: method.arms.map((id) => ({ id, weight: 1 })),
+			blockSizes: method.blockSizes
+		},
+		stratum: 'all',
+		index,
+		openStream: (name) => createAllocationStream(seed, name)
+	});
+	return armId;
 }
 
 async function loadReady(tx: Transaction, participantId: string) {
@@ -81,14 +96,6 @@ async function loadReady(tx: Transaction, participantId: string) {
 		.for('update', { of: participant });
 	if (!row?.hash) return null;
 	return { studyId: row.studyId, hash: row.hash, earliest: row.content.earliestStartHours };
-}
-
-async function loadSeal(tx: Transaction, { studyId, hash }: { studyId: string; hash: string }) {
-	const [seal] = await tx
-		.select()
-		.from(allocationSeal)
-		.where(and(eq(allocationSeal.studyId, studyId), eq(allocationSeal.protocolHash, hash)));
-	return seal ?? null;
 }
 
 type Draw = { sequenceIndex: number; at: Date; min: number; max: number };
