@@ -1,4 +1,5 @@
 import { and, count, eq, min } from 'drizzle-orm';
+import { roleWords } from '$lib/waiting/role-words';
 import { sortByUrgency, type WaitingItem } from '$lib/waiting/waiting-item';
 import type { Grant } from '$lib/server/access/require-permission';
 import type { Clock } from '$lib/server/clock';
@@ -49,16 +50,6 @@ export async function loadCoordinatorItems(
 	return [...items, ...chains.filter(({ participantId }) => !missed.has(participantId))];
 }
 
-const roleNames: Record<StudyRole, string> = {
-	investigator: 'the investigator',
-	coordinator: 'the coordinator',
-	operator: 'the operator',
-	statistician: 'the statistician',
-	'unblinded-statistician': 'the unblinded statistician',
-	approver: 'the approver',
-	monitor: 'the monitor'
-};
-
 const gateActs: Partial<Record<MissingGate['code'], { label: string; path: string }>> = {
 	'not-frozen': { label: 'Open the protocol', path: 'protocol' },
 	'not-signed': { label: 'Open the power report', path: 'power' },
@@ -70,7 +61,7 @@ const gateActs: Partial<Record<MissingGate['code'], { label: string; path: strin
 function gateItem(grant: Grant<'today:read'>, gate: MissingGate): WaitingItem {
 	const isMine = grant.roles.includes(gate.whose);
 	const act = isMine ? gateActs[gate.code] : undefined;
-	const whose = isMine ? 'This step is yours.' : `This is the step of ${roleNames[gate.whose]}.`;
+	const whose = isMine ? 'This step is yours.' : `This is the step of ${roleWords[gate.whose]}.`;
 	return {
 		key: `gate ${gate.code}`,
 		kind: 'gate',
