@@ -1,15 +1,12 @@
 import type { CloudData, DrawnEllipse, Point } from '$lib/charts/cloud-data';
-import {
-	placeRegion,
-	type Exit,
-	type PlacementRung
-} from '$scheduler/perturbations/place-region.ts';
+import { placeRegion } from '$scheduler/perturbations/place-region.ts';
 import { preparePlacement, type Cloud } from '$scheduler/perturbations/prepare-placement.ts';
 import {
 	placementSettingsSchema,
 	type PlacementSettings,
 	type Region
 } from '$scheduler/perturbations/region-settings.ts';
+import type { Exit, PlacementRung } from '$scheduler/perturbations/weigh-share.ts';
 import { createTask } from '$scheduler/tasks/create-task.ts';
 import { evaluateErrorGrid } from '$scheduler/tasks/error-grid.ts';
 import { createScaledTask, type ScaledTask } from '$scheduler/tasks/scaled-task.ts';

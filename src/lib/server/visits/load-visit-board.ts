@@ -14,6 +14,8 @@ import {
 	room,
 	staff
 } from '$lib/server/db/schema';
+import type { PeopleKeys } from '$lib/server/keys/people-keys';
+import { loadFirstNames } from '$lib/server/people/load-first-names';
 import { startOfLocalDay } from '$lib/time/start-of-local-day';
 
 /** What one block shows to somebody who must not know what it is. */
@@ -26,6 +28,8 @@ export type BoardBlock = {
 export type BoardVisit = {
 	bookingId: string;
 	code: string;
+	/** First name only, where the role may know it; null otherwise. */
+	firstName: string | null;
 	visitNumber: number;
 	label: string;
 	startsAtMs: number;
@@ -48,7 +52,8 @@ export const insideVisitReadyMs = 5_000;
 export async function loadVisitBoard(
 	db: Database,
 	clock: Clock,
-	grant: Grant<'visit:run'>
+	grant: Grant<'visit:run'>,
+	keys: PeopleKeys
 ): Promise<VisitBoard> {
 	const zone = await loadZone(db, grant.labId);
 	const from = startOfLocalDay(clock.now(), zone);
@@ -92,6 +97,9 @@ export async function loadVisitBoard(
 		db,
 		rows.map((row) => row.participantId)
 	);
+	const names = grant.sees('contact').has('first-name')
+		? await loadFirstNames(db, keys, [...new Set(rows.map((row) => row.participantId))])
+		: new Map<string, string>();
 	const visits = rows.flatMap((row): BoardVisit[] => {
 		const plan = row.visits.find((visit) => visit.number === row.visitNumber);
 		if (!plan || (row.state !== 'booked' && row.state !== 'attended')) return [];
@@ -111,6 +119,7 @@ export async function loadVisitBoard(
 			{
 				bookingId: row.bookingId,
 				code: row.code,
+				firstName: names.get(row.participantId) ?? null,
 				visitNumber: row.visitNumber,
 				label: plan.label,
 				startsAtMs: row.during.startsAt.getTime(),

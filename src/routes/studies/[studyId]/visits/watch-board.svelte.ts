@@ -8,6 +8,7 @@ const blockSchema = z.object({
 const visitSchema = z.object({
 	bookingId: z.string(),
 	code: z.string(),
+	firstName: z.string().nullable(),
 	visitNumber: z.number(),
 	label: z.string(),
 	startsAtMs: z.number(),
