@@ -4,6 +4,7 @@
 // anything is installed.
 import { fileURLToPath } from 'node:url';
 import { helpText, readArguments } from './start/arguments.mjs';
+import { watchCaller } from './start/caller.mjs';
 import { describeFailure, Interrupted, StartFailure } from './start/failure.mjs';
 import { createProcessList } from './start/process-list.mjs';
 import { runOvalry } from './start/run.mjs';
@@ -31,6 +32,8 @@ for (const [signal, code] of Object.entries({ SIGINT: 0, SIGTERM: 0, SIGHUP: 0 }
 		void end(code);
 	});
 }
+
+watchCaller(() => void end(0));
 
 try {
 	requireNode();

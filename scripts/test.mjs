@@ -2,6 +2,7 @@
 // Runs the quick tier of tests, or the part of it that is named. Uses Node's own modules only: it
 // must run before anything is installed.
 import { fileURLToPath } from 'node:url';
+import { watchCaller } from './start/caller.mjs';
 import { describeFailure, Interrupted } from './start/failure.mjs';
 import { prepareCheckout } from './start/prepare.mjs';
 import { createProcessList } from './start/process-list.mjs';
@@ -28,6 +29,8 @@ function end(code) {
 }
 
 for (const signal of ['SIGINT', 'SIGTERM', 'SIGHUP']) process.on(signal, () => void end(130));
+
+watchCaller(() => void end(130));
 
 try {
 	process.umask(0o022);
