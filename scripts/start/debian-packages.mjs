@@ -7,7 +7,8 @@ import { diskFull, isDiskFull, StartFailure } from './failure.mjs';
  * what an administrator should type.
  *
  * @param {{ name: string, isThere: () => boolean, what: string }[]} wanted
- * @param {{ processes: object, say: (line: string) => void, isRoot: boolean, path?: string }} context
+ * @param {{ processes: object, say: (line: string) => void, isRoot: boolean, path?: string, etc?: string }} context
+ *   `path` is where apt-get is looked for, `etc` the folder of the system's settings
  */
 export async function requirePackages(wanted, context) {
 	const missing = wanted.filter((one) => !one.isThere());
@@ -30,7 +31,8 @@ export async function requirePackages(wanted, context) {
 }
 
 async function install(names, context) {
-	const environment = { ...process.env, DEBIAN_FRONTEND: 'noninteractive' };
+	const PATH = context.path ?? process.env.PATH;
+	const environment = { ...process.env, PATH, DEBIAN_FRONTEND: 'noninteractive' };
 	const options = { env: environment, name: 'apt-get' };
 	const words = [
 		'-y',
@@ -40,7 +42,7 @@ async function install(names, context) {
 		'--no-install-recommends',
 		...names
 	];
-	const undo = withoutDefaultCluster();
+	const undo = withoutDefaultCluster(context.etc ?? '/etc');
 	try {
 		await context.processes.run('apt-get', ['-q', 'update'], options);
 		const { code, output, errors } = await context.processes.run('apt-get', words, options);
@@ -52,8 +54,8 @@ async function install(names, context) {
 }
 
 /** Debian's package would start a server of its own on port 5432; Ovalry does not want that one. */
-function withoutDefaultCluster() {
-	const folder = '/etc/postgresql-common/createcluster.d';
+function withoutDefaultCluster(etc) {
+	const folder = join(etc, 'postgresql-common/createcluster.d');
 	const file = join(folder, 'ovalry.conf');
 	const wasThere = existsSync(folder);
 	mkdirSync(folder, { recursive: true });

@@ -10,12 +10,12 @@ export async function shutDown(processes) {
 	const begun = Date.now();
 	const others = () => processes.names().filter((name) => name !== 'postgres');
 	processes.signalAll('SIGTERM', others());
-	await until(() => others().length === 0, begun + 1_500);
+	await until(() => others().length === 0, begun + 1_300);
 	processes.signalAll('SIGKILL', others());
 	processes.signalAll('SIGINT', ['postgres']);
-	await until(() => processes.names().length === 0, begun + 2_500);
+	await until(() => processes.names().length === 0, begun + 2_200);
 	processes.signalAll('SIGQUIT', ['postgres']);
-	await until(() => processes.names().length === 0, begun + 2_900);
+	await until(() => processes.names().length === 0, begun + 2_600);
 	processes.signalAll('SIGKILL');
 }
 
