@@ -56,7 +56,7 @@ export function createServices({ processes, folder, account, logs, say }) {
 	async function startAll(list) {
 		for (const service of list) start(service);
 		await Promise.race([
-			Promise.all(list.map((service) => untilAnswers(service, processes, logs))),
+			Promise.all(list.map((service) => untilAnswers(service, { processes, logs, say }))),
 			failed
 		]);
 		for (const service of list) service.isReady = true;
@@ -73,27 +73,28 @@ function ended(service, logFile, code, signal) {
 	);
 }
 
-async function untilAnswers(service, processes, logs) {
+async function untilAnswers(service, { processes, logs, say }) {
 	if (!service.probe) return;
+	const logFile = join(logs, `${service.name}.log`);
 	let until = Date.now() + 60_000;
-	let sawFault = false;
+	let fault = null;
 	while (Date.now() < until) {
 		if (processes.isClosing()) throw new Interrupted();
 		const status = await statusOf(service.probe);
 		if (status !== null && status < 500) return;
-		// It listens already but fails: a little longer, then its log says why.
-		if (status !== null && !sawFault) until = Date.now() + 5_000;
-		sawFault ||= status !== null;
+		// It listens but fails: a little longer, then a person should know, who can use the rest.
+		if (status !== null && fault === null) until = Date.now() + 3_000;
+		fault ??= status;
 		await wait(50);
 	}
-	const words = lastLines(readFileSync(join(logs, `${service.name}.log`), 'utf8'), 3);
-	throw new StartFailure(
-		`The ${service.what} ${sawFault ? 'answers with a fault' : 'does not answer'} at ${service.probe}.`,
-		[
-			...words.split('\n').map((line) => `| ${line}`),
-			`The full log: ${join(logs, `${service.name}.log`)}`
-		]
-	);
+	if (fault !== null)
+		return say(`The ${service.what} answers with a fault (${fault}); see ${logFile}`);
+	throw new StartFailure(`The ${service.what} does not answer at ${service.probe}.`, [
+		...lastLines(readFileSync(logFile, 'utf8'), 3)
+			.split('\n')
+			.map((line) => `| ${line}`),
+		`The full log: ${logFile}`
+	]);
 }
 
 async function statusOf(url) {

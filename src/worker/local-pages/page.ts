@@ -51,6 +51,7 @@ const policy = [
 	"default-src 'none'",
 	"style-src 'self'",
 	"img-src 'self'",
+	"font-src 'self'",
 	"frame-src 'self'",
 	"base-uri 'none'",
 	"frame-ancestors 'none'"

@@ -1,5 +1,7 @@
 /** Style sheet of the local mailbox and the sign-on stand-in: Ovalry's paper, sheet and margin. */
 export const styleSheet = `
+@font-face { font-family: 'Sheet text'; src: url('/text.woff2') format('woff2'); font-weight: 200 800; font-display: swap; }
+@font-face { font-family: 'Sheet heading'; src: url('/heading.woff2') format('woff2'); font-weight: 200 800; font-display: swap; }
 :root {
 	color-scheme: light dark;
 	--paper: #f7f5ef; --sheet: #ffffff; --ink: #1b2430; --muted: #5c6673; --rule: #dad5c8;
@@ -14,10 +16,11 @@ export const styleSheet = `
 * { box-sizing: border-box; }
 body {
 	margin: 0; background: var(--paper); color: var(--ink);
-	font: 1rem/1.55 'Atkinson Hyperlegible Next Variable', 'Atkinson Hyperlegible', system-ui, sans-serif;
+	font: 1rem/1.55 'Sheet text', system-ui, sans-serif;
 }
 header { padding: 1.25rem clamp(1rem, 4vw, 3rem) 1rem; border-bottom: 1px solid var(--rule); }
 header p { margin: 0.25rem 0 0; color: var(--muted); max-width: 44rem; }
+h1, h2 { font-family: 'Sheet heading', 'Sheet text', system-ui, sans-serif; }
 h1 { font-size: 1.5rem; line-height: 1.2; margin: 0; font-weight: 650; letter-spacing: -0.01em; }
 h2 { font-size: 1.05rem; margin: 0 0 0.5rem; font-weight: 650; }
 .desk {

@@ -1,6 +1,6 @@
 import { createServer, type Server, type ServerResponse } from 'node:http';
+import { sendAsset } from '../local-pages/assets';
 import { html, isLocalRequest, page, send } from '../local-pages/page';
-import { icon, styleSheet } from '../local-pages/style';
 import { listPage, mailPage } from './mail-pages';
 import type { MailStore } from './mail-store';
 
@@ -36,8 +36,7 @@ async function answer(store: MailStore, url: URL, response: ServerResponse): Pro
 	const to = url.searchParams.get('to') ?? '';
 	if (url.pathname === '/') return send(response, { body: listPage(store.list(to), to) });
 	if (url.pathname === '/mails') return sendJson(response, store.list(to));
-	if (url.pathname === '/style.css') return send(response, { type: 'text/css', body: styleSheet });
-	if (url.pathname === '/icon.svg') return send(response, { type: 'image/svg+xml', body: icon });
+	if (sendAsset(url.pathname, response)) return;
 	const [, id, part, index] =
 		/^\/mail\/([\w-]+)(?:\/(html|raw|file)(?:\/(\d+))?)?$/.exec(url.pathname) ?? [];
 	const mail = id ? store.find(id) : null;

@@ -1,8 +1,8 @@
 import { createHash } from 'node:crypto';
 import { createServer, type IncomingMessage, type Server, type ServerResponse } from 'node:http';
 import { OAuth2Issuer, OAuth2Service } from 'oauth2-mock-server';
+import { sendAsset } from '../local-pages/assets';
 import { isLocalRequest, send } from '../local-pages/page';
-import { icon, styleSheet } from '../local-pages/style';
 import { chooserPage, refusalPage } from './sign-on-pages';
 
 export type StandInPerson = { role: string; name: string; email: string };
@@ -27,9 +27,7 @@ export async function createSignOn(options: StandIn): Promise<Server> {
 	return createServer((request, response) => {
 		if (!isLocalRequest(request)) return send(response, { status: 421, body: 'Use localhost.' });
 		const url = new URL(request.url ?? '/', 'http://localhost');
-		if (url.pathname === '/style.css')
-			return send(response, { type: 'text/css', body: styleSheet });
-		if (url.pathname === '/icon.svg') return send(response, { type: 'image/svg+xml', body: icon });
+		if (sendAsset(url.pathname, response)) return;
 		if (url.pathname === '/authorize')
 			return authorize({ options, service, url, request, response });
 		service.requestHandler(request, response);
