@@ -80,7 +80,7 @@ export function npmStart({ folder, account }: Checkout, options: StartOptions = 
 		child,
 		output: () => printed,
 		isRunning: () => isRunning(child),
-		until: (pattern, timeoutMs = 120_000) => untilPrinted(() => printed, child, pattern, timeoutMs),
+		until: (pattern, timeoutMs = 300_000) => untilPrinted(() => printed, child, pattern, timeoutMs),
 		pressCtrlC: () => void process.kill(-(child.pid ?? 0), 'SIGINT'),
 		ended: (timeoutMs = 60_000) =>
 			within(end, timeoutMs, () => `npm start did not end:\n${printed}`)
