@@ -15,9 +15,17 @@ describe('checkCells', () => {
 				phone: '',
 				language: 'en',
 				zone: 'Europe/Lisbon',
-				availability: []
+				availability: [],
+				code: ''
 			}
 		});
+	});
+
+	it('keeps a code that the lab gave, and refuses what is none', () => {
+		const kept = checkCells({ ...cells, code: ' Q11 ' }, defaults);
+		expect(kept.ok && kept.person.code).toBe('Q11');
+		const refused = checkCells({ ...cells, code: 'a code' }, defaults);
+		expect(refused.ok ? [] : refused.faults.map((fault) => fault.columnLabel)).toEqual(['code']);
 	});
 
 	it('names every fault of a row with its column', () => {

@@ -15,6 +15,8 @@ export type PersonToEnrol = {
 	language: string;
 	zone: string;
 	availability: WeeklyStretch[];
+	/** A code that the lab gave already; empty for the study's next one. */
+	code: string;
 };
 
 /** What empty cells stand for: the lab's own. */
@@ -33,12 +35,14 @@ export function checkCells(cells: EnrolmentCells, defaults: CellDefaults): Cells
 		isLanguage(language) ? null : makeFault('language', cells, languageHint(language)),
 		isValidZone(zone) ? null : makeFault('zone', cells, zoneHint(zone), suggestZone(zone)),
 		availability.ok ? null : makeFault('availability', cells, availability.message),
-		phoneFault(cells)
+		phoneFault(cells),
+		codeFault(cells)
 	].filter((fault) => fault !== null);
 	if (faults.length > 0 || !availability.ok) return { ok: false, faults };
 	const [name, email, phone] = [cells.name, cells.email, cells.phone].map(tidy);
 	const person = { name: name ?? '', email: email ?? '', phone: phone ?? '', language, zone };
-	return { ok: true, person: { ...person, availability: availability.windows } };
+	const code = cells.code.trim();
+	return { ok: true, person: { ...person, availability: availability.windows, code } };
 }
 
 /** A fault of one cell with its place, as the list of faults shows it. */
@@ -93,6 +97,16 @@ function phoneFault(cells: EnrolmentCells): CellFault | null {
 	const phone = tidy(cells.phone);
 	if (phone === '' || /^\+?[\d\s()/.-]{4,30}$/.test(phone)) return null;
 	return makeFault('phone', cells, 'is no telephone number, such as +351 21 000 0000');
+}
+
+function codeFault(cells: EnrolmentCells): CellFault | null {
+	const code = cells.code.trim();
+	if (code === '' || /^[A-Za-z0-9][A-Za-z0-9._-]{0,19}$/.test(code)) return null;
+	return makeFault(
+		'code',
+		cells,
+		'is no code: up to 20 letters, digits, dots, hyphens or underscores'
+	);
 }
 
 function isLanguage(code: string): boolean {

@@ -13,7 +13,8 @@ export const enrolmentColumns = [
 		label: 'can come',
 		names: ['can come', 'availability', 'available', 'when']
 	},
-	{ key: 'phone', label: 'phone', names: ['phone', 'telephone', 'mobile', 'tel'] }
+	{ key: 'phone', label: 'phone', names: ['phone', 'telephone', 'mobile', 'tel'] },
+	{ key: 'code', label: 'code', names: ['code', 'study code', 'participant code', 'id'] }
 ] as const;
 
 export type EnrolmentColumn = (typeof enrolmentColumns)[number]['key'];
@@ -27,7 +28,8 @@ export const emptyCells: EnrolmentCells = {
 	language: '',
 	zone: '',
 	availability: '',
-	phone: ''
+	phone: '',
+	code: ''
 };
 
 /** What is wrong with one cell, where it stands, and what was probably meant. */

@@ -9,5 +9,6 @@ export const enrolmentSchema = z.object({
 	phone: cell,
 	language: cell,
 	zone: cell,
-	availability: cell
+	availability: cell,
+	code: cell
 });

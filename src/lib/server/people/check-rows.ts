@@ -11,6 +11,7 @@ import type { Queryable } from '$lib/server/db/client';
 import { lab } from '$lib/server/db/schema';
 import type { PeopleKeys } from '$lib/server/keys/people-keys';
 import { findEnrolled } from './find-enrolled';
+import { findTakenCodes } from './find-taken-codes';
 
 export type RowToCheck = { line: number; cells: EnrolmentCells };
 
@@ -30,8 +31,11 @@ export async function checkRows(
 	const read = rows.map((row) => readRow(row, { defaults, keys }));
 	const indexes = read.flatMap(({ person }) => (person ? [person.emailIndex] : []));
 	const enrolled = await findEnrolled(db, grant.studyId, indexes);
+	const taken = await findTakenCodes(db, grant.studyId);
 	const firstLines = new Map<string, number>();
-	return read.map((row) => findTwin(row, enrolled, firstLines));
+	return read
+		.map((row) => findTwin(row, enrolled, firstLines))
+		.map((row) => refuseTakenCode(row, taken));
 }
 
 /** What empty cells stand for in this lab. */
@@ -66,4 +70,15 @@ function findTwin(
 	if (!code && firstLine === undefined) return row;
 	const message = code ? `is enrolled already, as ${code}` : `stands in line ${firstLine} already`;
 	return { ...row, faults: [makeFault('email', row.cells, message)], person: null };
+}
+
+/** A code given by hand must be free; those of the rows before count as taken. */
+function refuseTakenCode(row: ReadRow, taken: Set<string>): ReadRow {
+	const code = row.person?.code ?? '';
+	if (code === '') return row;
+	if (!taken.has(code)) {
+		taken.add(code);
+		return row;
+	}
+	return { ...row, faults: [makeFault('code', row.cells, 'is taken already')], person: null };
 }

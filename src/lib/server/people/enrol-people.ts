@@ -13,6 +13,7 @@ import {
 	type MissingGate
 } from '$lib/server/studies/load-gates';
 import { checkRows, type ReadRow, type RowToCheck } from './check-rows';
+import { findTakenCodes } from './find-taken-codes';
 
 export type EnrolOutcome =
 	| { ok: true; codes: string[]; stayed: CheckedRow[] }
@@ -35,11 +36,15 @@ export async function enrolPeople(
 		const { prefix, lastNumber } = await lockCodes(tx, grant.studyId);
 		const checked = await checkRows(tx, grant, { keys, rows });
 		const stayed = checked.filter(({ person }) => !person).map(withoutPerson);
+		const taken = await findTakenCodes(tx, grant.studyId);
 		const codes: string[] = [];
+		let number = lastNumber;
 		for (const { person } of checked) {
 			if (!person) continue;
-			const number = lastNumber + codes.length + 1;
-			const code = formatCode(prefix, number);
+			do number += 1;
+			while (person.code === '' && taken.has(formatCode(prefix, number)));
+			const code = person.code || formatCode(prefix, number);
+			taken.add(code);
 			await storePerson(tx, { clock, keys, grant, person, number, code, versionId: version.id });
 			codes.push(code);
 		}

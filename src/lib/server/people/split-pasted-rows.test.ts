@@ -24,7 +24,8 @@ describe('splitPastedRows', () => {
 				language: 'pt',
 				zone: 'Europe/Lisbon',
 				availability: 'mornings',
-				phone: ''
+				phone: '',
+				code: ''
 			});
 		}
 	});

@@ -33,7 +33,8 @@ export function listPeople() {
 			language: 'en',
 			zone: index % 8 === 4 ? 'Europe/Madrid' : 'Europe/Lisbon',
 			availability: index % 5 === 1 ? 'mornings' : index % 5 === 3 ? 'afternoons' : 'any',
-			phone: ''
+			phone: '',
+			code: ''
 		};
 	});
 }

@@ -12,7 +12,8 @@ const cellsSchema = z.object({
 	language: z.string().max(400),
 	zone: z.string().max(400),
 	availability: z.string().max(400),
-	phone: z.string().max(400)
+	phone: z.string().max(400),
+	code: z.string().max(400)
 });
 
 /** Rows as the page sends them to be checked while somebody mends a cell. */
@@ -37,7 +38,7 @@ export function readRowsForm(form: FormData): RowsToSend {
 }
 
 const faultSchema = z.object({
-	column: z.enum(['name', 'email', 'language', 'zone', 'availability', 'phone']),
+	column: z.enum(['name', 'email', 'language', 'zone', 'availability', 'phone', 'code']),
 	columnNumber: z.number(),
 	columnLabel: z.string(),
 	value: z.string(),
