@@ -69,7 +69,7 @@ export function mailPage(mail: StoredMail): string {
 			lead: html`<a href="/">All mails</a>`,
 			sheet: html`<h2>Text</h2>
 				<pre>${linkify(mail.text || '(no text part)')}</pre>
-				${mail.html ? htmlSection(mail) : ''} ${mail.calendar ? calendarSection(mail) : ''}`,
+				${mail.calendar ? calendarSection(mail) : ''} ${mail.html ? htmlSection(mail) : ''}`,
 			margin: html`<dl>
 					<dt>From</dt>
 					<dd>${mail.from}</dd>
@@ -121,8 +121,8 @@ function eventDetails(event: CalendarEvent): Html {
 	);
 	const rows: [string, string | number | null][] = [
 		['Summary', event.summary],
-		['Start', event.start],
-		['End', event.end],
+		['Start', formatEventTime(event.start)],
+		['End', event.end && formatEventTime(event.end)],
 		['Sequence', event.sequence],
 		['Status', event.status],
 		['Place', event.location],
@@ -194,4 +194,9 @@ const clock = new Intl.DateTimeFormat('en-GB', {
 
 function formatInstant(iso: string): string {
 	return `${clock.format(new Date(iso))} UTC`;
+}
+
+/** UTC in words; a time in a named zone as the calendar gives it. */
+function formatEventTime(time: string): string {
+	return time.endsWith('Z') ? formatInstant(time) : time;
 }
