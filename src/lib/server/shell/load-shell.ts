@@ -1,9 +1,10 @@
-import { and, desc, eq, isNotNull, isNull } from 'drizzle-orm';
+import { and, eq, isNull } from 'drizzle-orm';
 import { loadRoles } from '$lib/server/access/require-permission';
 import { findSections, type Section } from '$lib/server/access/sections';
 import { config } from '$lib/server/config';
 import type { Database } from '$lib/server/db/client';
-import { lab, membership, protocolVersion, study, studyPause } from '$lib/server/db/schema';
+import { lab, membership, study, studyPause } from '$lib/server/db/schema';
+import { loadRunningVersion } from '$lib/server/studies/load-gates';
 import { formatWithZone } from '$lib/time/format-instant';
 
 export type Shell = {
@@ -78,12 +79,7 @@ async function findStudy(db: Database, studyId: string) {
 	if (!/^[0-9a-f-]{36}$/i.test(studyId)) return null;
 	const [row] = await db.select().from(study).where(eq(study.id, studyId));
 	if (!row) return null;
-	const [version] = await db
-		.select({ number: protocolVersion.number })
-		.from(protocolVersion)
-		.where(and(eq(protocolVersion.studyId, studyId), isNotNull(protocolVersion.hash)))
-		.orderBy(desc(protocolVersion.number))
-		.limit(1);
+	const running = await loadRunningVersion(db, studyId);
 	const [pause] = await db
 		.select({ id: studyPause.id })
 		.from(studyPause)
@@ -94,7 +90,7 @@ async function findStudy(db: Database, studyId: string) {
 				isNull(studyPause.liftedAt)
 			)
 		);
-	const state = row.closedAt ? 'closed' : pause ? 'paused' : version ? 'running' : 'in design';
+	const state = row.closedAt ? 'closed' : pause ? 'paused' : running ? 'running' : 'in design';
 	return {
 		id: row.id,
 		labId: row.labId,
@@ -102,7 +98,7 @@ async function findStudy(db: Database, studyId: string) {
 			id: row.id,
 			workingTitle: row.workingTitle,
 			state,
-			versionNumber: version?.number ?? null
+			versionNumber: running?.number ?? null
 		}
 	};
 }

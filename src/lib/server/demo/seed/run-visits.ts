@@ -69,7 +69,7 @@ export async function runVisits(
 		await catchUp(world);
 		if (next.isMissed) await missVisit(world, study, next.id);
 		else await runVisit(world, study, next);
-		if (world.clock.now() < demoNowMs - 20 * hourMs) await settleHeld(world, study.studyId, 'all');
+		if (world.clock.now() < demoNowMs - 24 * hourMs) await settleHeld(world, study.studyId, 'all');
 	}
 }
 

@@ -18,8 +18,8 @@ import { catchUp, runVisits, settleHeld, type DemoStudy } from './run-visits';
 
 /** When how many people enrol, sign and are booked. */
 const waves: { date: string; count: number }[] = [
+	{ date: '2027-02-24', count: 4 },
 	{ date: '2027-02-25', count: 4 },
-	{ date: '2027-02-26', count: 4 },
 	{ date: '2027-03-01', count: 3 },
 	{ date: '2027-03-03', count: 3 },
 	{ date: '2027-03-05', count: 3 },
@@ -48,8 +48,8 @@ export async function seedDemo(options: {
 	const study: DemoStudy = { studyId, content, seed: options.seed, actors: new Map() };
 	const waiting = listPeople();
 	for (const { date, count } of waves) {
-		await runVisits(world, study, at(date, '08:40'));
-		clock.set(at(date, '08:45'));
+		await runVisits(world, study, at(date, '16:40'));
+		clock.set(at(date, '16:45'));
 		await admit(world, study, waiting.splice(0, count));
 		options.report(`Demo: ${date}, ${24 - waiting.length} people enrolled`);
 	}
