@@ -7,7 +7,6 @@ import {
 	type Region
 } from '$scheduler/perturbations/region-settings.ts';
 import type { Exit, PlacementRung } from '$scheduler/perturbations/weigh-share.ts';
-import type { Exit, PlacementRung } from '$scheduler/perturbations/weigh-share.ts';
 import { createTask } from '$scheduler/tasks/create-task.ts';
 import { evaluateErrorGrid } from '$scheduler/tasks/error-grid.ts';
 import { createScaledTask, type ScaledTask } from '$scheduler/tasks/scaled-task.ts';
