@@ -2,6 +2,7 @@ import type { Settings } from '$lib/server/config';
 import type { Database } from '$lib/server/db/client';
 import { findMemberByEmail } from '$lib/server/members/find-member';
 import { sendSignInMail } from '$lib/server/invitations/send-sign-in-mail';
+import { confirmAddress } from './make-sign-in-link';
 
 type Request = { db: Database; settings: Settings; email: string; callbackUrl: string };
 
@@ -12,8 +13,6 @@ type Request = { db: Database; settings: Settings; email: string; callbackUrl: s
 export async function sendSignInLink({ db, settings, email, callbackUrl }: Request): Promise<void> {
 	const member = await findMemberByEmail(db, email);
 	if (!member) return;
-	const callback = new URL(callbackUrl);
-	const confirm = new URL('/signin/confirm', settings.ORIGIN);
-	confirm.search = callback.search;
-	await sendSignInMail(settings, { to: member, link: confirm.toString() });
+	const link = Object.fromEntries(new URL(callbackUrl).searchParams);
+	await sendSignInMail(settings, { to: member, link: confirmAddress(settings, link) });
 }

@@ -1,5 +1,5 @@
 import { createHash, randomBytes } from 'node:crypto';
-import { and, desc, eq, gt, lt, ne } from 'drizzle-orm';
+import { and, desc, eq, gt, lt } from 'drizzle-orm';
 import type { Grant } from '$lib/server/access/require-permission';
 import { systemClock } from '$lib/server/clock';
 import type { Queryable } from '$lib/server/db/client';
@@ -114,22 +114,4 @@ export async function endOwnSession(
 	await db
 		.delete(session)
 		.where(and(eq(session.userId, grant.personId), eq(session.sessionToken, id)));
-}
-
-/** Ends every session of the person but the one of this browser; gives their number. */
-export async function endOtherSessions(
-	db: Queryable,
-	grant: Grant<'account:manage'>,
-	currentToken: string
-): Promise<number> {
-	const ended = await db
-		.delete(session)
-		.where(
-			and(
-				eq(session.userId, grant.personId),
-				ne(session.sessionToken, hashSessionToken(currentToken))
-			)
-		)
-		.returning({ id: session.sessionToken });
-	return ended.length;
 }

@@ -3,6 +3,7 @@ import { RateLimiterMemory } from 'rate-limiter-flexible';
 /** How often one key may try, by purpose. */
 const limiters = {
 	'sign-in': new RateLimiterMemory({ points: 30, duration: 10 * 60 }),
+	link: new RateLimiterMemory({ points: 5, duration: 10 * 60 }),
 	token: new RateLimiterMemory({ points: 60, duration: 10 * 60 })
 };
 

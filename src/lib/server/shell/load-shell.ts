@@ -1,9 +1,9 @@
 import { and, eq, isNull } from 'drizzle-orm';
-import { loadRoles } from '$lib/server/access/require-permission';
-import { findSections, type Section } from '$lib/server/access/sections';
-import { config } from '$lib/server/config';
+import { roleInSentence } from '$lib/members/role-names';
+import { loadHeldRoles } from '$lib/server/access/require-permission';
+import { findLabPages, findSections, type Section } from '$lib/server/access/sections';
 import type { Database } from '$lib/server/db/client';
-import { lab, membership, study, studyPause } from '$lib/server/db/schema';
+import { lab, membership, study, studyPause, type StudyRole } from '$lib/server/db/schema';
 import { loadRunningVersion } from '$lib/server/studies/load-gates';
 import { formatWithZone } from '$lib/time/format-instant';
 
@@ -15,7 +15,7 @@ export type Shell = {
 	nowMs: number;
 	nowText: string;
 	zoneText: string;
-	demo: { kind: 'demo' | 'rehearsal'; mailboxUrl: string | null; nowText: string } | null;
+	demo: { personName: string; role: string; nowText: string } | null;
 };
 
 /** The masthead's content for whoever is signed in; a study only when they have a part in it. */
@@ -37,7 +37,11 @@ export async function loadShell(
 		demo:
 			locals.instanceKind === 'own'
 				? null
-				: { kind: locals.instanceKind, mailboxUrl: config().OVALRY_MAILBOX_URL ?? null, nowText }
+				: {
+						personName: locals.person?.name ?? 'nobody yet',
+						role: locals.person ? (found?.roleText ?? 'no part here') : 'not signed in',
+						nowText
+					}
 	};
 }
 
@@ -46,7 +50,11 @@ function splitZone(text: string): string[] {
 	return cut < 0 ? [text, ''] : [text.slice(0, cut), text.slice(cut + 1)];
 }
 
-type Place = Pick<Shell, 'study' | 'sections'> & { lab: NonNullable<Shell['lab']> };
+type Place = Pick<Shell, 'study' | 'sections'> & {
+	lab: NonNullable<Shell['lab']>;
+	/** What the person is here, in words. */
+	roleText: string;
+};
 
 async function findPlace(
 	db: Database,
@@ -62,17 +70,24 @@ async function findPlace(
 	const labId = own?.labId ?? params.labId;
 	const home = memberships.find((row) => row.id === labId) ?? memberships[0];
 	if (!home) return null;
-	const place = {
+	const member = { isMember: true, isSteward: home.isSteward };
+	const place: Place = {
 		lab: { id: home.id, name: home.name, zone: home.zone },
 		study: null,
-		sections: []
+		sections: findLabPages(home.id, { ...member, roles: [] }),
+		roleText: home.isSteward ? 'steward' : 'member of the lab'
 	};
 	if (!own || own.labId !== home.id) return place;
-	const roles = await loadRoles(db, { personId, studyId: own.id });
-	const standing = { isMember: true, isSteward: home.isSteward, roles };
-	const sections = findSections(own.id, standing);
+	const held = await loadHeldRoles(db, { personId, studyId: own.id });
+	const sections = findSections(own.id, { ...member, ...held });
+	if (sections.length === 0) return place;
 	// A steward without a role here sees that the study exists, not what its protocol says.
-	return sections.length > 0 ? { ...place, study: own.study, sections } : place;
+	return { ...place, study: own.study, sections, roleText: describe(home.isSteward, held.roles) };
+}
+
+function describe(isSteward: boolean, roles: readonly StudyRole[]): string {
+	const names = [...(isSteward ? ['steward'] : []), ...roles.map(roleInSentence)];
+	return names.join(', ') || 'no part in this study yet';
 }
 
 async function findStudy(db: Database, studyId: string) {

@@ -1,3 +1,4 @@
+import { sql } from 'drizzle-orm';
 import { index, integer, jsonb, pgTable, text, uniqueIndex, uuid, date } from 'drizzle-orm/pg-core';
 import type { ProtocolContent } from '$lib/protocol/protocol-content';
 import { person } from './account';
@@ -36,7 +37,8 @@ export const studyRoles = [
 export type StudyRole = (typeof studyRoles)[number];
 
 /**
- * A role in one study. Rows are ended, never deleted: forbidden pairs hold for earlier roles too.
+ * A role in one study, one row for each time it was given. Rows are ended, never deleted or given
+ * again: forbidden pairs hold for earlier roles too.
  * A role that sees arms counts only once a second person has confirmed it.
  */
 export const studyRole = pgTable(
@@ -60,7 +62,9 @@ export const studyRole = pgTable(
 	},
 	(table) => [
 		index('study_role_person').on(table.personId, table.studyId),
-		uniqueIndex('study_role_once').on(table.studyId, table.personId, table.role)
+		uniqueIndex('study_role_once')
+			.on(table.studyId, table.personId, table.role)
+			.where(sql`ended_at IS NULL`)
 	]
 );
 

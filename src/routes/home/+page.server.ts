@@ -1,0 +1,12 @@
+import type { PageServerLoad } from './$types';
+import { requirePermission } from '$lib/server/access/require-permission';
+import { loadHome } from '$lib/server/home/load-home';
+
+export const load: PageServerLoad = async ({ locals }) => {
+	const grant = await requirePermission(locals, 'home:read');
+	return {
+		labs: await loadHome(locals.db, locals.clock, grant),
+		nowMs: locals.clock.now(),
+		firstName: grant.personName.split(' ')[0] ?? grant.personName
+	};
+};
