@@ -26,6 +26,7 @@ export type WaitingKind =
 	| 'book'
 	| 'mail-failed'
 	| 'gate'
+	| 'role'
 	| 'sign-off'
 	| 'seal'
 	| 'held-decisions'
@@ -42,6 +43,7 @@ export const waitingWords: Record<WaitingKind, string> = {
 	book: 'find places',
 	'mail-failed': 'mend the address',
 	gate: 'a gate is shut',
+	role: 'confirm a role',
 	'sign-off': 'sign off or comment',
 	seal: 'seal the allocation',
 	'held-decisions': 'settle decisions',

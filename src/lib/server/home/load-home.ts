@@ -11,8 +11,9 @@ import {
 	studyPause,
 	type StudyRole
 } from '$lib/server/db/schema';
-import type { WaitingItem } from './waiting';
-import { waitingSources } from './waiting-sources';
+import { loadWaiting } from '$lib/server/waiting/load-waiting';
+import { sortByUrgency, type WaitingItem } from '$lib/waiting/waiting-item';
+import { loadTeamWaiting } from './team-waiting';
 
 export type HomeStudy = {
 	id: string;
@@ -34,6 +35,12 @@ export type HomeLab = {
 	studies: HomeStudy[];
 };
 
+/** Asks for the person's grant in one of the studies listed here. */
+export type GrantFor = <P extends 'team:read' | 'today:read'>(
+	permission: P,
+	studyId: string
+) => Promise<Grant<P>>;
+
 /**
  * The labs of a person, in each the studies they have a part in (a steward: all of them), and in
  * each study what waits for them.
@@ -41,7 +48,8 @@ export type HomeLab = {
 export async function loadHome(
 	db: Queryable,
 	clock: Clock,
-	grant: Grant<'home:read'>
+	grant: Grant<'home:read'>,
+	grantFor: GrantFor
 ): Promise<HomeLab[]> {
 	const labs = await db
 		.select({ id: lab.id, name: lab.name, zone: lab.zone, isSteward: membership.isSteward })
@@ -52,14 +60,19 @@ export async function loadHome(
 	return Promise.all(
 		labs.map(async (own) => ({
 			...own,
-			studies: await loadStudies(db, clock, { ...own, personId: grant.personId })
+			studies: await loadStudies(db, clock, grantFor, { ...own, personId: grant.personId })
 		}))
 	);
 }
 
 type Member = { id: string; isSteward: boolean; personId: string };
 
-async function loadStudies(db: Queryable, clock: Clock, own: Member): Promise<HomeStudy[]> {
+async function loadStudies(
+	db: Queryable,
+	clock: Clock,
+	grantFor: GrantFor,
+	own: Member
+): Promise<HomeStudy[]> {
 	const rows = await db
 		.select()
 		.from(study)
@@ -78,23 +91,26 @@ async function loadStudies(db: Queryable, clock: Clock, own: Member): Promise<Ho
 			...(states.get(row.id) ?? { state: 'in design', versionNumber: null }),
 			...held,
 			href: first.href,
-			waiting: await loadWaiting(db, clock, { ...own, ...held, labId: own.id, studyId: row.id })
+			waiting: await loadStudyWaiting(db, clock, grantFor, { studyId: row.id, ...held })
 		});
 	}
 	return found;
 }
 
-async function loadWaiting(
+/** What waits in one study: the steps of one's roles, and roles to be confirmed. */
+async function loadStudyWaiting(
 	db: Queryable,
 	clock: Clock,
-	place: Parameters<(typeof waitingSources)[number]>[2]
+	grantFor: GrantFor,
+	place: { studyId: string; roles: readonly StudyRole[] }
 ): Promise<WaitingItem[]> {
-	const { personId, labId, studyId, isSteward, roles, waitingRoles } = place;
-	const asked = { personId, labId, studyId, isSteward, roles, waitingRoles };
-	const found: WaitingItem[] = [];
-	for (const source of waitingSources) found.push(...(await source(db, clock, asked)));
-	const due = (item: WaitingItem) => item.dueAtMs ?? Number.POSITIVE_INFINITY;
-	return found.toSorted((a, b) => (due(a) === due(b) ? 0 : due(a) - due(b)));
+	const items = await loadTeamWaiting(db, await grantFor('team:read', place.studyId));
+	if (place.roles.length > 0) {
+		const grant = await grantFor('today:read', place.studyId);
+		items.push(...(await loadWaiting(db, clock, grant)));
+	}
+	// Steps of other people are on the study's own first page.
+	return sortByUrgency(items.filter((item) => item.act !== null));
 }
 
 /** How each study stands: the newest frozen version, whether it is paused or closed. */

@@ -2,6 +2,7 @@ import { and, eq, isNull } from 'drizzle-orm';
 import { roleInSentence } from '$lib/members/role-names';
 import { loadHeldRoles } from '$lib/server/access/require-permission';
 import { findLabPages, findSections, type Section } from '$lib/server/access/sections';
+import { config } from '$lib/server/config';
 import type { Database } from '$lib/server/db/client';
 import { lab, membership, study, studyPause, type StudyRole } from '$lib/server/db/schema';
 import { loadRunningVersion } from '$lib/server/studies/load-gates';
@@ -15,7 +16,13 @@ export type Shell = {
 	nowMs: number;
 	nowText: string;
 	zoneText: string;
-	demo: { personName: string; role: string; nowText: string } | null;
+	demo: {
+		kind: 'demo' | 'rehearsal';
+		mailboxUrl: string | null;
+		nowText: string;
+		/** What the person is here, in words; empty for nobody. */
+		roleText: string;
+	} | null;
 };
 
 /** The masthead's content for whoever is signed in; a study only when they have a part in it. */
@@ -38,9 +45,10 @@ export async function loadShell(
 			locals.instanceKind === 'own'
 				? null
 				: {
-						personName: locals.person?.name ?? 'nobody yet',
-						role: locals.person ? (found?.roleText ?? 'no part here') : 'not signed in',
-						nowText
+						kind: locals.instanceKind,
+						mailboxUrl: config().OVALRY_MAILBOX_URL ?? null,
+						nowText,
+						roleText: found?.roleText ?? ''
 					}
 	};
 }
