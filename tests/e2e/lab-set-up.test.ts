@@ -25,6 +25,7 @@ describe('setting up an empty lab', () => {
 	const lab = () => new URL(steward.page.url()).pathname.split('/').slice(0, 3).join('/');
 	const open = (path: string) => steward.page.goto(`${app.origin}${path}`);
 	const zone = () => steward.page.getByRole('combobox', { name: 'Time zone' });
+	const box = (name: RegExp) => steward.page.getByRole('checkbox', { name });
 	const press = (name: string | RegExp) => steward.page.getByRole('button', { name }).click();
 	const field = (name: string | RegExp) => steward.page.getByRole('textbox', { name });
 	const fill = (name: string | RegExp, text: string) => field(name).fill(text);
@@ -68,14 +69,14 @@ describe('setting up an empty lab', () => {
 		await see('Room 12 is added.');
 		await steward.page.getByRole('link', { name: 'Add a rig' }).click();
 		await fill('Name', 'Gull');
-		await steward.page.getByLabel(/^Powered/).check();
+		await box(/^Powered/).check();
 		await press('Add the rig');
 		await see('A powered rig needs at least one largest value');
 		await see('Have the limits checked on the rig first');
 		await keepScreenshot(steward.page, 'rig-form');
 		expect(await findAxeFaults(steward.page)).toEqual([]);
 		await fill(/^Largest values/, 'release_speed_m_s 1.8');
-		await steward.page.getByLabel(/^Qualified staff/).check();
+		await box(/^Qualified staff/).check();
 		await press('Add the rig');
 		await see('Gull is added');
 	});

@@ -11,6 +11,7 @@ import {
 	studyPause,
 	type StudyRole
 } from '$lib/server/db/schema';
+import { findLabGaps } from '$lib/server/labs/load-lab';
 import { loadWaiting } from '$lib/server/waiting/load-waiting';
 import { sortByUrgency, type WaitingItem } from '$lib/waiting/waiting-item';
 import { loadTeamWaiting } from './team-waiting';
@@ -32,13 +33,15 @@ export type HomeLab = {
 	name: string;
 	zone: string;
 	isSteward: boolean;
+	/** For the steward: how much is missing before visits can be booked. */
+	gapCount: number;
 	studies: HomeStudy[];
 };
 
 /** Asks for the person's grant in one of the studies listed here. */
-export type GrantFor = <P extends 'team:read' | 'today:read'>(
+export type GrantFor = <P extends 'team:read' | 'today:read' | 'lab:read'>(
 	permission: P,
-	studyId: string
+	place: { studyId?: string; labId?: string }
 ) => Promise<Grant<P>>;
 
 /**
@@ -60,6 +63,9 @@ export async function loadHome(
 	return Promise.all(
 		labs.map(async (own) => ({
 			...own,
+			gapCount: own.isSteward
+				? (await findLabGaps(db, await grantFor('lab:read', { labId: own.id }))).length
+				: 0,
 			studies: await loadStudies(db, clock, grantFor, { ...own, personId: grant.personId })
 		}))
 	);
@@ -104,9 +110,9 @@ async function loadStudyWaiting(
 	grantFor: GrantFor,
 	place: { studyId: string; roles: readonly StudyRole[] }
 ): Promise<WaitingItem[]> {
-	const items = await loadTeamWaiting(db, await grantFor('team:read', place.studyId));
+	const items = await loadTeamWaiting(db, await grantFor('team:read', place));
 	if (place.roles.length > 0) {
-		const grant = await grantFor('today:read', place.studyId);
+		const grant = await grantFor('today:read', place);
 		items.push(...(await loadWaiting(db, clock, grant)));
 	}
 	// Steps of other people are on the study's own first page.
