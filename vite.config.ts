@@ -9,7 +9,7 @@ export default defineConfig({
 		projects: [
 			project('unit', ['src/**/*.test.ts', 'scheduler/**/*.test.ts']),
 			project('reference', ['tests/reference/**/*.test.ts']),
-			project('architecture', ['tests/architecture/**/*.test.ts']),
+			project('architecture', ['tests/architecture/**/*.test.ts'], { testTimeout: 60_000 }),
 			project('integration', ['tests/integration/**/*.test.ts'], {
 				globalSetup: ['tests/support/database-setup.ts'],
 				testTimeout: 60_000,

