@@ -94,6 +94,7 @@ describe('a pause', () => {
 				id: pauseId,
 				reason: 'The chair is loose.',
 				pausedBy: 'Mirela Anjos',
+				isOwn: false,
 				pausedAtMs: clock.now(),
 				firstLiftBy: 'Ilse Varga',
 				mayLift: false

@@ -26,6 +26,7 @@ export class DraftEditor {
 	revision = $state(0);
 	readonly #address: string;
 	#savedText: string;
+	#theirRevision = 0;
 	#history: string[] = [];
 	#timer: ReturnType<typeof setTimeout> | undefined;
 	#failures = 0;
@@ -41,7 +42,7 @@ export class DraftEditor {
 
 	/** Called with the draft's text after each change. */
 	notice(text: string): void {
-		if (this.state === 'stale' || this.state === 'gone') return;
+		if (this.#isStuck()) return;
 		if (text === this.#savedText) {
 			if (!this.#running) this.state = 'saved';
 			return;
@@ -54,7 +55,7 @@ export class DraftEditor {
 	async flush({ keepalive = false } = {}): Promise<void> {
 		clearTimeout(this.#timer);
 		while (this.#running) await this.#running;
-		if (JSON.stringify(this.draft) === this.#savedText) return;
+		if (this.#isStuck() || JSON.stringify(this.draft) === this.#savedText) return;
 		this.#running = this.#save(keepalive).finally(() => (this.#running = null));
 		await this.#running;
 	}
@@ -74,6 +75,7 @@ export class DraftEditor {
 		if (!theirs) return;
 		this.#savedText = JSON.stringify(theirs);
 		this.theirs = null;
+		this.revision = this.#theirRevision;
 		if (choice === 'theirs') {
 			this.#remember(JSON.stringify(this.draft));
 			this.draft = theirs;
@@ -88,6 +90,11 @@ export class DraftEditor {
 	stop(): void {
 		clearTimeout(this.#timer);
 		void this.flush({ keepalive: true });
+	}
+
+	/** Nothing is sent before the person has chosen what to do. */
+	#isStuck(): boolean {
+		return this.state === 'stale' || this.state === 'gone';
 	}
 
 	#schedule(ms: number): void {
@@ -115,7 +122,7 @@ export class DraftEditor {
 		this.#failures = 0;
 		if (reply.state === 'saved') this.#accept(text, reply);
 		else if (reply.state === 'stale') {
-			this.revision = reply.revision;
+			this.#theirRevision = reply.revision;
 			this.theirs = reply.draft;
 			this.state = 'stale';
 		} else {

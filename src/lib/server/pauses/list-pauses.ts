@@ -9,6 +9,8 @@ export type OpenPause = {
 	id: string;
 	reason: string;
 	pausedBy: string;
+	/** Whether the viewer made it. */
+	isOwn: boolean;
 	pausedAtMs: number;
 	/** Who has said that it may end; null while nobody has. */
 	firstLiftBy: string | null;
@@ -45,6 +47,7 @@ export async function listOpenPauses(
 		id: pause.id,
 		reason: pause.reason,
 		pausedBy: who.byName ?? who.byEmail ?? 'a participant',
+		isOwn: pause.pausedBy === grant.personId,
 		pausedAtMs: pause.pausedAt.getTime(),
 		firstLiftBy: who.lifterName ?? who.lifterEmail,
 		mayLift: pause.firstLiftBy !== grant.personId

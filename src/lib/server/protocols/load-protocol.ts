@@ -1,3 +1,4 @@
+import { taskRecordSchema, type TaskRecord } from '$scheduler/tasks/task-record';
 import { describeProtocol, type ProtocolPart } from '$lib/protocol/describe-protocol';
 import { listDifferences, type Difference } from '$lib/protocol/list-differences';
 import type { ProtocolContent } from '$lib/protocol/protocol-content';
@@ -11,7 +12,12 @@ export type LoadedProtocol = {
 	versions: VersionHead[];
 	/** The version shown; null while none is frozen. */
 	shown:
-		(VersionHead & Pick<ProtocolContent, 'arms' | 'visits'> & { parts: ProtocolPart[] }) | null;
+		| (VersionHead &
+				Pick<ProtocolContent, 'arms' | 'visits'> & {
+					parts: ProtocolPart[];
+					task: TaskRecord;
+				})
+		| null;
 	/** The version it is compared with, and what changed since. */
 	compared: { number: number; differences: Difference[] } | null;
 	/** Number of the version being written; null when there is none or it is not theirs to see. */
@@ -36,7 +42,8 @@ export async function loadProtocol(
 					...headOf(version),
 					parts: describeProtocol(version.content, { withRule }),
 					arms: version.content.arms,
-					visits: version.content.visits
+					visits: version.content.visits,
+					task: taskRecordSchema.parse(version.content.task)
 				}
 			: null,
 		compared:

@@ -1,0 +1,35 @@
+import { describe, expect, it } from 'vitest';
+import { createPatternDraft } from './patterns';
+import { readTask } from './read-task';
+import { pictureTask } from './task-picture';
+
+describe('the picture of a task', () => {
+	it('draws the puck’s zero line where μ = .18, D = 2 m say it is', () => {
+		const record = readTask(createPatternDraft('two-arms').task);
+		const picture = record && pictureTask(record);
+		const points = picture?.zeroSet.flat() ?? [];
+		expect(points.length).toBeGreaterThan(50);
+		for (const [speed, position] of points) {
+			expect(position + speed ** 2 / (2 * 0.18 * 9.81)).toBeCloseTo(2, 6);
+		}
+	});
+
+	it('holds the third variable of a formula at its origin', () => {
+		const { task } = createPatternDraft('single-visit');
+		const variable = { unit: '', min: -1, max: 1, origin: 0.5, scale: 0.1, resolution: 0 };
+		const variables = ['a', 'b', 'c'].map((name) => ({ ...variable, name }));
+		task.formula = { formula: 'a + b - c', resultUnit: '', tolerance: 0.1, variables };
+		const record = readTask(task);
+		const points = (record && pictureTask(record)?.zeroSet.flat()) ?? [];
+		expect(points.length).toBeGreaterThan(50);
+		for (const [a, b] of points) expect(a + b).toBeCloseTo(0.5, 6);
+	});
+
+	it('is none for one variable', () => {
+		const { task } = createPatternDraft('single-visit');
+		const variable = { unit: '', min: -1, max: 1, origin: 0, scale: 0.1, resolution: 0, name: 'a' };
+		task.formula = { formula: 'a', resultUnit: '', tolerance: 0.1, variables: [variable] };
+		const record = readTask(task);
+		expect(record && pictureTask(record)).toBeNull();
+	});
+});
