@@ -48,7 +48,7 @@ export async function recordAttendance(
 			return { ok: true, from: visit.state };
 		});
 	} catch (error) {
-		const lab = await loadLabCalendar(db, { labId: grant.labId, fromMs: clock.now() });
+		const lab = await loadLabCalendar(db, { labId: grant.labId });
 		const clash = explainClash(error, lab, 'This person');
 		if (!clash) throw error;
 		return { ok: false, reason: 'taken', clash };

@@ -106,13 +106,16 @@ export function judgePlace(
 	return tellBrokenRules(plan, findNewBreaks(plan, changed));
 }
 
-/** Up to three ways to move the visit that keep every rule, nearest to where it was wanted. */
+/**
+ * Up to three ways to move the visit that keep every rule, fewest moved visits first, then nearest
+ * to where it was wanted; none starts before `nowMs`.
+ */
 export function findWays(
 	{ plan, visit, chain }: MovableVisit,
 	{ nowMs, wantedStartMs }: { nowMs: number; wantedStartMs?: number | undefined }
 ): Alternative[] {
 	const found = findAlternatives({
-		problem: plan.problem,
+		problem: { ...plan.problem, nowMs },
 		chain,
 		visitNumber: visit.visitNumber,
 		horizonEndMs: nowMs + horizonMs,

@@ -15,8 +15,8 @@ export type NamedCalendar = {
 
 type Options = {
 	labId: string;
-	/** Bookings that ended before it are of no interest. */
-	fromMs: number;
+	/** Bookings that ended before it are of no interest; without it none is loaded. */
+	fromMs?: number;
 	/** Whose visits are judged: they must not stand in their own way. */
 	exceptParticipantId?: string;
 };
@@ -84,6 +84,8 @@ type Busy = Record<'rigs' | 'rooms' | 'staff', Map<string, Interval[]>>;
 
 async function loadBusy(db: Queryable, options: Options): Promise<Busy> {
 	const { labId, fromMs, exceptParticipantId } = options;
+	const busy: Busy = { rigs: new Map(), rooms: new Map(), staff: new Map() };
+	if (fromMs === undefined) return busy;
 	const rows = await db
 		.select({
 			rigId: booking.rigId,
@@ -101,7 +103,6 @@ async function loadBusy(db: Queryable, options: Options): Promise<Busy> {
 				exceptParticipantId ? ne(booking.participantId, exceptParticipantId) : undefined
 			)
 		);
-	const busy: Busy = { rigs: new Map(), rooms: new Map(), staff: new Map() };
 	for (const { rigId, roomId, staffId, occupied } of rows) {
 		const interval = { fromMs: occupied.startsAt.getTime(), toMs: occupied.endsAt.getTime() };
 		addTo(busy.rigs, rigId, interval);

@@ -21,17 +21,10 @@ export async function listChainItems(
 	records: readonly PersonRecord[],
 	context: ItemContext
 ): Promise<WaitingItem[]> {
-	const named = await loadLabCalendar(db, { labId: grant.labId, fromMs: context.nowMs });
-	// Only rules of the person's own chain: other people's bookings cannot clash with it.
-	const calendar = {
-		...named.calendar,
-		rigs: named.calendar.rigs.map((rig) => ({ ...rig, busy: [] })),
-		rooms: named.calendar.rooms.map((room) => ({ ...room, busy: [] })),
-		staff: named.calendar.staff.map((one) => ({ ...one, busy: [] }))
-	};
-	const own = { ...named, calendar };
+	// Other people's bookings cannot clash with a chain that is booked: none is loaded.
+	const named = await loadLabCalendar(db, { labId: grant.labId });
 	return records.flatMap((record) => {
-		const item = findBrokenChain(record, own, context);
+		const item = findBrokenChain(record, named, context);
 		return item ? [item] : [];
 	});
 }
