@@ -57,7 +57,7 @@ function nameFile(word, checkout) {
 }
 
 /** Tests beside the code are unit tests. */
-function tierOf(file) {
+export function tierOf(file) {
 	const place = Object.keys(places).find((folder) => file.startsWith(folder));
 	return place ? places[place] : 'unit';
 }

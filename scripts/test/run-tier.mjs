@@ -1,6 +1,7 @@
 import { mkdirSync, rmSync } from 'node:fs';
 import { join } from 'node:path';
 import { countReport } from './count.mjs';
+import { tierOf } from './plan.mjs';
 
 /**
  * Runs one tier and counts it; what the runner prints goes to the terminal as it comes.
@@ -25,7 +26,7 @@ async function runVitest(tier, { checkout, processes, env, files, rest }) {
 		'--reporter=json',
 		`--outputFile.json=${report}`,
 		'--passWithNoTests',
-		...files,
+		...files.filter((file) => tierOf(file) === tier),
 		...rest
 	]);
 	return countReport(report, code);
