@@ -13,20 +13,22 @@ export async function migrate({ folder, env, account, processes }) {
 const seedWords = { demo: '--demo', rehearsal: '--rehearse', own: '--empty' };
 
 /**
- * Marks the database and, for the demo, fills it.
+ * Marks the database and, for the demo, fills it, which takes half a minute and reports as it goes.
  *
  * @returns {Promise<{ people?: { role: string, name: string, email: string }[], setupLink?: string }>} what the seed printed
  */
-export async function seed({ variant, folder, env, account, processes }) {
+export async function seed({ variant, folder, env, account, processes, report = () => {} }) {
 	const words = [seedWords[variant]];
-	const output = await runWorker({ name: 'seed', words, folder, env, account, processes });
+	const step = { name: 'seed', words, folder, env, account, processes, report };
+	const output = await runWorker(step);
 	const lines = output.split('\n').filter((line) => line.startsWith('{'));
 	return Object.assign({}, ...lines.map((line) => JSON.parse(line)));
 }
 
-async function runWorker({ name, words, folder, env, account, processes }) {
+async function runWorker({ name, words, folder, env, account, processes, report = () => {} }) {
 	const script = join(folder, `build/workers/${name}.js`);
-	const options = { cwd: folder, env, account, name };
+	const onErrors = (text) => text.trimEnd().split('\n').forEach(report);
+	const options = { cwd: folder, env, account, name, onErrors };
 	const { code, output, errors } = await processes.run(
 		process.execPath,
 		[script, ...words],

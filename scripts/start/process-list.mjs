@@ -55,7 +55,10 @@ export function createProcessList() {
 			let output = '';
 			let errors = '';
 			child.stdout.on('data', (bytes) => (output += bytes));
-			child.stderr.on('data', (bytes) => (errors += bytes));
+			child.stderr.on('data', (bytes) => {
+				errors += bytes;
+				options.onErrors?.(String(bytes));
+			});
 			child.once('error', (error) => fail(cannotRun(command, error)));
 			child.once('close', (code) => {
 				if (closing) fail(new Interrupted());

@@ -66,7 +66,7 @@ async function fillDatabase(state, { variant, ownerUrl, folder, isNew }) {
 	if (isNew && variant === 'demo') say('Making the demo');
 	await migrate(step);
 	if (variant === 'demo' && !isNew) return {};
-	const said = await seed({ ...step, variant });
+	const said = await seed({ ...step, variant, report: (line) => say(`  ${line}`) });
 	if (said.people)
 		writeFileSync(join(folder, 'people.json'), JSON.stringify(said.people), { mode: 0o644 });
 	return said;

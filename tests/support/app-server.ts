@@ -1,4 +1,4 @@
-import { mkdirSync, mkdtempSync, readFileSync, rmSync, writeFileSync } from 'node:fs';
+import { mkdtempSync, readFileSync, rmSync, writeFileSync } from 'node:fs';
 import { tmpdir } from 'node:os';
 import { join, resolve } from 'node:path';
 import { buildIsCurrent } from '../../scripts/start/build.mjs';
@@ -11,6 +11,7 @@ import { serviceList } from '../../scripts/start/service-list.mjs';
 import { createServices } from '../../scripts/start/services.mjs';
 import { shutDown } from '../../scripts/start/shutdown.mjs';
 import { createDatabase, type TestDatabase } from './create-database';
+import { copyDemo, makeHomeFolders } from './demo-template';
 import { openMailbox, type Mailbox } from './mailbox';
 
 const checkout = resolve(import.meta.dirname, '../..');
@@ -52,9 +53,9 @@ export async function startApp(
 ): Promise<AppServer> {
 	requireBuild();
 	const home = mkdtempSync(join(tmpdir(), 'ovalry-app-'));
-	for (const name of ['keys', 'mailbox', 'logs']) mkdirSync(join(home, name), { mode: 0o700 });
 	const processes = createProcessList();
-	const database = await createDatabase();
+	const database = await (variant === 'demo' ? copyDemo(home, makeDemo) : createDatabase());
+	makeHomeFolders(home);
 	const stop = async () => {
 		await shutDown(processes);
 		await database.drop();
@@ -63,7 +64,8 @@ export async function startApp(
 	try {
 		const plan = await planApp(variant, home, database);
 		const environment = { ...plan.environment, ...options.environment };
-		const said = await fill({ variant, plan, environment, database, processes, home });
+		const filling = { variant, plan, environment, database, processes, home };
+		const said = variant === 'demo' ? { people: readPeople(home) } : await fill(filling);
 		await launch({ variant, plan, environment, processes, home });
 		return {
 			origin: plan.origin,
@@ -71,7 +73,7 @@ export async function startApp(
 			database,
 			mailbox: openMailbox(plan.mailboxUrl),
 			signOnUrl: variant === 'own' ? null : plan.signOnUrl,
-			setupLink: said.setupLink ?? null,
+			setupLink: 'setupLink' in said ? (said.setupLink ?? null) : null,
 			people: said.people ?? [],
 			environment,
 			readLog: (service) => readFileSync(join(home, 'logs', `${service}.log`), 'utf8'),
@@ -81,6 +83,18 @@ export async function startApp(
 		await stop();
 		throw error;
 	}
+}
+
+/** Makes the demo that all demo servers of this test run are copied from. */
+async function makeDemo(home: string, database: TestDatabase): Promise<void> {
+	const processes = createProcessList();
+	const plan = await planApp('demo', home, database);
+	const { environment } = plan;
+	await fill({ variant: 'demo', plan, environment, database, processes, home });
+}
+
+function readPeople(home: string): DemoPerson[] {
+	return JSON.parse(readFileSync(join(home, 'people.json'), 'utf8')) as DemoPerson[];
 }
 
 function requireBuild(): void {

@@ -1,5 +1,7 @@
 import { execFile } from 'node:child_process';
-import { resolve } from 'node:path';
+import { mkdtempSync, rmSync } from 'node:fs';
+import { tmpdir } from 'node:os';
+import { join, resolve } from 'node:path';
 import { promisify } from 'node:util';
 import type { TestProject } from 'vitest/node';
 import { buildIsCurrent } from '../../scripts/start/build.mjs';
@@ -21,13 +23,17 @@ export default async function setUp(project: TestProject): Promise<() => Promise
 	const cluster: TestCluster = {
 		adminUrl: url,
 		template: `template_${process.pid}`,
+		files: mkdtempSync(join(tmpdir(), 'ovalry-files-')),
 		appPassword: 'throw-away-app',
 		researchPassword: 'throw-away-research'
 	};
 	await onCluster(cluster, (sql) => sql.unsafe(`create database ${cluster.template}`));
 	await migrateTemplate(cluster);
 	project.provide('testCluster', cluster);
-	return close;
+	return async () => {
+		rmSync(cluster.files, { recursive: true, force: true });
+		await close();
+	};
 }
 
 async function openOwn(): Promise<{ url: string; close: () => Promise<void> }> {

@@ -6,6 +6,8 @@ export type TestCluster = {
 	adminUrl: string;
 	/** Name of a database with all migrations and nothing in it. */
 	template: string;
+	/** A folder for what belongs to templates; goes away with the test run. */
+	files: string;
 	appPassword: string;
 	researchPassword: string;
 };
