@@ -48,7 +48,7 @@ async function openScreen(browser: Browser, options: ScreenOptions): Promise<Scr
 		reducedMotion: 'reduce',
 		javaScriptEnabled: options.javaScript ?? true
 	});
-	context.setDefaultTimeout(15_000);
+	context.setDefaultTimeout(30_000);
 	const complaints: string[] = [];
 	context.on('page', (page) => listen(page, complaints));
 	const page = await context.newPage();
