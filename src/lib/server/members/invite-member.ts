@@ -1,17 +1,18 @@
 import { and, eq, isNull } from 'drizzle-orm';
+import type { Logger } from 'pino';
 import type { Grant } from '$lib/server/access/require-permission';
 import type { Clock } from '$lib/server/clock';
 import type { Settings } from '$lib/server/config';
 import type { Database, Queryable } from '$lib/server/db/client';
 import { lab, membership, person } from '$lib/server/db/schema';
 import { makeSignInLink } from '$lib/server/auth/make-sign-in-link';
-import { logger } from '$lib/server/http/logger';
 import { sendMemberInvitation } from '$lib/server/invitations/send-sign-in-mail';
 import { recordLabEvent } from '$lib/server/labs/record-lab-event';
 
 export const invitationDays = 7;
 
 type Manager = Grant<'lab:manage'>;
+export type InvitingPlace = { db: Database; clock: Clock; settings: Settings; log: Logger };
 type Invitation = { name: string; email: string; isSteward: boolean };
 export type InviteAnswer =
 	{ ok: true; personId: string; wasMailed: boolean } | { ok: false; reason: 'is-member' };
@@ -21,7 +22,7 @@ export type InviteAnswer =
  * earlier roles do not. A mail server that does not answer leaves the member, and says so.
  */
 export async function inviteMember(
-	place: { db: Database; clock: Clock; settings: Settings },
+	place: InvitingPlace,
 	grant: Manager,
 	invitation: Invitation
 ): Promise<InviteAnswer> {
@@ -43,7 +44,7 @@ export type ResendAnswer = { ok: true } | { ok: false; reason: 'no-such-member' 
 
 /** Mails a member the link to join once more. */
 export async function resendInvitation(
-	place: { db: Database; clock: Clock; settings: Settings },
+	place: InvitingPlace,
 	grant: Manager,
 	personId: string
 ): Promise<ResendAnswer> {
@@ -106,7 +107,7 @@ async function startMembership(
 }
 
 async function mailInvitation(
-	{ db, settings }: { db: Database; settings: Settings },
+	{ db, settings, log }: InvitingPlace,
 	grant: Manager,
 	to: { name: string; email: string }
 ): Promise<boolean> {
@@ -132,7 +133,7 @@ async function mailInvitation(
 		});
 		return true;
 	} catch (error) {
-		logger().error({ mail: 'member invitation', fault: faultOf(error) });
+		log.error({ mail: 'member invitation', fault: faultOf(error) });
 		return false;
 	}
 }

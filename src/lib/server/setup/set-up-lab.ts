@@ -13,7 +13,9 @@ export async function checkSetupLink(db: Queryable, token: string): Promise<Link
 		.select()
 		.from(setupLink)
 		.where(eq(setupLink.tokenHash, hashToken(token)));
-	return stateOf(row);
+	const state = stateOf(row);
+	// Only an empty database is set up by link: another link may have been used first.
+	return state !== 'unknown' && (await hasLab(db)) ? 'used' : state;
 }
 
 export type SetupFacts = {

@@ -4,7 +4,13 @@ import { zod4 } from 'sveltekit-superforms/adapters';
 import type { Actions, PageServerLoad } from './$types';
 import { requirePermission } from '$lib/server/access/require-permission';
 import { config } from '$lib/server/config';
-import { inviteMember, invitationDays, resendInvitation } from '$lib/server/members/invite-member';
+import { logger } from '$lib/server/http/logger';
+import {
+	inviteMember,
+	invitationDays,
+	resendInvitation,
+	type InvitingPlace
+} from '$lib/server/members/invite-member';
 import { listMembers } from '$lib/server/members/list-members';
 import { removeMember, setSteward } from '$lib/server/members/remove-member';
 import { loadLab } from '$lib/server/labs/load-lab';
@@ -33,7 +39,7 @@ export const actions: Actions = {
 		const grant = await requirePermission(locals, 'lab:manage', params);
 		const form = await superValidate(request, zod4(inviteSchema));
 		if (!form.valid) return fail(400, { form });
-		const place = { db: locals.db, clock: locals.clock, settings: config() };
+		const place = invitingPlace(locals);
 		const answer = await inviteMember(place, grant, form.data);
 		if (!answer.ok) {
 			return setError(form, 'email', 'This address belongs to a member already, see the list.');
@@ -50,7 +56,7 @@ export const actions: Actions = {
 		const grant = await requirePermission(locals, 'lab:manage', params);
 		const row = memberSchema.safeParse(Object.fromEntries(await request.formData()));
 		if (!row.success) return fail(400, { refused: refusals['no-such-member'] });
-		const place = { db: locals.db, clock: locals.clock, settings: config() };
+		const place = invitingPlace(locals);
 		const answer = await resendInvitation(place, grant, row.data.personId);
 		if (!answer.ok) return fail(400, { refused: refusals[answer.reason] });
 		return { notice: 'The invitation is on its way once more. The earlier link works too.' };
@@ -75,3 +81,7 @@ export const actions: Actions = {
 		return { notice: isSteward ? 'They are steward too.' : 'They are a plain member now.' };
 	}
 };
+
+function invitingPlace({ db, clock }: App.Locals): InvitingPlace {
+	return { db, clock, settings: config(), log: logger() };
+}
