@@ -87,6 +87,16 @@ describe('findFaults', () => {
 
 const unitVariable = { unit: 'm', min: -1, max: 1, origin: 0, scale: 0.1, resolution: null };
 
+describe('a visit too long for every rig', () => {
+	it('is a caution where nothing is issued to a rig', () => {
+		const draft = createPatternDraft('single-visit');
+		draft.task.type = 'puck';
+		draft.visits[0]?.blocks.push({ purpose: 'baseline', trials: 980 });
+		const found = findFaults(draft, rigs).map(({ code, level }) => [code, level]);
+		expect(found).toEqual([['over-every-rig', 'caution']]);
+	});
+});
+
 describe('a formula of one’s own', () => {
 	function formulaDraft(formula: string): ProtocolDraft {
 		return draftWith(({ task }) => {

@@ -38,32 +38,37 @@ export function findLimitFaults(
 	return faults;
 }
 
-/** A visit against the limits of the lab's rigs. */
+/**
+ * A visit against the limits of the lab's rigs. Too much for every rig is a fault where blocks are
+ * issued to them, and a caution where data are only recorded.
+ */
 export function findRigFaults(
 	visit: VisitDraft,
 	index: number,
-	rigs: readonly RigLimit[]
+	{ rigs, isIssued }: { rigs: readonly RigLimit[]; isIssued: boolean }
 ): Fault[] {
-	const place = visitName(visit, index);
 	const trials = countTrials(visit);
-	const unfit = rigs.filter(
-		(rig) => (visit.minutes ?? 0) > rig.minutesPerVisit || trials > rig.trialsPerVisit
-	);
+	const isOver = (rig: RigLimit) =>
+		(visit.minutes ?? 0) > rig.minutesPerVisit || trials > rig.trialsPerVisit;
+	const unfit = rigs.filter(isOver);
 	if (unfit.length === 0) return [];
 	const limits = unfit.map(
 		(rig) => `${rig.name} ${rig.minutesPerVisit} min and ${rig.trialsPerVisit} trials`
 	);
 	const isNowhere = unfit.length === rigs.length;
+	const remedies = {
+		some: 'Shorten the visit, or know that only the other rigs can run it.',
+		issued: 'Shorten the visit: no rig may run it.',
+		recorded: 'Shorten the visit, unless its data were recorded elsewhere.'
+	};
 	return [
 		{
 			code: isNowhere ? 'over-every-rig' : 'over-one-rig',
-			level: isNowhere ? 'fault' : 'caution',
-			place,
+			level: isNowhere && isIssued ? 'fault' : 'caution',
+			place: visitName(visit, index),
 			field: `visits.${index}.minutes`,
 			text: `${visit.minutes ?? 0} min and ${trials} trials; allowed a visit: ${limits.join(', ')}.`,
-			remedy: isNowhere
-				? 'Shorten the visit: no rig may run it.'
-				: 'Shorten the visit, or know that only the other rigs can run it.'
+			remedy: remedies[isNowhere ? (isIssued ? 'issued' : 'recorded') : 'some']
 		}
 	];
 }

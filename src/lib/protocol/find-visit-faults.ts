@@ -1,6 +1,7 @@
 import { checkNumber, checkText, faultAt, type Fault, type RigLimit } from './fault';
 import { findLimitFaults, findRigFaults } from './find-limit-faults';
 import { visitName } from './visit-name';
+import { hasAdaptiveTime } from './has-adaptive-time';
 import type { ProtocolDraft, VisitDraft } from './protocol-draft';
 
 /** What is wrong with visits and their blocks: lengths, limits, order of kinds. */
@@ -11,7 +12,7 @@ export function findVisitFaults(draft: ProtocolDraft, rigs: readonly RigLimit[])
 			...findFieldFaults(visit, index),
 			...findBlockFaults(visit, index),
 			...findLimitFaults(visit, index, draft.limits),
-			...findRigFaults(visit, index, rigs)
+			...findRigFaults(visit, index, { rigs, isIssued: hasAdaptiveTime(draft) })
 		]),
 		...findLengthFaults(draft.visits)
 	];
