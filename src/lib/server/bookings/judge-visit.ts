@@ -8,6 +8,7 @@ import type { Interval, PlacedVisit } from '$scheduler/booking/types.ts';
 import { loadPersonPlan, type PersonPlan } from './load-person-plan';
 import { isLive, loadVisits, type StudyVisit } from './load-visits';
 import { placeVisits } from './place-visits';
+import { hasOpenRequest } from './settle-request';
 import {
 	describeContext,
 	findNewBreaks,
@@ -29,7 +30,7 @@ export type MovableAnswer =
 export async function loadMovable(
 	db: Queryable,
 	clock: Clock,
-	grant: Grant<'booking:read' | 'booking:change'>,
+	grant: Grant<'booking:read' | 'booking:change' | 'today:read'>,
 	{ bookingId }: { bookingId: string }
 ): Promise<MovableAnswer> {
 	const [visit] = await loadVisits(db, grant, { bookingIds: [bookingId] });
@@ -114,8 +115,11 @@ export function findWays(
 	{ plan, visit, chain }: MovableVisit,
 	{ nowMs, wantedStartMs }: { nowMs: number; wantedStartMs?: number | undefined }
 ): Alternative[] {
+	// Who declined, or asks for another time, cannot come while the visit is booked now.
+	const busy = hasOpenRequest(visit) ? [{ fromMs: visit.startMs, toMs: visit.endMs }] : [];
+	const participant = { ...plan.problem.participant, busy };
 	const found = findAlternatives({
-		problem: { ...plan.problem, nowMs },
+		problem: { ...plan.problem, participant, nowMs },
 		chain,
 		visitNumber: visit.visitNumber,
 		horizonEndMs: nowMs + horizonMs,

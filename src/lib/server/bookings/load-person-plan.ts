@@ -29,7 +29,7 @@ const dayMs = 24 * 3_600_000;
 export async function loadPersonPlan(
 	db: Queryable,
 	clock: Clock,
-	grant: Grant<'booking:read' | 'booking:change'>,
+	grant: Grant<'booking:read' | 'booking:change' | 'today:read'>,
 	participantId: string
 ): Promise<PersonPlan | null> {
 	const participant = await loadParticipant(db, grant, participantId);

@@ -8,6 +8,7 @@ import {
 	visitLabel,
 	type PersonRecord
 } from '$lib/server/people/load-person-records';
+import { addWays } from './add-ways';
 import { loadLabZone } from './chain-items';
 import { loadWaiting } from './load-waiting';
 
@@ -19,8 +20,9 @@ export async function loadToday(
 ): Promise<Today> {
 	const zone = await loadLabZone(db, grant.labId);
 	const nowMs = clock.now();
-	const items = await loadWaiting(db, clock, grant);
+	const waiting = await loadWaiting(db, clock, grant);
 	const isCoordinator = grant.roles.includes('coordinator');
+	const items = isCoordinator ? await addWays(db, clock, grant, { items: waiting, zone }) : waiting;
 	const records = isCoordinator ? await loadPersonRecords(db, grant) : [];
 	return { zone, nowMs, items, day: isCoordinator ? pictureDay(records, nowMs, zone) : null };
 }

@@ -138,7 +138,7 @@ function bookingItems(record: PersonRecord, context: ItemContext): WaitingItem[]
 				? `${person.code} has no visit booked`
 				: `${person.code} has ${open.length === 1 ? 'a visit' : `${open.length} visits`} without a place`,
 			what: isFirst
-				? `Consented ${formatShortDay(person.consentedAtMs, context.zone)}, ${countDays(days)} ago.`
+				? `Consented ${formatShortDay(person.consentedAtMs, context.zone)}, ${days === 0 ? 'today' : `${countDays(days)} ago`}.`
 				: `${labels}.`,
 			ifNothing: isFirst
 				? 'They wait, and the longer they wait the fewer come.'
