@@ -21,7 +21,13 @@ export default defineConfig({
 				hookTimeout: 300_000,
 				fileParallelism: false
 			}),
-			// Long: `npm run test:start`
+			// Long: `npm run test:journeys`, `npm run test:start`
+			project('journeys', ['tests/long/**/*.test.ts'], {
+				globalSetup: ['tests/support/database-setup.ts'],
+				testTimeout: 600_000,
+				hookTimeout: 1_200_000,
+				fileParallelism: false
+			}),
 			project('start', ['tests/start/**/*.test.ts'], {
 				testTimeout: 600_000,
 				hookTimeout: 300_000,

@@ -6,13 +6,14 @@ import { StartFailure } from '../start/failure.mjs';
 export const tiers = ['types', 'unit', 'reference', 'architecture', 'integration', 'e2e'];
 
 /** Tiers with commands of their own, which `npm test` leaves out. */
-export const longTiers = ['start'];
+export const longTiers = ['journeys', 'start'];
 
 const places = {
 	'tests/reference/': 'reference',
 	'tests/architecture/': 'architecture',
 	'tests/integration/': 'integration',
 	'tests/e2e/': 'e2e',
+	'tests/long/': 'journeys',
 	'tests/start/': 'start'
 };
 
