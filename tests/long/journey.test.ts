@@ -21,7 +21,7 @@ import {
 	makeRigKey,
 	setUpLab
 } from './pages/lab-pages';
-import { addPerson, chooseEverybody, openPerson, pasteRows } from './pages/people-pages';
+import { addPerson, chooseEverybody, openPerson, openVisit, pasteRows } from './pages/people-pages';
 import {
 	createStudy,
 	freeze,
@@ -86,6 +86,7 @@ afterAll(async () => {
 	rmSync(folder, { recursive: true, force: true });
 });
 
+const eventOf = (mail: StoredMail | undefined) => mail?.calendar?.events[0];
 const isAbout = (start: string) => (mail: StoredMail) => mail.subject.startsWith(start);
 
 describe('step 0: the steward sets up the lab', () => {
@@ -238,7 +239,11 @@ describe('step 2: the coordinator enrols and books', () => {
 	});
 
 	it('pastes the others; a fault is named by line and column, and mended in place', async () => {
-		const rows = [...everybody.slice(1).map(({ code }) => newcomer(code)), newcomer(unsure)];
+		const rows = [
+			...everybody.slice(1).map(({ code }) => newcomer(code)),
+			newcomer('Q98'),
+			newcomer(unsure)
+		];
 		const [first, ...rest] = rows;
 		const faulty = { ...first, email: 'q23.people.example' } as (typeof rows)[number];
 		await pasteRows(desks.coordinator, [faulty, ...rest]);
@@ -251,7 +256,7 @@ describe('step 2: the coordinator enrols and books', () => {
 
 	it('records consent of everybody', async () => {
 		const count = await chooseEverybody(desks.coordinator);
-		expect(count).toBe(everybody.length + 1);
+		expect(count).toBe(everybody.length + 2);
 		await desks.coordinator.press(`Record consent of ${count} people`);
 		await desks.coordinator.see(/Consent recorded for /);
 		await desks.coordinator.keep('22-consent');
@@ -270,8 +275,8 @@ describe('step 2: the coordinator enrols and books', () => {
 	it('books the others at their earliest places', async () => {
 		await chooseEverybody(desks.coordinator);
 		await desks.coordinator.page.getByLabel('Choose Q11').uncheck();
-		await desks.coordinator.press(`Book the earliest places for ${everybody.length} people`);
-		await desks.coordinator.see(`${everybody.length} people are booked`);
+		await desks.coordinator.press(`Book the earliest places for ${everybody.length + 1} people`);
+		await desks.coordinator.see(`${everybody.length + 1} people are booked`);
 		await desks.coordinator.keep('25-all-booked');
 	});
 });
@@ -281,7 +286,7 @@ describe('steps 3 and 4: invitations leave, participants answer', () => {
 		for (const { code } of everybody) {
 			const mail = await app.mailbox.waitFor(addressOf(code), isAbout('Your visit'));
 			expect(mail.calendar?.method).toBe('REQUEST');
-			expect(mail.calendar?.events[0]?.sequence).toBe(0);
+			expect(eventOf(mail)?.sequence).toBe(0);
 			expect(mail.text).not.toMatch(/regions against/i);
 		}
 		expect(await app.mailbox.list(addressOf('Q11'))).toHaveLength(1);
@@ -311,6 +316,27 @@ describe('steps 3 and 4: invitations leave, participants answer', () => {
 		await desks.coordinator.open('/home');
 		await desks.coordinator.see(new RegExp(unsure));
 		await desks.coordinator.keep('31-task');
+	});
+
+	it('the coordinator moves that visit, which sends one update of the same event', async () => {
+		const [before] = await app.mailbox.list(addressOf(unsure));
+		await desks.coordinator.open(`${study}/people`);
+		await openVisit(desks.coordinator, unsure, 'Baseline');
+		await desks.coordinator.see('They declined');
+		await desks.coordinator.keep('32-ways');
+		await desks.coordinator.press(/^Move to .*send 1 update/);
+		await desks.coordinator.page.getByRole('heading', { level: 1, name: unsure }).waitFor();
+		const mail = await app.mailbox.waitFor(addressOf(unsure), isAbout('Visit moved'));
+		expect(mail.calendar?.method).toBe('REQUEST');
+		expect(eventOf(mail)).toMatchObject({ sequence: 1, uid: eventOf(before)?.uid });
+		expect(eventOf(mail)?.start).not.toBe(eventOf(before)?.start);
+	});
+
+	it('and cancels somebody’s visit, which takes the event out of their calendar', async () => {
+		await openVisit(desks.coordinator, 'Q98', 'Baseline');
+		await desks.coordinator.press('Cancel Baseline of Q98, send 1 mail');
+		const mail = await app.mailbox.waitFor(addressOf('Q98'), isAbout('Visit cancelled'));
+		expect(mail.calendar?.method).toBe('CANCEL');
 	});
 });
 
