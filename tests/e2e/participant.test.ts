@@ -101,7 +101,7 @@ describe('a participant with a phone', () => {
 		]) {
 			const reply = await fetch(link, { method });
 			expect(reply.status).toBe(200);
-			expect(reply.headers.get('referrer-policy')).toBe('no-referrer');
+			expect(reply.headers.get('referrer-policy')).toBe('strict-origin');
 			expect(reply.headers.get('cache-control')).toMatch(/no-store/);
 		}
 		expect((await stored(bookingId))?.answer).toBe('none');

@@ -88,6 +88,24 @@ describe('signing in', () => {
 		await other.close();
 	});
 
+	test('all of it works without script, signing out as well', async () => {
+		const plain = await browser.openScreen({ javaScript: false });
+		const { page } = plain;
+		await page.goto(`${app.origin}/lab/${labId}/staff`);
+		await askForLink(page, 'noor@fjordview.example');
+		const count = (await app.mailbox.list('noor@fjordview.example')).length;
+		const mail = await app.mailbox.waitFor('noor@fjordview.example', () => count > 0);
+		await page.goto(linkIn(mail, /signin\/confirm/));
+		await page.getByRole('button', { name: 'Sign in' }).click();
+		await page.waitForURL(`${app.origin}/lab/${labId}/staff`);
+		await page.locator('summary', { hasText: 'Noor' }).click();
+		await page.getByRole('button', { name: 'Sign out' }).click();
+		await page.waitForURL(`${app.origin}/`);
+		await page.goto(`${app.origin}/lab/${labId}/staff`);
+		expect(page.url()).toContain('/signin?to=');
+		await plain.close();
+	});
+
 	test('an unknown address sees the same page and gets no mail', async () => {
 		const other = await browser.openScreen();
 		await other.page.goto(`${app.origin}/signin`);

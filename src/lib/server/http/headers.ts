@@ -2,7 +2,6 @@ import type { Handle } from '@sveltejs/kit';
 import { config } from '$lib/server/config';
 
 const fixed: Record<string, string> = {
-	'referrer-policy': 'no-referrer',
 	'x-content-type-options': 'nosniff',
 	'x-frame-options': 'DENY',
 	'cross-origin-opener-policy': 'same-origin',
@@ -16,6 +15,7 @@ export const headers: Handle = async ({ event, resolve }) => {
 	// Redirects made by Auth.js have headers that cannot be changed: copy first.
 	const response = new Response(answer.body, answer);
 	for (const [name, value] of Object.entries(fixed)) response.headers.set(name, value);
+	response.headers.set('referrer-policy', referrerPolicy(event.url.pathname));
 	if (!response.headers.has('cache-control'))
 		response.headers.set('cache-control', 'private, no-store');
 	const settings = config();
@@ -25,6 +25,14 @@ export const headers: Handle = async ({ event, resolve }) => {
 	allowSignOn(response, event.url.pathname, settings.OIDC_ISSUER);
 	return response;
 };
+
+/**
+ * No address with its path, so no token in it, ever goes out as a referrer. Forms that post must say
+ * which site they come from, or they are refused as foreign: `no-referrer` takes that away as well.
+ */
+function referrerPolicy(path: string): string {
+	return path === '/signin/confirm' ? 'no-referrer' : 'strict-origin';
+}
 
 /** The browser applies form-action to redirects too: the sign-in form ends at the issuer. */
 function allowSignOn(response: Response, path: string, issuer: string | undefined): void {
