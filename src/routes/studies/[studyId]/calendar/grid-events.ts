@@ -103,13 +103,14 @@ function visitEvent(week: Week, visit: WeekVisit, { judged, candidate }: Moving)
 		...(visit.answer === 'declined' || visit.answer === 'asks-other-time' ? ['is-asking'] : [])
 	];
 	const time = formatTime(visit.startMs, week.zone);
+	const detail = isMoved && candidate ? `now ${time}` : detailOf(visit);
 	const props = {
 		kind: 'visit' as const,
 		rigId: visit.rigId,
 		bookingId: visit.code === null ? null : visit.bookingId,
 		title: visit.code ?? 'taken',
-		detail: isMoved && candidate ? `now ${time}` : detailOf(visit),
-		words: wordsOf(week, visit),
+		detail,
+		words: wordsOf(week, visit, detail),
 		fromMs: visit.startMs,
 		...sharesOf(visit)
 	};
@@ -138,15 +139,17 @@ function sharesOf(visit: WeekVisit): { setupShare: number; cleanupShare: number 
 	};
 }
 
-function wordsOf(week: Week, visit: WeekVisit): string {
+/** Begins with what is seen, so that who speaks to the page can name what they see. */
+function wordsOf(week: Week, visit: WeekVisit, detail: string): string {
 	const from = `${formatShortDay(visit.startMs, week.zone)}, ${formatTime(visit.startMs, week.zone)}`;
 	const to = formatTime(visit.endMs, week.zone);
-	if (visit.code === null) return `taken by another study, ${from} to ${to}`;
+	if (visit.code === null) return `taken, by another study, ${from} to ${to}`;
 	const state =
 		visit.state === 'booked'
 			? answerWords({ answer: visit.answer, invitedAtMs: visit.isInvited ? 0 : null })
 			: stateWords[visit.state];
-	return `${visit.code}, ${visit.label}, ${from} to ${to} on ${visit.rigName}, ${state}`;
+	const seen = [visit.code, detail].filter(Boolean).join(' ');
+	return `${seen}, ${visit.label}, ${from} to ${to} on ${visit.rigName}, ${state}`;
 }
 
 function candidateEvents(week: Week, { judged, candidate, isRefused }: Moving): GridEvent[] {
@@ -155,7 +158,7 @@ function candidateEvents(week: Week, { judged, candidate, isRefused }: Moving): 
 	const time = formatTime(candidate.startMs, week.zone);
 	const title = judged.code;
 	const detail = isRefused ? `not ${time}` : `to ${time}`;
-	const words = `${judged.code}, ${judged.label}, ${detail}`;
+	const words = `${title} ${detail}, ${judged.label}`;
 	const { rigId } = candidate;
 	const props = { kind: 'candidate' as const, rigId, bookingId: null, title, detail, words };
 	return [

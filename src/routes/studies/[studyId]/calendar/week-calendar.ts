@@ -124,7 +124,7 @@ function drawDayHeader(date: Date, week: Week): Node[] {
 }
 
 function mountEvent({ el, event, isMirror }: EventMountArg, week: Week): void {
-	const { rigId, words, kind } = event.extendedProps as GridProps;
+	const { rigId, words, kind, bookingId } = event.extendedProps as GridProps;
 	setLane(el, rigId, week);
 	if (kind !== 'visit' && kind !== 'candidate') {
 		el.setAttribute('aria-hidden', 'true');
@@ -132,6 +132,7 @@ function mountEvent({ el, event, isMirror }: EventMountArg, week: Week): void {
 	}
 	el.setAttribute('role', 'button');
 	el.setAttribute('aria-label', words);
+	if (bookingId) el.dataset.booking = bookingId;
 	if (isMirror) followPointer(el, week);
 }
 
