@@ -1,17 +1,12 @@
-import { and, asc, desc, eq, isNotNull, isNull, inArray } from 'drizzle-orm';
+import { and, asc, desc, eq, isNull } from 'drizzle-orm';
 import { loadHeldRoles, type Grant } from '$lib/server/access/require-permission';
 import { findSections } from '$lib/server/access/sections';
 import type { Clock } from '$lib/server/clock';
 import type { Queryable } from '$lib/server/db/client';
-import {
-	lab,
-	membership,
-	protocolVersion,
-	study,
-	studyPause,
-	type StudyRole
-} from '$lib/server/db/schema';
+import { lab, membership, study, type StudyRole } from '$lib/server/db/schema';
 import { findLabGaps } from '$lib/server/labs/load-lab';
+import { isPaused } from '$lib/server/pauses/is-paused';
+import { loadRunningVersion } from '$lib/server/studies/load-gates';
 import { loadWaiting } from '$lib/server/waiting/load-waiting';
 import { sortByUrgency, type WaitingItem } from '$lib/waiting/waiting-item';
 import { loadTeamWaiting } from './team-waiting';
@@ -84,7 +79,6 @@ async function loadStudies(
 		.from(study)
 		.where(eq(study.labId, own.id))
 		.orderBy(desc(study.createdAt));
-	const states = await loadStates(db, rows);
 	const found: HomeStudy[] = [];
 	for (const row of rows) {
 		const held = await loadHeldRoles(db, { personId: own.personId, studyId: row.id });
@@ -94,7 +88,7 @@ async function loadStudies(
 		found.push({
 			id: row.id,
 			workingTitle: row.workingTitle,
-			...(states.get(row.id) ?? { state: 'in design', versionNumber: null }),
+			...(await loadState(db, row)),
 			...held,
 			href: first.href,
 			waiting: await loadStudyWaiting(db, clock, grantFor, { studyId: row.id, ...held })
@@ -119,33 +113,14 @@ async function loadStudyWaiting(
 	return sortByUrgency(items.filter((item) => item.act !== null));
 }
 
-/** How each study stands: the newest frozen version, whether it is paused or closed. */
-async function loadStates(db: Queryable, studies: (typeof study.$inferSelect)[]) {
-	const ids = studies.map((row) => row.id);
-	const states = new Map<string, { state: StudyState; versionNumber: number | null }>();
-	if (ids.length === 0) return states;
-	const versions = await db
-		.select({ studyId: protocolVersion.studyId, number: protocolVersion.number })
-		.from(protocolVersion)
-		.where(and(inArray(protocolVersion.studyId, ids), isNotNull(protocolVersion.hash)))
-		.orderBy(asc(protocolVersion.number));
-	const pauses = await db
-		.select({ studyId: studyPause.studyId })
-		.from(studyPause)
-		.where(
-			and(
-				inArray(studyPause.studyId, ids),
-				isNull(studyPause.participantId),
-				isNull(studyPause.liftedAt)
-			)
-		);
-	const newest = new Map(versions.map((row) => [row.studyId, row.number]));
-	const paused = new Set(pauses.map((row) => row.studyId));
-	for (const { id, closedAt } of studies) {
-		const versionNumber = newest.get(id) ?? null;
-		const open = versionNumber === null ? 'in design' : 'running';
-		const state = closedAt ? 'closed' : paused.has(id) ? 'paused' : open;
-		states.set(id, { state, versionNumber });
-	}
-	return states;
+/** How a study stands: the version that runs, whether it is paused or closed. */
+async function loadState(
+	db: Queryable,
+	row: typeof study.$inferSelect
+): Promise<{ state: StudyState; versionNumber: number | null }> {
+	const running = await loadRunningVersion(db, row.id);
+	const versionNumber = running?.number ?? null;
+	if (row.closedAt) return { state: 'closed', versionNumber };
+	if (await isPaused(db, row.id)) return { state: 'paused', versionNumber };
+	return { state: running ? 'running' : 'in design', versionNumber };
 }
