@@ -1,6 +1,6 @@
 import type { ProposedChain } from '$scheduler/booking/propose-chain.ts';
 import type { ChainObstacle } from '$scheduler/booking/explain-no-chain.ts';
-import type { BrokenRule } from '$scheduler/booking/broken-rule.ts';
+import type { RuleName } from '$scheduler/booking/broken-rule.ts';
 import type { PersonPlan } from './load-person-plan';
 
 /** A chain that could be booked, as the page shows it. */
@@ -40,7 +40,7 @@ export function tellChain({ problem, lab }: PersonPlan, chain: ProposedChain): T
 	};
 }
 
-const ruleNames: Record<BrokenRule['rule'] | 'horizon', string> = {
+const ruleNames: Record<RuleName | 'horizon', string> = {
 	'clock-change-gap': 'clocks that jump',
 	'in-the-past': 'being over',
 	'before-earliest-start': 'the earliest start',
@@ -63,15 +63,40 @@ const ruleNames: Record<BrokenRule['rule'] | 'horizon', string> = {
 	horizon: 'the end of the twelve weeks that were searched'
 };
 
-/** Why no chain keeps every rule: the visit without a place, and what takes its places away. */
-export function tellObstacle(plan: PersonPlan, obstacle: ChainObstacle): string[] {
+const helpNames: Partial<Record<RuleName, string>> = {
+	availability: 'wider hours of this person',
+	'before-earliest-start': 'an earlier earliest start',
+	'pause-used-up': 'one more longer gap in the protocol',
+	nights: 'fewer nights between visits in the protocol',
+	'same-time': 'starts further from their own clock time in the protocol',
+	'clock-window': 'more hours of the day in the protocol',
+	weekday: 'more weekdays in the protocol',
+	holiday: 'a day less on which the lab is closed',
+	'rig-hours': 'longer hours of a rig',
+	'rig-busy': 'a rig that is free',
+	'room-busy': 'a room that is free',
+	'staff-hours': 'longer hours of the staff',
+	'staff-busy': 'staff who are free'
+};
+
+type Obstacle = { obstacle: ChainObstacle; helps: readonly RuleName[] };
+
+/** Why no chain keeps every rule: the visit without a place, what takes its places, what would help. */
+export function tellObstacle(plan: PersonPlan, { obstacle, helps }: Obstacle): string[] {
 	const visit = plan.problem.plan.visits.find(({ number }) => number === obstacle.visitNumber);
 	const label = visit?.label ?? `Visit ${obstacle.visitNumber}`;
 	const total = obstacle.blockedBy.reduce((sum, { startCount }) => sum + startCount, 0);
-	const first = `${label} finds no place in any chain that keeps every rule.`;
-	if (total === 0) return [first];
 	const reasons = obstacle.blockedBy
 		.slice(0, 3)
 		.map(({ rule, startCount }) => `${ruleNames[rule]} (${startCount} of ${total})`);
-	return [first, `Of the quarter hours its gap leaves, most fall to ${reasons.join(', ')}.`];
+	const help = helps.flatMap((rule) => helpNames[rule] ?? []);
+	return [
+		`${label} finds no place in any chain that keeps every rule.`,
+		...(total === 0
+			? []
+			: [`Of the quarter hours its gap leaves, most fall to ${reasons.join(', ')}.`]),
+		help.length === 0
+			? 'No single change would open a chain.'
+			: `Each of these by itself would open one: ${help.join('; ')}.`
+	];
 }

@@ -2,7 +2,7 @@ import { error, fail, redirect } from '@sveltejs/kit';
 import { chosenPlacesSchema } from '$lib/bookings/placement-schema';
 import { requirePermission } from '$lib/server/access/require-permission';
 import { explainRefusal } from '$lib/server/bookings/explain-refusal';
-import { proposeChains } from '$lib/server/bookings/propose-chains';
+import { findHelps, proposeChains } from '$lib/server/bookings/propose-chains';
 import { savePlan } from '$lib/server/bookings/save-plan';
 import { tellChain, tellObstacle } from '$lib/server/bookings/tell-proposals';
 import { config } from '$lib/server/config';
@@ -33,7 +33,7 @@ export const load: PageServerLoad = async ({ locals, params }) => {
 		hasConsent: plan.participant.consentedAtMs !== null,
 		planVersion: plan.planVersion,
 		chains: found.ok ? found.chains.map((chain) => tellChain(plan, chain)) : [],
-		obstacle: found.ok ? [] : tellObstacle(plan, found.obstacle),
+		obstacle: found.ok ? [] : tellObstacle(plan, { ...found, helps: findHelps(plan, clock.now()) }),
 		gates: await findMissingGates(db, clock, grant.studyId)
 	};
 };
