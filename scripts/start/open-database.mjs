@@ -56,12 +56,14 @@ async function openGiven(state, fill) {
 	const { home, choice, settings } = state;
 	if (choice.fresh) throw freshGiven();
 	const ownerUrl = settings.databaseUrl;
-	const variant = chooseVariant(await readInstanceKind(ownerUrl), choice.variant);
+	const kind = await readInstanceKind(ownerUrl);
+	const variant = chooseVariant(kind, choice.variant);
 	const faults = variant === 'own' ? [] : findDemoFaults(settings.given);
 	if (faults.length > 0) throw badSettings(faults);
 	const folder = join(home, givenFolder(ownerUrl));
-	const isNew = (await readInstanceKind(ownerUrl)) === 'blank';
-	const said = await fill({ ownerUrl, folder, isNew, variant });
+	// The seed itself finds out what is there already, also after it was cut short.
+	const target = { ownerUrl, folder, isNew: kind === 'blank', mayBeHalfSeeded: true };
+	const said = await fill({ ...target, variant });
 	return { ownerUrl, folder, variant, said, ended: new Promise(() => {}) };
 }
 

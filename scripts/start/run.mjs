@@ -55,7 +55,8 @@ async function choosePorts(port) {
 }
 
 /** Migrates and seeds one database; leaves what the seed said in the variant's folder. */
-async function fillDatabase(state, { variant, ownerUrl, folder, isNew }) {
+async function fillDatabase(state, target) {
+	const { variant, ownerUrl, folder, isNew, mayBeHalfSeeded = false } = target;
 	const { accounts, processes, say } = state;
 	mkdirSync(folder, { recursive: true, mode: 0o755 });
 	const env = {
@@ -65,7 +66,7 @@ async function fillDatabase(state, { variant, ownerUrl, folder, isNew }) {
 	const step = { folder: state.folder, env, account: accounts.application, processes };
 	if (isNew && variant === 'demo') say('Making the demo');
 	await migrate(step);
-	if (variant === 'demo' && !isNew) return {};
+	if (variant === 'demo' && !isNew && !mayBeHalfSeeded) return {};
 	const said = await seed({ ...step, variant, report: (line) => say(`  ${line}`) });
 	if (said.people)
 		writeFileSync(join(folder, 'people.json'), JSON.stringify(said.people), { mode: 0o644 });
