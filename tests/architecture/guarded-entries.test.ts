@@ -22,16 +22,11 @@ const otherGuards: Record<string, RegExp> = {
 	requireAnswerLink: /^src\/routes\/\(participant\)\//
 };
 
-/** Permissions whose pages are still being made. */
-const unused = [
-	'attendance:record',
-	'booking:read',
-	'decision:count',
-	'message:read',
-	'record:read',
-	'task:read',
-	'today:read'
-];
+/** Permissions that no entry asks for yet, with the reason; take one out when an entry does. */
+const unused: Record<string, string> = {
+	'task:read': 'the task is edited inside the protocol until it has a page of its own',
+	'decision:count': 'no page shows counts of decisions by themselves yet'
+};
 
 /** What a file of a route may export that is no entry. */
 const settings = ['prerender', 'ssr', 'csr', 'trailingSlash', 'config', 'entries'];
@@ -76,7 +71,7 @@ test('every permission of the table is asked for somewhere', () => {
 		})
 	);
 	const silent = Object.keys(permissions).filter((name) => !asked.has(name));
-	expect(silent.filter((name) => !unused.includes(name))).toEqual([]);
+	expect(silent.toSorted()).toEqual(Object.keys(unused).toSorted());
 });
 
 /** The functions of a file that the framework calls. */
