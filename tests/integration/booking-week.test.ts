@@ -189,6 +189,29 @@ describe('the week', () => {
 	});
 });
 
+describe('a person who came to every visit', () => {
+	it('has completed, until the last visit turns out to have been missed', async () => {
+		const { participantIds } = await enrolAndBook(1);
+		const [participantId = ''] = participantIds;
+		await owner.db
+			.update(participant)
+			.set({ state: 'allocated', allocatedAt: new Date(clock.now()) })
+			.where(eq(participant.id, participantId));
+		const attendance = await coordinator.grantFor('attendance:record');
+		const visits = await visitsOf(participantId);
+		for (const { bookingId, startMs } of visits) {
+			clock.set(startMs + 60_000);
+			await recordAttendance(app.db, clock, attendance, { bookingId, outcome: 'attended' });
+		}
+		const list = await coordinator.grantFor('participant:list');
+		const state = async () => (await loadParticipants(app.db, list))[0]?.state;
+		expect(await state()).toBe('completed');
+		const bookingId = visits.at(-1)?.bookingId ?? '';
+		await recordAttendance(app.db, clock, attendance, { bookingId, outcome: 'no-show' });
+		expect(await state()).toBe('allocated');
+	});
+});
+
 describe('a missed visit', () => {
 	it('says so when no place keeps every rule', async () => {
 		const { participantIds } = await enrolAndBook(1);

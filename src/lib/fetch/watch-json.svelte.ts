@@ -16,7 +16,7 @@ export function watchJson<Schema extends z.ZodType>(options: Options<Schema>) {
 	let latest = $state.raw<{ address: string; value: z.output<Schema> } | null>(null);
 	let isStale = $state(false);
 	let failures = 0;
-	let lookNow: (() => void) | undefined;
+	let lookNow: (() => Promise<void>) | undefined;
 
 	$effect(() => {
 		const watched = address();
@@ -38,7 +38,7 @@ export function watchJson<Schema extends z.ZodType>(options: Options<Schema>) {
 			if (document.visibilityState === 'visible') void look();
 			else clearTimeout(timer);
 		};
-		lookNow = () => void look();
+		lookNow = look;
 		document.addEventListener('visibilitychange', seen);
 		wait();
 		return () => {
@@ -57,6 +57,6 @@ export function watchJson<Schema extends z.ZodType>(options: Options<Schema>) {
 			return isStale;
 		},
 		/** Looks again at once, as after a change of one's own. */
-		refresh: () => lookNow?.()
+		refresh: async () => lookNow?.()
 	};
 }

@@ -5,6 +5,7 @@ export const waitingItemSchema = z.object({
 	key: z.string(),
 	kind: z.enum(Object.keys(waitingWords) as [WaitingKind, ...WaitingKind[]]),
 	participantId: z.string().nullable(),
+	bookingId: z.string().nullish(),
 	tone: z.enum(['rose', 'amber', 'plain']),
 	title: z.string(),
 	what: z.string(),

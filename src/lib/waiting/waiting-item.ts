@@ -4,6 +4,8 @@ export type WaitingItem = {
 	kind: WaitingKind;
 	/** Whose oval stands beside it; null when it is about the study. */
 	participantId: string | null;
+	/** The visit it is about. */
+	bookingId?: string | null | undefined;
 	tone: 'rose' | 'amber' | 'plain';
 	title: string;
 	what: string;

@@ -8,6 +8,7 @@ import { loadLabCalendar } from '$lib/server/bookings/load-lab-calendar';
 import { loadVisits, type StudyVisit } from '$lib/server/bookings/load-visits';
 import { countPlanChangeAnyway, lockLab } from '$lib/server/bookings/lock-plan';
 import { actorOf, recordEvent } from '$lib/server/record/record-event';
+import { markCompletion } from './mark-completion';
 
 export type Attendance = 'attended' | 'no-show';
 export type AttendanceOutcome =
@@ -37,6 +38,7 @@ export async function recordAttendance(
 				.update(booking)
 				.set({ state: outcome, changedAt: new Date(clock.now()) })
 				.where(eq(booking.id, bookingId));
+			await markCompletion(tx, clock, visit.participantId);
 			await recordEvent(tx, clock, actorOf(grant), {
 				kind: outcome === 'attended' ? 'visit-attended' : 'visit-missed',
 				item: 'booking',

@@ -38,9 +38,10 @@ async function addWay(
 	grant: Grant<'today:read'>,
 	{ item, zone }: { item: WaitingItem; zone: string }
 ): Promise<WaitingItem> {
-	const bookingId = item.key.split(' ')[1] ?? '';
+	const { bookingId, act } = item;
+	if (!bookingId || !act) return item;
 	const movable = await loadMovable(db, clock, grant, { bookingId });
-	if (!movable.ok || !item.act) return item;
+	if (!movable.ok) return item;
 	const ways = findWays(movable, { nowMs: clock.now() + noticeMs });
 	const [first] = ways;
 	if (!first) {
@@ -51,7 +52,7 @@ async function addWay(
 	const place = `${when} on ${way.rigName}`;
 	const more = ways.length > 1 ? `, and ${ways.length - 1} more` : '';
 	const what = `${item.what} What keeps their chain: ${place}${more}.`;
-	return { ...item, what, act: { ...item.act, label: `Offer ${place}` } };
+	return { ...item, what, act: { ...act, label: `Offer ${place}` } };
 }
 
 /** 'today 12:30', 'tomorrow 12:15', 'Fri 12 Mar 12:15'. */

@@ -194,9 +194,10 @@ function frame(
 	kind: WaitingItem['kind'],
 	{ person }: PersonRecord,
 	visit?: StudyVisit
-): Pick<WaitingItem, 'key' | 'kind' | 'participantId' | 'byText'> {
-	const key = `${kind} ${visit?.bookingId ?? person.id}`;
-	return { key, kind, participantId: person.id, byText: null };
+): Pick<WaitingItem, 'key' | 'kind' | 'participantId' | 'bookingId' | 'byText'> {
+	const bookingId = visit?.bookingId ?? null;
+	const key = `${kind} ${bookingId ?? person.id}`;
+	return { key, kind, participantId: person.id, bookingId, byText: null };
 }
 
 export function personHref({ studyId }: { studyId: string }, participantId: string): string {
