@@ -47,6 +47,24 @@ export function computeFQuantile(p: number, df1: number, df2: number): number {
 	return solveFQuantile({ tail, probability: p <= 0.5 ? p : 1 - p, df1, df2 });
 }
 
+/**
+ * The F value with the probability q above it; keeps its digits for a tiny q.
+ *
+ * Shapes: numbers in, number out. Units: none.
+ * Method and source: see {@link computeFQuantile}, on the upper tail.
+ * Accuracy: relative 1e-10; tests/reference/distributions.test.ts.
+ * @throws RangeError when q is not in 0 to 1 or a df is not positive
+ * @example computeFUpperQuantile(0.05, 2, 27) // 3.354130828529
+ */
+export function computeFUpperQuantile(q: number, df1: number, df2: number): number {
+	if (!(q >= 0 && q <= 1)) throw new RangeError(`q must lie in 0 to 1, got ${q}`);
+	requireDf(df1, df2);
+	if (q === 0) return Infinity;
+	if (q === 1) return 0;
+	const tail = q <= 0.5 ? 'upper' : 'lower';
+	return solveFQuantile({ tail, probability: q <= 0.5 ? q : 1 - q, df1, df2 });
+}
+
 /** The F value with a given probability (strictly between 0 and 1) in a named tail. */
 export function solveFQuantile(options: {
 	tail: keyof Tails;
