@@ -36,6 +36,34 @@ export const cloudInputSchema = z
 			});
 	});
 
+const numbers = z.array(z.number());
+const moments = z.strictObject({ mean: numbers, covariance: z.array(numbers) });
+
+export const cloudSchema = z.strictObject({
+	n: z.int(),
+	inUnits: moments,
+	scaled: moments,
+	ellipsoids: z.array(
+		z.strictObject({
+			kind: z.enum(['coverage', 'mean', 'nextTrial', 'tolerance']),
+			factor: z.number(),
+			center: numbers,
+			halfAxes: numbers,
+			directions: z.array(numbers),
+			volume: z.number()
+		})
+	),
+	/** Numbers of the trials that trimming leaves out; null: it cannot be told. */
+	strayTrials: z.array(z.int()).nullable(),
+	geometry: z
+		.strictObject({
+			alignmentDeg: z.number().nullable(),
+			eigenvalueRatio: z.number(),
+			sdTangent: z.number().nullable()
+		})
+		.nullable()
+});
+
 /** Mean, covariance, the four ellipsoids, stray trials and the lie of the cloud. */
 export function describeCloud(input: z.output<typeof cloudInputSchema>) {
 	const task = createScaledTask(createTask(input.task));

@@ -1,5 +1,6 @@
 import { describe, expect, it } from 'vitest';
 import { PUCK_RECORD, spreadAlongManifold } from '../policies/planted-trials.test-data.ts';
+import { COMMANDS } from './commands.ts';
 import { runCommand } from './run-command.ts';
 
 const trials = spreadAlongManifold(60);
@@ -16,8 +17,15 @@ function run(words: string[], input: unknown = {}) {
 function runJson(words: string[], input: unknown): unknown {
 	const { stdout, stderr, exitCode } = run(words, input);
 	expect([exitCode, stderr]).toEqual([0, '']);
-	return JSON.parse(stdout);
+	const answer: unknown = JSON.parse(stdout);
+	const shape = COMMANDS[words[0] ?? '']?.output.safeParse(answer);
+	expect(shape?.error?.issues ?? []).toEqual([]);
+	return answer;
 }
+
+const OBJECT_OR_CHOICE = expect.toSatisfy(
+	(schema: object) => 'properties' in schema || 'anyOf' in schema
+);
 
 describe('engine on the command line', () => {
 	it('lists its commands without reading anything', () => {
@@ -29,7 +37,8 @@ describe('engine on the command line', () => {
 		for (const name of ['outcome', 'cloud', 'gates', 'place-region', 'decide', 'replay']) {
 			expect(stdout).toContain(`  ${name} `);
 			const schema = JSON.parse(runCommand([name, '--schema'], never).stdout);
-			expect(schema).toMatchObject({ type: 'object', additionalProperties: false });
+			expect(schema.input).toMatchObject({ type: 'object', additionalProperties: false });
+			expect(schema.output).toMatchObject(OBJECT_OR_CHOICE);
 		}
 	});
 

@@ -27,6 +27,17 @@ export const trialsInputSchema = z
 		});
 	});
 
+export const outcomeSchema = z.strictObject({
+	unit: z.string(),
+	trialCount: z.int(),
+	hitCount: z.int(),
+	undefinedResultCount: z.int(),
+	meanAbsoluteResult: z.number().nullable(),
+	/** null: the task has no result there. */
+	results: z.array(z.number().nullable()),
+	hits: z.array(z.boolean())
+});
+
 export type TrialsInput = z.output<typeof trialsInputSchema>;
 
 /** Result and hit of each trial. */

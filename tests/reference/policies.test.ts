@@ -13,10 +13,10 @@ import { createScaledTask } from '../../scheduler/tasks/scaled-task.ts';
 import { taskRecordSchema } from '../../scheduler/tasks/task-record.ts';
 import { findSplitLimit } from '../../scheduler/variability/bimodality.ts';
 import { computeCovariance, computeMeanVector } from '../../scheduler/variability/moments.ts';
-import { findCase, matrix, numbers, readDataset } from './engine-values.ts';
+import { findCase, matrix, numbers, readDataset } from './reference-values.ts';
 import { expectLike } from './expect-like.ts';
 import { expectNumbers } from './expect-numbers.ts';
-import { useEngineNames } from './sheet-names.ts';
+import { useEngineNames } from '../../scheduler/cli/verify/sheet-names.ts';
 
 describe('placement', () => {
 	it('finds the region of the thrown-ball case', () => {

@@ -7,7 +7,7 @@ import { policySettingsSchema } from '../../scheduler/policies/policy-settings.t
 import { policyStateSchema } from '../../scheduler/policies/policy-state.ts';
 import { taskRecordSchema } from '../../scheduler/tasks/task-record.ts';
 import { expectLike } from './expect-like.ts';
-import { useEngineNames } from './sheet-names.ts';
+import { useEngineNames } from '../../scheduler/cli/verify/sheet-names.ts';
 
 /** Twenty-two blocks each of invented people, decided by the sheet's prototype; see data/README-engine.md. */
 const historySchema = z.object({

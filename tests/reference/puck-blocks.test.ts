@@ -15,7 +15,7 @@ import {
 import { computeCovariance, computeMeanVector } from '../../scheduler/variability/moments.ts';
 import { computeToleranceFactor } from '../../scheduler/variability/tolerance-factor.ts';
 import { expectLike } from './expect-like.ts';
-import { useEngineNames } from './sheet-names.ts';
+import { useEngineNames } from '../../scheduler/cli/verify/sheet-names.ts';
 
 /** Simulated blocks; expected values by the method sheet's own prototype, see tests/data/README.md. */
 const folder = new URL('../data/puck_blocks/', import.meta.url);

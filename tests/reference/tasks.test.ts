@@ -2,7 +2,7 @@ import { describe, it } from 'vitest';
 import { z } from 'zod';
 import { createTask } from '../../scheduler/tasks/create-task.ts';
 import { taskRecordSchema } from '../../scheduler/tasks/task-record.ts';
-import { findCase, numbers } from './engine-values.ts';
+import { findCase, numbers } from './reference-values.ts';
 import { expectNumbers } from './expect-numbers.ts';
 
 const variable = (name: string, origin: number, [min, max]: [number, number] = [-100, 100]) => ({

@@ -17,7 +17,7 @@ import { computeSquaredDistances } from '../../scheduler/variability/mahalanobis
 import { computeCovariance, computeMeanVector } from '../../scheduler/variability/moments.ts';
 import { computeTrendSlopes, testTrend } from '../../scheduler/variability/stationarity.ts';
 import { computeToleranceFactor } from '../../scheduler/variability/tolerance-factor.ts';
-import { findCase, matrix, numbers, readDataset } from './engine-values.ts';
+import { findCase, matrix, numbers, readDataset } from './reference-values.ts';
 import { expectNumbers } from './expect-numbers.ts';
 
 function describeCloud(executions: number[][], factor: number) {

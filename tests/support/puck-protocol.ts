@@ -1,6 +1,6 @@
 import { readFileSync } from 'node:fs';
 import type { ProtocolContent } from '$lib/protocol/protocol-content';
-import { useEngineNames } from '../reference/sheet-names';
+import { useEngineNames } from '../../scheduler/cli/verify/sheet-names';
 
 const folder = new URL('../data/puck_blocks/', import.meta.url);
 export const readPuck = (name: string) => readFileSync(new URL(name, folder), 'utf8');

@@ -1,7 +1,7 @@
 import { readFileSync } from 'node:fs';
 import { z } from 'zod';
 
-/** Numbered cases of the method sheet; sources and tolerances in data/engine-values.json. */
+/** Numbered cases of the method sheet; sources and tolerances in data/reference-values.json. */
 const caseSchema = z.object({
 	id: z.string(),
 	inputs: z.record(z.string(), z.unknown()),
@@ -16,7 +16,7 @@ const fileSchema = z.object({
 	cases: z.array(caseSchema)
 });
 const file = fileSchema.parse(
-	JSON.parse(readFileSync(new URL('data/engine-values.json', import.meta.url), 'utf8'))
+	JSON.parse(readFileSync(new URL('data/reference-values.json', import.meta.url), 'utf8'))
 );
 
 export type ReferenceCase = z.output<typeof caseSchema>;

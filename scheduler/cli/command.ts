@@ -1,0 +1,45 @@
+import type { z } from 'zod';
+
+/** How the answer of a command is printed and with which code the process ends. */
+export interface Report {
+	readonly text: string;
+	/** 1: the command ran, and what it judged does not hold. */
+	readonly exitCode: 0 | 1;
+}
+
+/** One thing the engine can be asked on the command line. */
+export interface Command {
+	readonly about: string;
+	readonly input: z.ZodType;
+	/** The shape of the answer, as `--schema` prints it. */
+	readonly output: z.ZodType;
+	/** Prints the answer; JSON when there is nothing to say about it. */
+	readonly report?: (answer: unknown) => Report;
+	/** @throws {ZodError} an input that does not fit */
+	run(input: unknown): unknown;
+}
+
+/** Commands of one part of the engine by their names. */
+export type CommandGroup = Readonly<Record<string, Command>>;
+
+/** A command whose input is checked before it runs. */
+export function command<I extends z.ZodType, O extends z.ZodType>(
+	about: string,
+	{ input, output }: { input: I; output: O },
+	run: (input: z.output<I>) => unknown
+): Command {
+	return { about, input, output, run: (given) => run(input.parse(given)) };
+}
+
+/** The same for an answer that is printed as lines instead of JSON. */
+export function reportingCommand<I extends z.ZodType, A>(
+	about: string,
+	{ input, output }: { input: I; output: z.ZodType<A> },
+	run: (input: z.output<I>) => A,
+	report: (answer: A) => Report
+): Command {
+	return {
+		...command(about, { input, output }, run),
+		report: (answer) => report(output.parse(answer))
+	};
+}

@@ -1,0 +1,123 @@
+/**
+ * Cases of the method sheet that `verify` cannot compute yet, by topic. A case that passes must leave the
+ * list, and none may join it.
+ */
+export const NOT_YET_COMPUTED: readonly string[] = [
+	// task-tether
+	'tether-damped-1',
+	'tether-undamped-2',
+	'tether-ball-radius',
+	'tether-alignment-undamped',
+	'tether-jacobian-1',
+	'tether-jacobian-3',
+	// task-paddle
+	'paddle-stability-bounds',
+	'paddle-eigenvalues',
+	// task-projectile
+	'projectile-manifold',
+	'projectile-3d',
+	// task-puck
+	'puck-push',
+	// task-arm
+	'arm-singular',
+	// task-generic
+	'generic-gradient',
+	// shrinkage
+	'shrink-small8x3',
+	// cov-distance
+	'cov-distance-2d',
+	'cov-distance-3d',
+	// overlap
+	'bhattacharyya-3d',
+	'overlap-ellipse-area',
+	// separation
+	'separation-2d-separated',
+	'separation-2d-touching',
+	'separation-2d-rotated',
+	'separation-2d-concentric',
+	// mass
+	'mass-shifted',
+	'mass-3d',
+	// ucm
+	'ucm-two-finger',
+	'ucm-arm-1d',
+	// alignment
+	'alignment-two-finger',
+	// gem
+	'gem-sensitivity',
+	// tnc
+	'tnc-linear-abs',
+	'covariation-index',
+	'tnc-tether',
+	// quantiles
+	'quantile-chisq',
+	'quantile-t',
+	'cdf-noncentral-f',
+	// ellipsoid
+	'ellipsoid-factor-prediction',
+	'ellipse-faithful-chi2-95',
+	'ellipse-setosa-mean-95',
+	'ellipsoid-setosa-4d-volume',
+	'ellipsoid-factor-tolerance',
+	// stationarity
+	'drift-mlm-wilks',
+	// robust
+	'mcd-hbk',
+	'ogk-hbk',
+	'mad-tau-faithful',
+	// power
+	'power-t-two-sample-strict',
+	'n-t-paired',
+	'power-t-one-sided',
+	'n-pwr-t-cohen',
+	'power-anova-f',
+	'power-mixed-anova-mc',
+	'power-proportions-normal',
+	'design-effect',
+	'power-welch-a',
+	'power-tost',
+	// multiplicity
+	'dunnett-critical',
+	// interval
+	'binomial-intervals',
+	'mc-replicates',
+	// analysis
+	't-tests-sleep',
+	// mixed-model
+	'lmm-sleepstudy-ri',
+	'lmm-sleepstudy-rs-ml',
+	'lmm-orthodont-rs',
+	'lmm-singular',
+	// learning
+	'learning-curve-exponential',
+	'plateau-slope',
+	// ssr
+	'blinded-ssr',
+	// learner
+	'follow-lag',
+	'two-rate-asymptote',
+	'reward-keep',
+	// adaptive
+	'weighted-up-down',
+	// policy
+	'policy-placement-projectile',
+	'policy-gates',
+	'policy-shift-typical',
+	'bimodality-null',
+	'r-sequence',
+	// group-sequential
+	'gs-ld-obf-2',
+	'gs-ld-obf-5',
+	'gs-ld-pocock-3',
+	'gs-ld-obf-unequal',
+	// randomisation
+	'williams-3',
+	'williams-5',
+	'permuted-block-4',
+	'efron-bcd-10',
+	'minimisation-score',
+	// task-cart
+	'cart-1',
+	'cart-3',
+	'cart-6'
+];
