@@ -88,23 +88,8 @@ export const NOT_YET_COMPUTED: readonly string[] = [
 	'lmm-sleepstudy-rs-ml',
 	'lmm-orthodont-rs',
 	'lmm-singular',
-	// learning
-	'learning-curve-exponential',
-	'plateau-slope',
 	// ssr
 	'blinded-ssr',
-	// learner
-	'follow-lag',
-	'two-rate-asymptote',
-	'reward-keep',
-	// adaptive
-	'weighted-up-down',
-	// policy
-	'policy-placement-projectile',
-	'policy-gates',
-	'policy-shift-typical',
-	'bimodality-null',
-	'r-sequence',
 	// group-sequential
 	'gs-ld-obf-2',
 	'gs-ld-obf-5',
