@@ -1,3 +1,4 @@
+import { bisect } from './smallest-n.ts';
 import {
 	computePowerWithLosses,
 	requireShare,
@@ -65,18 +66,6 @@ export function findRequiredN(options: RequiredNOptions): RequiredN {
 	const n1 = Math.max(Math.ceil(exactN1 - 1e-9), Math.ceil(smallest - 1e-9));
 	const n2 = Math.ceil(n1 * ratio - 1e-9);
 	return { ok: true, n1, n2, exactN1, power: powerAt(n1, n2) };
-}
-
-/** The point at which a rising condition becomes true, to a relative 1e-12. */
-function bisect(low: number, high: number, isEnough: (n: number) => boolean): number {
-	if (isEnough(low)) return low;
-	let [below, above] = [low, high];
-	while (above - below > 1e-12 * above) {
-		const middle = (below + above) / 2;
-		if (isEnough(middle)) above = middle;
-		else below = middle;
-	}
-	return above;
 }
 
 /**
