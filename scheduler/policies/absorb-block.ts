@@ -1,6 +1,7 @@
 import { absorbPlainBlock } from './absorb-plain-block.ts';
-import { absorbRegionBlock } from './absorb-region-block.ts';
-import { absorbShiftBlock } from './absorb-shift-block.ts';
+import { absorbRegionBlock, endRegionFailed } from './absorb-region-block.ts';
+import { absorbShiftBlock, restartHold } from './absorb-shift-block.ts';
+import { countObligations } from './obligations.ts';
 import type { LastBlock } from './policy-state.ts';
 import { isPlain, type Turn } from './turn.ts';
 
@@ -18,6 +19,7 @@ export function absorbBlock(turn: Turn): void {
 	memory.lastGates = [];
 	memory.rested = last.kind === 'rest';
 	if (last.kind !== 'rest') absorbExecuted(turn, last);
+	countObligations(turn, last);
 	const { recent, noChallenge } = memory;
 	memory.sinceBlock = { recent, noChallenge };
 }
@@ -38,10 +40,26 @@ function absorbExecuted(turn: Turn, last: LastBlock): void {
 	memory.due = memory.due.filter(({ kind }) => kind !== last.kind);
 	if (last.kind === 'recovery') memory.recover = null;
 	if (last.kind === 'probe') memory.sinceProbe = 0;
-	if (memory.active?.kind === 'shift') memory.active.beforeGap = null;
+	if (memory.active?.kind === 'shift') {
+		// The gap has been taken into account, or a shift block shows more than any expectation.
+		if (memory.active.beforeGap || last.kind === 'shift') delete memory.pendingGap;
+		memory.active.beforeGap = null;
+	}
+	const isFallback = memory.planned?.kind === 'shift' && last.kind === 'practice';
+	if (isFallback) restartHold(turn);
 	if (isPlain(last.kind)) absorbPlainBlock(turn, last);
 	else if (last.kind === 'region') absorbRegionBlock(turn, last);
 	else if (last.kind === 'shift') absorbShiftBlock(turn, last);
+	if (turn.state.readiness.burden) endForBurden(turn);
+}
+
+/** The operator's word counts as much as the numbers. */
+function endForBurden(turn: Turn): void {
+	const { memory, facts } = turn;
+	if (memory.active?.kind === 'region') return endRegionFailed(turn, memory.active, 'BURDEN');
+	if (memory.active?.kind !== 'shift') return;
+	memory.recover = 'BURDEN';
+	facts.ended = 'PAUSED';
 }
 
 function countCoolDown({ memory }: Turn, last: LastBlock): void {

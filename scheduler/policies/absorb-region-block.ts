@@ -1,5 +1,6 @@
 import { computeEscape, type EscapeStatistics } from '../perturbations/escape-statistics.ts';
 import type { ActiveBlock } from './policy-memory.ts';
+import { addObligationsAfter } from './obligations.ts';
 import type { LastBlock } from './policy-state.ts';
 import { scaleTrials } from './scale-trials.ts';
 import type { Turn } from './turn.ts';
@@ -42,12 +43,13 @@ function continueRegion({ memory }: Turn, last: LastBlock): ActiveRegion {
 function judgeRegion(turn: Turn, active: ActiveRegion, escape: EscapeStatistics): void {
 	const { region } = turn.settings;
 	if (escape.relativeLow >= region.relativeEscape) endEscaped(turn, active);
-	else if (escape.upper < escape.stay) endFailed(turn, active, 'BURDEN');
-	else if (active.blocks >= region.maxBlocks) endFailed(turn, active, 'NO-ESCAPE');
+	else if (escape.upper < escape.stay) endRegionFailed(turn, active, 'BURDEN');
+	else if (active.blocks >= region.maxBlocks) endRegionFailed(turn, active, 'NO-ESCAPE');
 }
 
 /** A probe shows the new place; the next region may be one share harder. */
-function endEscaped({ memory, facts, settings }: Turn, { region }: ActiveRegion): void {
+function endEscaped(turn: Turn, { region }: ActiveRegion): void {
+	const { memory, facts, settings } = turn;
 	const { shares } = settings.place;
 	const harder = shares[Math.max(0, shares.indexOf(region.share) - 1)];
 	memory.done.escapes += 1;
@@ -57,10 +59,12 @@ function endEscaped({ memory, facts, settings }: Turn, { region }: ActiveRegion)
 	memory.cool = { ...settings.cool };
 	memory.shareCap = shares.includes(region.share) && harder !== undefined ? harder : null;
 	facts.ended = 'ESCAPED';
+	addObligationsAfter(turn, 'region');
 }
 
 /** Recovery, and an easier region or the other aim next. */
-function endFailed({ memory, facts, settings }: Turn, { region }: ActiveRegion, why: string): void {
+export function endRegionFailed(turn: Turn, { region }: ActiveRegion, why: string): void {
+	const { memory, facts, settings } = turn;
 	const { shares } = settings.place;
 	const easier = shares.filter((share) => share < region.share);
 	memory.done.failed += 1;
@@ -70,4 +74,5 @@ function endFailed({ memory, facts, settings }: Turn, { region }: ActiveRegion, 
 	memory.cool = { ...settings.cool };
 	memory.shareCap = easier.length > 0 ? Math.max(...easier) : Math.min(...shares);
 	facts.ended = why;
+	addObligationsAfter(turn, 'region');
 }

@@ -1,5 +1,7 @@
 import { entry } from '../linear-algebra/vector.ts';
 import { TargetShift } from '../perturbations/target-shift.ts';
+import type { ShiftState } from '../perturbations/shift-rule.ts';
+import { addObligationsAfter } from './obligations.ts';
 import type { ActiveBlock } from './policy-memory.ts';
 import type { LastBlock } from './policy-state.ts';
 import type { Turn } from './turn.ts';
@@ -30,7 +32,21 @@ export function absorbShiftBlock(turn: Turn, last: LastBlock): void {
 	const { theta: level, passed, stalls, status } = state;
 	facts.follow = { level, passed, stalls, status, log: shift.log };
 	if (last.levels !== null && !isSameTrace(last.levels, levels)) memory.held = 'TRACE';
-	else judgeShift(turn, { status, blocks: active.blocks, hits });
+	else judgeShift(turn, { state, blocks: active.blocks, hits });
+}
+
+/**
+ * Plain practice was run where a shift block was planned: the level stays, its hold starts anew, as after
+ * a gap over which everything is kept.
+ *
+ * Source:  method sheet D5 (Without network).
+ */
+export function restartHold({ memory }: Turn): void {
+	const { active } = memory;
+	if (active?.kind !== 'shift' || !active.state) return;
+	const shift = new TargetShift(active.rule, active.state);
+	shift.resume(1);
+	active.state = shift.dump();
 }
 
 function continueShift({ memory }: Turn, last: LastBlock): ActiveShift {
@@ -71,16 +87,17 @@ function isSameTrace(returned: readonly number[], replayed: readonly number[]): 
 
 function judgeShift(
 	turn: Turn,
-	{ status, blocks, hits }: { status: string; blocks: number; hits: readonly boolean[] }
+	{ state, blocks, hits }: { state: ShiftState; blocks: number; hits: readonly boolean[] }
 ): void {
+	const { status, holdMax } = state;
 	const { memory, facts, settings } = turn;
 	if (status === 'done') {
 		memory.done.held = true;
-		endShift(turn, 'SHIFT-HELD');
+		endShift(turn, holdMax, 'SHIFT-HELD');
 	} else if (status === 'frozen' || blocks >= settings.shift.maxBlocks) {
 		memory.done.frozen = true;
 		memory.avoid = 'shift';
-		endShift(turn, 'SHIFT-FROZEN');
+		endShift(turn, holdMax, 'SHIFT-FROZEN');
 	} else if (isBurden(turn, hits)) {
 		memory.recover = 'BURDEN';
 		facts.ended = 'PAUSED';
@@ -88,14 +105,17 @@ function judgeShift(
 }
 
 /** The target goes back: washout, and a plain block after it. */
-function endShift({ memory, facts, settings }: Turn, why: string): void {
+function endShift(turn: Turn, holdMax: number, why: string): void {
+	const { memory, facts, settings } = turn;
+	const { washoutTrials, washoutHolds } = settings;
+	const trials = Math.max(washoutTrials, Math.ceil((washoutHolds ?? 0) * holdMax));
+	const own = washoutHolds === undefined ? {} : { trials };
 	memory.active = null;
-	memory.due.push({ kind: 'washout', why: 'WASHOUT-DUE' });
-	memory.cool = {
-		blocks: settings.cool.blocks + 1,
-		trials: settings.cool.trials + settings.washoutTrials
-	};
+	delete memory.pendingGap;
+	memory.due.push({ kind: 'washout', why: 'WASHOUT-DUE', ...own });
+	memory.cool = { blocks: settings.cool.blocks + 1, trials: settings.cool.trials + trials };
 	facts.ended = why;
+	addObligationsAfter(turn, 'shift');
 }
 
 function isBurden({ settings }: Turn, hits: readonly boolean[]): boolean {

@@ -30,7 +30,8 @@ function addTrialCount(
 	kind: DecisionKind,
 	parameters: BlockParameters
 ): BlockParameters {
-	if (kind === 'stop' || kind === 'hold') return parameters;
+	if (kind === 'hold') return addFallback(settings, parameters);
+	if (kind === 'stop') return parameters;
 	const counts: Partial<Record<DecisionKind, number>> = {
 		probe: settings.probeTrials,
 		washout: settings.washoutTrials,
@@ -39,6 +40,12 @@ function addTrialCount(
 		rest: 0
 	};
 	return { ...parameters, trials: parameters.trials ?? counts[kind] ?? settings.blockTrials };
+}
+
+/** Blinded operators see a block like any other; the case waits for a person meanwhile. */
+function addFallback(settings: PolicySettings, parameters: BlockParameters): BlockParameters {
+	const { holdFallback: kind, blockTrials: trials } = settings;
+	return kind === undefined ? parameters : { ...parameters, fallback: { kind, trials } };
 }
 
 function listBlockEnd({ facts }: Turn, code: string): Reason[] {
@@ -60,10 +67,12 @@ function listGates({ memory }: Turn, code: string): Reason[] {
 }
 
 function rememberDecision(
-	{ memory, settings }: Turn,
+	turn: Turn,
 	decided: { kind: DecisionKind; code: string; parameters: BlockParameters }
 ): void {
+	const { memory, settings } = turn;
 	const { kind, code, parameters } = decided;
+	rememberGap(turn, kind);
 	const isChallenge = kind === 'region' || kind === 'shift';
 	if (isChallenge || kind === 'practice')
 		memory.recent = [...memory.recent, { kind, why: code }].slice(-settings.oscillation.window);
@@ -73,4 +82,14 @@ function rememberDecision(
 	if (isChallenge && !memory.active) memory.offer = { kind, parameters };
 	else if (!isChallenge && !(memory.offer && memory.settled)) memory.offer = null;
 	memory.planned = { kind, parameters };
+}
+
+/** Another block comes first after a gap: the running shift still has to be taken back for it. */
+function rememberGap({ memory, state, settings }: Turn, kind: DecisionKind): void {
+	if (!(settings.forget.beforeAnyBlock ?? settings.obligations !== undefined)) return;
+	const isRun = kind !== 'shift' && kind !== 'stop' && kind !== 'hold';
+	if (!isRun || memory.active?.kind !== 'shift' || !state.gapHours) return;
+	if (memory.pendingGap?.day === state.day) return;
+	const hours = (memory.pendingGap?.hours ?? 0) + state.gapHours;
+	memory.pendingGap = { day: state.day, hours };
 }

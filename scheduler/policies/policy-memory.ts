@@ -1,6 +1,7 @@
 import { z } from 'zod';
 import { regionSchema } from '../perturbations/region-settings.ts';
 import { shiftRuleSchema, shiftStateSchema } from '../perturbations/shift-rule.ts';
+import { FEEDBACKS, obligationMemorySchema } from './obligation-settings.ts';
 
 const count = z.number().int().nonnegative();
 const vector = z.array(z.number());
@@ -17,6 +18,8 @@ export const EXECUTED_KINDS = [
 	'retention',
 	'recovery',
 	'maintenance',
+	'clamp',
+	'transfer',
 	'rest'
 ] as const;
 /** Kinds that a decision can name: the executed ones, and to stop or to hold for a person. */
@@ -60,7 +63,16 @@ export const blockParametersSchema = z.strictObject({
 	granularity: z.enum(['trial', 'block']).optional(),
 	hold: count.optional(),
 	/** Share of the level expected to be kept over the gap. */
-	retained: z.number().optional()
+	retained: z.number().optional(),
+	/** Place of the obligation that this block fulfils in the protocol's list. */
+	obligation: count.optional(),
+	feedback: z.enum(FEEDBACKS).optional(),
+	/** SD of the noise that is shown where feedback is clamped to noise, in the unit of the result. */
+	clampSd: z.number().optional(),
+	/** Transfer: where the target lies beside its usual place, in the unit of the result. */
+	targetOffset: z.number().optional(),
+	/** A hold: what is run until a person has looked. */
+	fallback: z.strictObject({ kind: z.enum(EXECUTED_KINDS), trials: count }).optional()
 });
 
 const planSchema = z.strictObject({
@@ -113,7 +125,16 @@ export const policyMemorySchema = z.strictObject({
 	lastChallenge: aimName.nullable().default(null),
 	avoid: aimName.nullable().default(null),
 	sinceProbe: count.default(0),
-	due: z.array(z.strictObject({ kind: z.enum(DECISION_KINDS), why: z.string() })).default([]),
+	due: z
+		.array(
+			z.strictObject({
+				kind: z.enum(DECISION_KINDS),
+				why: z.string(),
+				obligation: count.optional(),
+				trials: count.optional()
+			})
+		)
+		.default([]),
 	recover: z.string().nullable().default(null),
 	driftRun: count.default(0),
 	noChallenge: count.default(0),
@@ -126,7 +147,11 @@ export const policyMemorySchema = z.strictObject({
 	lastGates: z.array(z.string()).default([]),
 	whyProbe: z.array(z.string()).default([]),
 	/** recent and noChallenge as the last block left them, so that asking twice counts once. */
-	sinceBlock: z.strictObject({ recent: recentSchema, noChallenge: count }).nullable().default(null)
+	sinceBlock: z.strictObject({ recent: recentSchema, noChallenge: count }).nullable().default(null),
+	/** Only where the protocol declares obligations. */
+	obligations: obligationMemorySchema.optional(),
+	/** Hours without a block that a running shift has not yet been taken back for, up to a day. */
+	pendingGap: z.strictObject({ day: count, hours: z.number().nonnegative() }).optional()
 });
 
 export type ExecutedKind = (typeof EXECUTED_KINDS)[number];

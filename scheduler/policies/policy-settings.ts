@@ -1,6 +1,7 @@
 import { z } from 'zod';
 import { placementSettingsSchema } from '../perturbations/region-settings.ts';
 import { shiftSettingsSchema, Z_ONE_SIDED_95 } from '../perturbations/shift-rule.ts';
+import { obligationSchema } from './obligation-settings.ts';
 
 const count = z.number().int().nonnegative();
 const trials = z.number().int().min(1).max(2000);
@@ -96,7 +97,15 @@ export const policySettingsSchema = z.strictObject({
 	retentionGapHours: z.number().nonnegative().default(20),
 	/** What is kept of a shift after a gap: floor + (1 − floor)·exp(−gap / tauHours). */
 	forget: z
-		.strictObject({ tauHours: z.number().positive().default(120), floor: ratio.default(0.2) })
+		.strictObject({
+			tauHours: z.number().positive().default(120),
+			floor: ratio.default(0.2),
+			/**
+			 * Whether a gap also counts when another block comes first after it; left out: only where the
+			 * protocol declares obligations.
+			 */
+			beforeAnyBlock: z.boolean().optional()
+		})
 		.prefault({}),
 	/** Drift between the first and last third, in own SD, below which a second drifting block is used. */
 	driftKeepSd: z.number().positive().default(1.5),
@@ -110,7 +119,13 @@ export const policySettingsSchema = z.strictObject({
 		.strictObject({ window: count.min(3).default(8), returns: count.min(1).default(3) })
 		.prefault({}),
 	/** Blocks in a row without any challenge after which a person must look. */
-	stuck: count.min(1).default(3)
+	stuck: count.min(1).default(3),
+	/** Blocks that are due whatever the policy would choose, in the order in which they come. */
+	obligations: z.array(obligationSchema).max(20).optional(),
+	/** What is run while a person must look; left out: nothing. Needed where operators are blinded. */
+	holdFallback: z.enum(['practice', 'maintenance']).optional(),
+	/** A washout lasts at least so many of the person's own longest holds; left out: washoutTrials. */
+	washoutHolds: z.number().positive().max(10).optional()
 });
 
 export type PolicySettings = z.output<typeof policySettingsSchema>;

@@ -39,7 +39,9 @@ export const policyStateSchema = z.strictObject({
 		.strictObject({
 			pain: rating.default(0),
 			fatigue: rating.default(0),
-			stop: z.boolean().default(false)
+			stop: z.boolean().default(false),
+			/** The operator calls the running perturbation too much: it ends, recovery follows. */
+			burden: z.boolean().optional()
 		})
 		.prefault({}),
 	/** A person has looked at what was held and lets it go on. */

@@ -5,7 +5,7 @@ import type { Answer, Turn } from '../turn.ts';
 const EXPECTED = new Set([
 	...['ESCAPED', 'NO-ESCAPE', 'SHIFT-HELD', 'SHIFT-FROZEN', 'PROBE-ESCAPE', 'PROBE-DUE'],
 	...['WASHOUT-DUE', 'RETENTION-DUE', 'COOL-DOWN', 'SWITCH-AIM', 'BURDEN', 'MAINTENANCE'],
-	...['CONTINUE-REGION', 'CONTINUE-SHIFT']
+	...['PROBE-DECLARED', 'CLAMP-DUE', 'TRANSFER-DUE', 'CONTINUE-REGION', 'CONTINUE-SHIFT']
 ]);
 
 /** Whether a person must look before anything goes on. */

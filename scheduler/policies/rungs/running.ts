@@ -22,16 +22,17 @@ function continueRegion(
 }
 
 function continueShift(
-	{ state, settings }: Turn,
+	{ state, settings, memory }: Turn,
 	active: Extract<ActiveBlock, { kind: 'shift' }>
 ): Answer {
 	const { rule } = active;
 	const before = active.beforeGap ?? active.state ?? createShiftState(rule);
 	const shift = new TargetShift(rule, before);
 	let retained: number | undefined;
-	if (state.gapHours) {
+	const gapHours = memory.pendingGap?.hours ?? state.gapHours;
+	if (gapHours) {
 		const { floor, tauHours } = settings.forget;
-		retained = floor + (1 - floor) * Math.exp(-state.gapHours / tauHours);
+		retained = floor + (1 - floor) * Math.exp(-gapHours / tauHours);
 		shift.resume(retained);
 		active.beforeGap = before;
 		active.state = shift.dump();

@@ -28,10 +28,16 @@ const PERSON: Record<string, Sentence> = {
 
 const OBLIGATIONS: Record<string, Sentence> = {
 	'RETENTION-DUE': (v) =>
-		`The protocol asks for a retention block today; the last block was ${v.decimal('gapHours', 0)} hours ago.`,
-	'WASHOUT-DUE': () => 'The target shift has ended: washout with the target back in its place.',
+		v.has('gapHours')
+			? `The protocol asks for a retention block today; the last block was ${v.decimal('gapHours', 0)} hours ago.`
+			: 'The protocol asks for a retention block here.',
+	'WASHOUT-DUE': () => 'Washout is due: the target is back in its place.',
 	'PROBE-ESCAPE': () =>
 		'The person has moved out of the penalized region: a probe without a region shows where to.',
+	'PROBE-DECLARED': () => 'The protocol asks for a probe here.',
+	'CLAMP-DUE': () =>
+		'The protocol asks for an error clamp here: the shown error does not follow what the person does.',
+	'TRANSFER-DUE': () => 'The protocol asks for a block at another target here.',
 	'PROBE-DUE': (v) =>
 		`${v.count('blocks')} perturbed blocks have been run since the last probe: one without a perturbation is due.`
 };

@@ -9,6 +9,8 @@ const words: Record<string, string> = {
 	recovery: 'recovery',
 	maintenance: 'maintenance',
 	retention: 'retention',
+	clamp: 'error clamp',
+	transfer: 'transfer',
 	rest: 'rest',
 	stop: 'stop',
 	hold: 'wait for a person'
