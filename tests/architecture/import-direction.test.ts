@@ -79,6 +79,7 @@ describe('the engine', () => {
 		perturbations: ['random', 'linear-algebra', 'statistics', 'tasks', 'variability'],
 		policies: ['random', 'linear-algebra', 'statistics', 'tasks', 'variability', 'perturbations'],
 		learners: ['random', 'linear-algebra', 'statistics', 'tasks', 'variability', 'perturbations'],
+		analysis: ['random', 'linear-algebra', 'statistics', 'tasks'],
 		simulation: [
 			'random',
 			'linear-algebra',
