@@ -30,6 +30,25 @@ export function createSeededStream(seed: number, streamNumber = 0): SeededStream
 	return wrap(generator);
 }
 
+/**
+ * Neighbouring streams of one seed: the same as createSeededStream for each number, with one jump for each
+ * instead of all of them.
+ *
+ * Shapes: seed, first number and count in, that many streams out. Units: none.
+ * Accuracy: equal words; scheduler/variability/block-bootstrap.test.ts.
+ * @throws RangeError when the seed is no whole number or a number is negative
+ */
+export function createSeededStreams(seed: number, from: number, count: number): SeededStream[] {
+	let current = createSeededStream(seed, from);
+	return Array.from({ length: count }, () => {
+		const stream = current;
+		const next = xoroshiro128plusFromState(stream.getState());
+		next.jump();
+		current = wrap(next);
+		return stream;
+	});
+}
+
 /** Goes on where a stream's state was taken. */
 export function resumeSeededStream(state: readonly number[]): SeededStream {
 	return wrap(xoroshiro128plusFromState(state));

@@ -2,36 +2,24 @@ import { computeCholesky, solveLower, whitenMatrix } from '../linear-algebra/cho
 import { computeSymmetricEigen } from '../linear-algebra/symmetric-eigen.ts';
 import { dot, row, subtract, type Matrix, type Vector } from '../linear-algebra/vector.ts';
 import { computeNormalCdf, computeNormalDensity } from '../statistics/normal.ts';
+import { computeQuadraticCdf, GAUSS_8, type WeightedSquare } from './quadratic-form.ts';
 
 export type MassInside =
-	| { ok: true; probability: number }
-	| { ok: false; reason: 'singular-covariance' | 'too-many-variables' };
+	{ ok: true; probability: number } | { ok: false; reason: 'singular-covariance' };
 
-/** Each variable beyond the first multiplies the work by 64. */
+/** Each variable beyond the first multiplies the work by 64; more are done by inversion. */
 const VARIABLES_MAX = 4;
 /** SD beyond which a normal density adds less than 1e-18. */
 const REACH = 9;
 const PANELS = 8;
-/** Nodes and weights of the Gauss-Legendre rule of order 8. */
-const GAUSS: readonly (readonly [number, number])[] = [
-	[0.1834346424956498, 0.362683783378362],
-	[0.525532409916329, 0.3137066458778873],
-	[0.7966664774136267, 0.2223810344533745],
-	[0.9602898564975363, 0.1012285362903763]
-];
-
-/** One principal axis: Q = Σ scale·y², y normal with this mean and SD 1. */
-interface Axis {
-	readonly scale: number;
-	readonly mean: number;
-}
 
 /**
  * Probability that a normal execution falls inside an ellipsoid {x: (x − c)ᵀ·A⁻¹·(x − c) ≤ 1}.
  *
- * Shapes:  mean, center (d); covariance, shape (d × d), positive definite; d <= 4.
+ * Shapes:  mean, center (d); covariance, shape (d × d), positive definite; any d.
  * Method:  along common principal axes the last variable is a difference of Φ, the others are
- *          integrated by Gauss-Legendre (64 nodes) over the arc sine of their place.
+ *          integrated by Gauss-Legendre (64 nodes) over the arc sine of their place; above four
+ *          variables Imhof's inversion, see quadratic-form.ts.
  * Source:  method sheet B7; cases mass-shifted, mass-3d (quadrature, Imhof inversion).
  * Accuracy: 1e-9, tests/reference/variability.test.ts.
  */
@@ -41,7 +29,6 @@ export function computeMassInside(options: {
 	center: Vector;
 	shape: Matrix;
 }): MassInside {
-	if (options.mean.length > VARIABLES_MAX) return { ok: false, reason: 'too-many-variables' };
 	const region = computeCholesky(options.shape);
 	if (!region.ok || !computeCholesky(options.covariance).ok)
 		return { ok: false, reason: 'singular-covariance' };
@@ -52,11 +39,12 @@ export function computeMassInside(options: {
 		scale,
 		mean: dot(delta, row(vectors, j)) / Math.sqrt(scale)
 	}));
+	if (axes.length > VARIABLES_MAX) return { ok: true, probability: computeQuadraticCdf(axes, 1) };
 	return { ok: true, probability: Math.min(1, integrate(axes, 1)) };
 }
 
 /** P(Σ scale·y² ≤ room). */
-function integrate([axis, ...others]: readonly Axis[], room: number): number {
+function integrate([axis, ...others]: readonly WeightedSquare[], room: number): number {
 	if (!axis || room <= 0) return 0;
 	const half = Math.sqrt(room / axis.scale);
 	if (others.length === 0)
@@ -75,7 +63,7 @@ function integratePanels(from: number, to: number, value: (x: number) => number)
 	let sum = 0;
 	for (let panel = 0; panel < PANELS; panel++) {
 		const middle = from + (2 * panel + 1) * half;
-		for (const [node, weight] of GAUSS)
+		for (const [node, weight] of GAUSS_8)
 			sum += weight * (value(middle - node * half) + value(middle + node * half));
 	}
 	return sum * half;

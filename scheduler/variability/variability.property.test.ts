@@ -1,5 +1,6 @@
 import fc from 'fast-check';
 import { describe, expect, it } from 'vitest';
+import { anyShape as shape } from '../../tests/support/variability/any-trials.ts';
 import { multiplyMatrices, transpose } from '../linear-algebra/matrix.ts';
 import { add, multiplyVector } from '../linear-algebra/vector.ts';
 import { computeNormalPoints } from '../statistics/r-sequence.ts';
@@ -24,16 +25,6 @@ const map = fc
 		shift
 	}))
 	.filter(({ B: [[a = 0, b = 0] = [], [c = 0, d = 0] = []] }) => Math.abs(a * d - b * c) > 0.3);
-const shape = fc
-	.tuple(
-		fc.double({ min: 0.2, max: 5, noNaN: true }),
-		fc.double({ min: 0.2, max: 5, noNaN: true }),
-		fc.double({ min: -0.9, max: 0.9, noNaN: true })
-	)
-	.map(([sx, sy, rho]) => [
-		[sx * sx, rho * sx * sy],
-		[rho * sx * sy, sy * sy]
-	]);
 const trials = computeNormalPoints(40, 2).map(([a = 0, b = 0]) => [2 * a + b, b - 1]);
 
 function transform(S: number[][], B: number[][]): number[][] {

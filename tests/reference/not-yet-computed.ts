@@ -22,49 +22,12 @@ export const NOT_YET_COMPUTED: readonly string[] = [
 	'arm-singular',
 	// task-generic
 	'generic-gradient',
-	// shrinkage
-	'shrink-small8x3',
-	// cov-distance
-	'cov-distance-2d',
-	'cov-distance-3d',
-	// overlap
-	'bhattacharyya-3d',
-	'overlap-ellipse-area',
-	// separation
-	'separation-2d-separated',
-	'separation-2d-touching',
-	'separation-2d-rotated',
-	'separation-2d-concentric',
-	// mass
-	'mass-shifted',
-	'mass-3d',
-	// ucm
-	'ucm-two-finger',
-	'ucm-arm-1d',
-	// alignment
-	'alignment-two-finger',
-	// gem
-	'gem-sensitivity',
 	// tnc
-	'tnc-linear-abs',
-	'covariation-index',
 	'tnc-tether',
 	// quantiles
 	'quantile-chisq',
 	'quantile-t',
 	'cdf-noncentral-f',
-	// ellipsoid
-	'ellipsoid-factor-prediction',
-	'ellipse-faithful-chi2-95',
-	'ellipse-setosa-mean-95',
-	'ellipsoid-setosa-4d-volume',
-	'ellipsoid-factor-tolerance',
-	// stationarity
-	'drift-mlm-wilks',
-	// robust
-	'mcd-hbk',
-	'ogk-hbk',
-	'mad-tau-faithful',
 	// power
 	'power-t-two-sample-strict',
 	'n-t-paired',

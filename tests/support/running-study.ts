@@ -58,28 +58,24 @@ export async function plantRunningStudy(db: Database, content: ProtocolContent, 
 		.values({ studyId: study.id, number: 1, content, hash, frozenAt: at, frozenBy: person.id })
 		.returning();
 	if (!version) throw new Error('not planted');
-	await db
-		.insert(t.signOff)
-		.values({
-			studyId: study.id,
-			protocolHash: hash,
-			verdict: 'signed',
-			assumptions: {},
-			personId: person.id,
-			at
-		});
-	await db
-		.insert(t.ethicsApproval)
-		.values({
-			studyId: study.id,
-			protocolHash: hash,
-			board: 'Board',
-			reference: 'E-1',
-			approvedOn: '2020-01-01',
-			expiresOn: '2099-01-01',
-			recordedBy: person.id,
-			recordedAt: at
-		});
+	await db.insert(t.signOff).values({
+		studyId: study.id,
+		protocolHash: hash,
+		verdict: 'signed',
+		assumptions: {},
+		personId: person.id,
+		at
+	});
+	await db.insert(t.ethicsApproval).values({
+		studyId: study.id,
+		protocolHash: hash,
+		board: 'Board',
+		reference: 'E-1',
+		approvedOn: '2020-01-01',
+		expiresOn: '2099-01-01',
+		recordedBy: person.id,
+		recordedAt: at
+	});
 	const [seal] = await db
 		.insert(t.allocationSeal)
 		.values({
@@ -154,16 +150,14 @@ export async function plantRunningStudy(db: Database, content: ProtocolContent, 
 				participantId: string
 			) => {
 				const sequenceIndex = (await tx.select().from(t.allocation)).length;
-				await tx
-					.insert(t.allocation)
-					.values({
-						participantId,
-						studyId: study.id,
-						sealId: seal.id,
-						sequenceIndex,
-						arm,
-						allocatedAt: at
-					});
+				await tx.insert(t.allocation).values({
+					participantId,
+					studyId: study.id,
+					sealId: seal.id,
+					sequenceIndex,
+					arm,
+					allocatedAt: at
+				});
 				return true;
 			};
 		}

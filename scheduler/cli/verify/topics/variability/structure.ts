@@ -1,0 +1,166 @@
+import { z } from 'zod';
+import { multiplyVector } from '../../../../linear-algebra/vector.ts';
+import { computeSymmetricEigen } from '../../../../linear-algebra/symmetric-eigen.ts';
+import { computeCloudAlignment } from '../../../../variability/cloud-alignment.ts';
+import { computeEllipsoid } from '../../../../variability/compute-ellipsoid.ts';
+import {
+	computeCoverageFactor,
+	computeMeanFactor,
+	computeNextTrialFactor
+} from '../../../../variability/ellipsoid-factors.ts';
+import {
+	computeFluctuationExponent,
+	computeLagOne
+} from '../../../../variability/fluctuation-analysis.ts';
+import {
+	computeGoalSensitivity,
+	splitGoalSeries
+} from '../../../../variability/goal-sensitivity.ts';
+import { computeSquaredDistances } from '../../../../variability/mahalanobis.ts';
+import {
+	computeCovariance,
+	computeMeanVector,
+	computeStandardDeviation
+} from '../../../../variability/moments.ts';
+import { computeToleranceFactor } from '../../../../variability/tolerance-factor.ts';
+import { computeManifoldVariance } from '../../../../variability/uncontrolled-manifold.ts';
+import { firstOf, forInputs, Judged, listSchema, repeat, type TopicGroup } from '../../topic.ts';
+import { matrix, numbers, readTrials, requireOk, trialNames } from './case-inputs.ts';
+import { computeArmJacobian } from './arm-jacobian.ts';
+
+const divisor = z.literal('n-1').default('n-1');
+const level = z.number().gt(0).lt(1);
+const kinds = z.enum(['coverage chi-square', 'mean (Hotelling)', 'next trial', 'unit sigma']);
+
+/** Ellipsoids of one cloud, and how it lies to the solutions. */
+export const STRUCTURE_TOPICS: TopicGroup = {
+	ellipsoid: firstOf(
+		forInputs(
+			z.strictObject({ n: listSchema, d: listSchema, level }),
+			({ n, d, level: probability }) => ({
+				c2: n.map((trialCount, i) =>
+					computeNextTrialFactor({ trialCount, variableCount: at(d, n, i), probability })
+				)
+			})
+		),
+		forInputs(
+			z.strictObject({ n: listSchema, d: listSchema, beta: listSchema, gamma: listSchema }),
+			({ n, d, beta, gamma }) => ({
+				c2: n.map((trialCount, i) =>
+					computeToleranceFactor({
+						...{ trialCount, variableCount: at(d, n, i) },
+						...{ share: at(beta, n, i), confidence: at(gamma, n, i) }
+					})
+				)
+			})
+		),
+		forInputs(
+			z.strictObject({
+				...trialNames,
+				...{ kind: kinds, level: level.optional(), c2: z.number().positive().optional() }
+			}),
+			({ kind, level: probability = 0.95, c2, ...inputs }, datasets) => {
+				const trials = readTrials(inputs, datasets);
+				return describeEllipsoid(trials, c2 ?? factorOf(kind, trials, probability));
+			}
+		)
+	),
+	ucm: firstOf(
+		forInputs(
+			z.strictObject({ ...trialNames, J: matrix, scale: numbers.optional(), divisor }),
+			({ J, scale, ...inputs }, datasets) => {
+				const trials = readTrials(inputs, datasets).map((trial) =>
+					trial.map((value, i) => value * (scale?.[i] ?? 1))
+				);
+				const slopes = J.map((values) => values.map((value, i) => value / (scale?.[i] ?? 1)));
+				return describeManifold(trials, slopes);
+			}
+		),
+		forInputs(
+			z.strictObject({ ...trialNames, lengths: numbers, result: z.string(), divisor }),
+			({ lengths, result, ...inputs }, datasets) => {
+				const trials = readTrials(inputs, datasets);
+				const both = computeArmJacobian(lengths, computeMeanVector(trials));
+				return describeManifold(trials, /\bonly\b/.test(result) ? both.slice(0, 1) : both);
+			}
+		)
+	),
+	alignment: forInputs(z.strictObject({ ...trialNames, tangent: numbers }), (inputs, datasets) => {
+		const covariance = computeCovariance(readTrials(inputs, datasets));
+		const found = requireOk(computeCloudAlignment(covariance, [inputs.tangent]));
+		return {
+			major_axis: new Judged(found.majorAxis, { isSignFree: true }),
+			angle_deg: found.angleDeg,
+			eigenvalues: found.eigenvalues,
+			eigenvalue_ratio: found.eigenvalueRatio,
+			aspect_ratio: found.aspectRatio
+		};
+	}),
+	gem: forInputs(
+		z.strictObject({ ...trialNames, J: matrix, divisor, scales: numbers.optional() }),
+		({ J, scales, ...inputs }, datasets) => describeGoal(readTrials(inputs, datasets), J, scales)
+	)
+};
+
+function at(values: number[], all: number[], i: number): number {
+	return repeat(values, all.length)[i] ?? Number.NaN;
+}
+
+function factorOf(kind: z.output<typeof kinds>, trials: number[][], probability: number): number {
+	const variableCount = trials[0]?.length ?? 0;
+	const request = { trialCount: trials.length, variableCount, probability };
+	if (kind === 'mean (Hotelling)') return computeMeanFactor(request);
+	if (kind === 'next trial') return computeNextTrialFactor(request);
+	return kind === 'unit sigma' ? 1 : computeCoverageFactor(request);
+}
+
+function describeEllipsoid(trials: number[][], c2: number) {
+	const [mean, cov] = [computeMeanVector(trials), computeCovariance(trials)];
+	const { halfAxes, directions, volume } = computeEllipsoid({ mean, covariance: cov, factor: c2 });
+	const eigenvalues = [...computeSymmetricEigen(cov).values].reverse();
+	const [x = 1, y = 0] = directions[0] ?? [];
+	const distances = requireOk(
+		computeSquaredDistances({ executions: trials, center: mean, covariance: cov })
+	).values;
+	return {
+		...{ mean, cov, c2, eigenvalues, volume },
+		half_axes: halfAxes,
+		major_axis_angle_deg: ((Math.atan2(y, x) * 180) / Math.PI + 180) % 180,
+		det: eigenvalues.reduce((product, value) => product * value, 1),
+		inside: distances.filter((value) => value <= c2).length,
+		max_mahalanobis_sq: Math.max(...distances)
+	};
+}
+
+function describeManifold(trials: number[][], J: number[][]) {
+	const found = requireOk(computeManifoldVariance(trials, J));
+	return {
+		...{ V_ucm: found.along, V_ort: found.across, V_tot: found.total },
+		...{ ratio: found.ratio, log_ratio: found.logRatio, delta_V: found.index },
+		...{ delta_V_z: found.indexZ, half_log_ratio_identity: found.indexZ },
+		result_sd: requireOk(computeGoalSensitivity(computeCovariance(trials), J)).goalSd
+	};
+}
+
+function describeGoal(trials: number[][], J: number[][], scales: number[] | undefined) {
+	const found = requireOk(computeGoalSensitivity(computeCovariance(trials), J));
+	const results = trials.map((trial) => multiplyVector(J, trial)[0] ?? 0);
+	const series = splitGoalSeries(trials, computeMeanVector(trials), J);
+	const [along, across] = [series.along[0] ?? [], series.across[0] ?? []];
+	return {
+		...{ goal_sd: found.goalSd, goal_cov: found.goalCovariance },
+		goal_sd_from_results: computeStandardDeviation(results),
+		singular_value: found.singularValues[0],
+		singular_values: found.singularValues,
+		...{ body_sd_normal: found.acrossSd, body_sd_total: found.totalSd },
+		alignment_factor: found.alignmentFactor,
+		lag1_T: valueOf(computeLagOne(along)),
+		lag1_P: valueOf(computeLagOne(across)),
+		dfa_T: valueOf(computeFluctuationExponent(along, scales)),
+		dfa_P: valueOf(computeFluctuationExponent(across, scales))
+	};
+}
+
+function valueOf(measure: { ok: true; value: number } | { ok: false }): number | undefined {
+	return measure.ok ? measure.value : undefined;
+}
