@@ -17,14 +17,15 @@ export function cutTask(task: Task, axes: readonly [number, number], point: Vect
 	});
 	const complete = (x: Vector) =>
 		point.map((value, i) => (i === first ? entry(x, 0) : i === second ? entry(x, 1) : value));
+	const pick = (slopes: Vector) => [entry(slopes, first), entry(slopes, second)];
 	return {
 		...task,
 		variables,
 		variableCount: 2,
 		evaluate: (x) => task.evaluate(complete(x)),
-		gradient: (x) => {
-			const slopes = task.gradient(complete(x));
-			return [entry(slopes, first), entry(slopes, second)];
-		}
+		gradient: (x) => pick(task.gradient(complete(x))),
+		results: (x) => task.results(complete(x)),
+		jacobian: (x) => task.jacobian(complete(x)).map(pick),
+		findInvalid: (x) => task.findInvalid(complete(x))
 	};
 }

@@ -1,5 +1,5 @@
 import { entry, type Vector } from '../linear-algebra/vector.ts';
-import type { Task } from './task.ts';
+import type { InvalidReason, Task } from './task.ts';
 
 /**
  * A task seen in scaled coordinates z = (x − origin) / scale, in which all distances, arc lengths and
@@ -13,6 +13,12 @@ export interface ScaledTask {
 	readonly resolution: number;
 	evaluate(z: Vector): number;
 	gradient(z: Vector): number[];
+	/** Signed results, smooth where the task is; all 0 on the manifold. */
+	results(z: Vector): number[];
+	/** (r × d), by scaled variables. */
+	jacobian(z: Vector): number[][];
+	readonly resultRounding?: number | undefined;
+	findInvalid(z: Vector): InvalidReason | null;
 	/** Whether every variable lies within its range. */
 	isWithinRanges(z: Vector): boolean;
 	toUnits(z: Vector): number[];
@@ -48,6 +54,11 @@ export function createScaledTask(task: Task): ScaledTask {
 			RESOLUTION_UNKNOWN,
 		evaluate: (z) => task.evaluate(fill(z)),
 		gradient: (z) => task.gradient(toUnits(z)).map((slope, i) => slope * entry(scales, i)),
+		resultRounding: task.resultRounding,
+		results: (z) => task.results(toUnits(z)),
+		jacobian: (z) =>
+			task.jacobian(toUnits(z)).map((slopes) => slopes.map((slope, i) => slope * entry(scales, i))),
+		findInvalid: (z) => task.findInvalid(toUnits(z)),
 		isWithinRanges: (z) => fill(z).every(isInRange),
 		toUnits,
 		toScaled: (x) => origins.map((origin, i) => (entry(x, i) - origin) / entry(scales, i))

@@ -1,32 +1,16 @@
 import { z } from 'zod';
+import { armEndpointRecordSchema, armXRecordSchema } from './models/arm-record.ts';
+import { cartPendulumRecordSchema } from './models/cart/cart-record.ts';
+import { paddleBounceRecordSchema } from './models/paddle-record.ts';
+import { puckFrictionRecordSchema, puckPushRecordSchema } from './models/puck-records.ts';
+import { tetheredBallRecordSchema } from './models/tether/tether-record.ts';
+import { throwAzimuthRecordSchema, throwHeightRecordSchema } from './models/throw-records.ts';
+import { twoFingerRecordSchema } from './models/two-finger.ts';
+import { positive, resultUnit, tolerance, variableSchema } from './task-variable.ts';
 
 /** Longest formula that is read, in characters. */
 export const FORMULA_LENGTH_MAX = 1000;
 
-const variableSchema = z
-	.strictObject({
-		/** As in the trial file and in formulas: a letter, then letters, digits or underscores. */
-		name: z.string().regex(/^[A-Za-z_][A-Za-z0-9_]{0,63}$/),
-		unit: z.string().max(32),
-		/** Lowest and highest possible value, in `unit`. */
-		min: z.number(),
-		max: z.number(),
-		/** Where scaled coordinates have their zero, in `unit`. */
-		origin: z.number(),
-		/** One standard deviation of a practised baseline cloud, in `unit`. */
-		scale: z.number().positive(),
-		/** Smallest difference that the rig can measure, in `unit`; 0 when unknown. */
-		resolution: z.number().nonnegative().default(0)
-	})
-	.refine(({ min, max }) => min < max, { error: 'min must lie below max', path: ['min'] })
-	.refine(({ min, max, origin }) => origin >= min && origin <= max, {
-		error: 'origin must lie between min and max',
-		path: ['origin']
-	});
-
-const positive = z.number().positive();
-const tolerance = positive.describe('largest miss that counts as a hit, in the unit of the result');
-const resultUnit = z.string().max(32);
 const pair = z.array(variableSchema).length(2);
 
 /** Sliding puck: release speed v and release position x₀; result x₀ + v²/(2·μ·g) − D. */
@@ -82,14 +66,25 @@ export const taskRecordSchema = z
 		puckRecordSchema,
 		projectileRecordSchema,
 		linearRecordSchema,
-		formulaRecordSchema
+		formulaRecordSchema,
+		tetheredBallRecordSchema,
+		paddleBounceRecordSchema,
+		throwHeightRecordSchema,
+		throwAzimuthRecordSchema,
+		puckPushRecordSchema,
+		puckFrictionRecordSchema,
+		twoFingerRecordSchema,
+		armEndpointRecordSchema,
+		armXRecordSchema,
+		cartPendulumRecordSchema
 	])
 	.refine(({ variables }) => new Set(variables.map(({ name }) => name)).size === variables.length, {
 		error: 'each variable needs a name of its own',
 		path: ['variables']
 	});
 
-export type TaskVariable = z.output<typeof variableSchema>;
+export type { TaskVariable } from './task-variable.ts';
+export type TaskType = TaskRecord['type'];
 export type TaskRecord = z.output<typeof taskRecordSchema>;
 export type TaskRecordInput = z.input<typeof taskRecordSchema>;
 export type PuckRecord = z.output<typeof puckRecordSchema>;

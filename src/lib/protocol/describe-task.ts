@@ -29,5 +29,31 @@ function describeModel(record: TaskRecord): string {
 			return `weighted sum (${record.coef.join(', ')}) less ${record.target}`;
 		case 'formula':
 			return `error = ${record.formula}`;
+		default:
+			return `${MODEL_NAMES[record.type]}: ${listParameters(record)}`;
 	}
+}
+
+type OtherType = Exclude<TaskRecord['type'], 'puck' | 'projectile' | 'linear' | 'formula'>;
+
+const MODEL_NAMES: Record<OtherType, string> = {
+	'tethered-ball': 'ball on two springs, swung past a post',
+	'paddle-bounce': 'ball bounced on a paddle',
+	'throw-height': 'throw with speed, angle and height of release',
+	'throw-azimuth': 'throw with speed, angle and direction to the side',
+	'puck-push': 'pushed puck',
+	'puck-friction': 'sliding puck on a chosen surface',
+	'two-finger': 'two finger forces',
+	'arm-endpoint': 'three joints of an arm, fingertip on a point',
+	'arm-x': 'three joints of an arm, fingertip on a line',
+	'cart-pendulum': 'cart with a pendulum, moved to and fro'
+};
+
+const HAS_LINE_OF_ITS_OWN = new Set(['type', 'tolerance', 'resultUnit', 'variables']);
+
+function listParameters(record: TaskRecord): string {
+	return Object.entries(record)
+		.filter(([name]) => !HAS_LINE_OF_ITS_OWN.has(name))
+		.map(([name, value]) => `${name} ${value === null ? 'none' : String(value)}`)
+		.join(', ');
 }
