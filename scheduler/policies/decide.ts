@@ -14,6 +14,7 @@ import {
 import type { Decision } from './decision.ts';
 import { chooseFixedBlock } from './fixed-block.ts';
 import { predictBlock } from './predict-block.ts';
+import { chooseYokedBlock } from './yoking/yoked-block.ts';
 
 /**
  * Decides the next block and returns the record to be stored: plain JSON with the inputs, the answer,
@@ -46,6 +47,7 @@ export function completeInputs(given: DecisionInputsInput): DecisionInputs {
 function chooseByRule(inputs: DecisionInputs): Decision {
 	const { rule } = inputs;
 	if (rule.kind === 'fixed') return chooseFixedBlock(inputs, rule);
+	if (rule.kind === 'yoked') return chooseYokedBlock(inputs, rule);
 	return chooseForTask({
 		state: inputs.state,
 		settings: inputs.protocol,

@@ -10,8 +10,9 @@ import {
 } from './policy-memory.ts';
 import { policySettingsSchema } from './policy-settings.ts';
 import { policyStateSchema } from './policy-state.ts';
+import { yokedRuleSchema } from './yoking/yoked-rule.ts';
 
-/** Which rule of an arm chooses: the adaptive policy, or the block that the protocol lists. */
+/** Which rule of an arm chooses: the adaptive policy, the block that the protocol lists, or a master. */
 export const armRuleSchema = z.discriminatedUnion('kind', [
 	z.strictObject({ kind: z.literal('adaptive') }),
 	z.strictObject({
@@ -20,7 +21,8 @@ export const armRuleSchema = z.discriminatedUnion('kind', [
 			kind: z.enum(EXECUTED_KINDS),
 			parameters: blockParametersSchema.prefault({})
 		})
-	})
+	}),
+	yokedRuleSchema
 ]);
 
 /** Everything that a decision depends on, complete with all defaults. */

@@ -28,14 +28,14 @@ export type Rung = (typeof RUNGS)[number];
 
 /** Why: the rung that answered, or a fact that came with the block; numbers stand in `values`. */
 export interface Reason {
-	readonly rung: Rung | 'block-end' | 'plan';
+	readonly rung: Rung | 'block-end' | 'plan' | 'yoked';
 	readonly code: string;
 	readonly values: JsonObject;
 }
 
 /** One rung asked; code null: it had nothing to say. */
 export interface LadderStep {
-	readonly rung: Rung | 'plan';
+	readonly rung: Rung | 'plan' | 'yoked';
 	readonly code: string | null;
 }
 

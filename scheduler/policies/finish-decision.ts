@@ -31,7 +31,7 @@ function addTrialCount(
 	parameters: BlockParameters
 ): BlockParameters {
 	if (kind === 'hold') return addFallback(settings, parameters);
-	if (kind === 'stop') return parameters;
+	if (kind === 'stop' || kind === 'wait') return parameters;
 	const counts: Partial<Record<DecisionKind, number>> = {
 		probe: settings.probeTrials,
 		washout: settings.washoutTrials,
@@ -87,7 +87,7 @@ function rememberDecision(
 /** Another block comes first after a gap: the running shift still has to be taken back for it. */
 function rememberGap({ memory, state, settings }: Turn, kind: DecisionKind): void {
 	if (!(settings.forget.beforeAnyBlock ?? settings.obligations !== undefined)) return;
-	const isRun = kind !== 'shift' && kind !== 'stop' && kind !== 'hold';
+	const isRun = kind !== 'shift' && kind !== 'stop' && kind !== 'hold' && kind !== 'wait';
 	if (!isRun || memory.active?.kind !== 'shift' || !state.gapHours) return;
 	if (memory.pendingGap?.day === state.day) return;
 	const hours = (memory.pendingGap?.hours ?? 0) + state.gapHours;

@@ -31,7 +31,7 @@ function play(
 
 function runAsPlanned({ kind, parameters }: Decision): PolicyStateInput['last'] {
 	if (kind === 'shift') return { kind, errors: followLevel(parameters.rule?.sigma ?? 1) };
-	return { kind: kind === 'hold' || kind === 'stop' ? 'rest' : kind, trials };
+	return { kind: kind === 'hold' || kind === 'stop' || kind === 'wait' ? 'rest' : kind, trials };
 }
 
 /** A person who follows every level at once: errors only of the 8 unshifted trials' size. */

@@ -22,8 +22,8 @@ export const EXECUTED_KINDS = [
 	'transfer',
 	'rest'
 ] as const;
-/** Kinds that a decision can name: the executed ones, and to stop or to hold for a person. */
-export const DECISION_KINDS = [...EXECUTED_KINDS, 'stop', 'hold'] as const;
+/** Kinds that a decision can name: the executed ones, to stop, to hold for a person, to wait for a yoked master. */
+export const DECISION_KINDS = [...EXECUTED_KINDS, 'stop', 'hold', 'wait'] as const;
 
 /** What a plain block showed. mean, cov: scaled; cost, fMean, fSd: result unit; hit, r: ratios. */
 export const blockSummarySchema = z.strictObject({
@@ -64,6 +64,8 @@ export const blockParametersSchema = z.strictObject({
 	hold: count.optional(),
 	/** Share of the level expected to be kept over the gap. */
 	retained: z.number().optional(),
+	/** Yoked shift: the level of each trial, as the master's rule set it. */
+	levels: z.array(z.number()).optional(),
 	/** Place of the obligation that this block fulfils in the protocol's list. */
 	obligation: count.optional(),
 	feedback: z.enum(FEEDBACKS).optional(),
@@ -148,6 +150,8 @@ export const policyMemorySchema = z.strictObject({
 	whyProbe: z.array(z.string()).default([]),
 	/** recent and noChallenge as the last block left them, so that asking twice counts once. */
 	sinceBlock: z.strictObject({ recent: recentSchema, noChallenge: count }).nullable().default(null),
+	/** Yoked arms: the perturbation of the last block; null: it had none. */
+	yokedLevel: planSchema.nullable().optional(),
 	/** Only where the protocol declares obligations. */
 	obligations: obligationMemorySchema.optional(),
 	/** Hours without a block that a running shift has not yet been taken back for, up to a day. */

@@ -48,7 +48,7 @@ export function predictBlock({ kind, parameters, memory }: Omit<Decision, 'ladde
 		return {
 			...{ about: 'shift', level: parameters.level ?? 0, goal: rule.goal, hitShare: rule.hit0 }
 		};
-	if (kind === 'stop' || kind === 'hold' || kind === 'rest' || !memory.cloud)
-		return { about: 'nothing' };
+	const isNoBlock = kind === 'stop' || kind === 'hold' || kind === 'rest' || kind === 'wait';
+	if (isNoBlock || !memory.cloud) return { about: 'nothing' };
 	return { about: 'plain', hitShare: memory.cloud.hit, meanError: memory.cloud.cost };
 }

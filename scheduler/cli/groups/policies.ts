@@ -3,6 +3,7 @@ import { z } from 'zod';
 import { ENGINE_VERSION } from '../../engine-version.ts';
 import { placeLeaningRegion, placeRegion } from '../../perturbations/place-region.ts';
 import { preparePlacement } from '../../perturbations/prepare-placement.ts';
+import { checkPolicy } from '../../policies/check-policy.ts';
 import { decideNextBlock } from '../../policies/decide.ts';
 import { decisionInputsSchema, decisionRecordSchema } from '../../policies/decision-record.ts';
 import { checkGates } from '../../policies/gates.ts';
@@ -14,6 +15,8 @@ import { createScaledTask } from '../../tasks/scaled-task.ts';
 import { computeCovariance, computeMeanVector } from '../../variability/moments.ts';
 import { estimateLagOne } from '../../variability/serial-dependence.ts';
 import { command, type CommandGroup } from '../command.ts';
+import { pairPeople, yokeInputSchema, yokeOutputSchema } from '../pair-people.ts';
+import { runShift, shiftStepInputSchema, shiftStepOutputSchema } from '../run-shift.ts';
 import { readableTaskSchema, trialsInputSchema } from '../trial-inputs.ts';
 
 const numbers = z.array(z.number());
@@ -52,6 +55,14 @@ const placedSchema = z.union([
 	z.looseObject({ ok: z.literal(false), reason: z.string() })
 ]);
 
+const checkInputSchema = z.strictObject({
+	protocol: policySettingsSchema.prefault({}),
+	operatorsAreBlinded: z.boolean().default(true)
+});
+const checkOutputSchema = z.strictObject({
+	concerns: z.array(z.strictObject({ code: z.string(), isRefusal: z.boolean(), text: z.string() }))
+});
+
 const decideSchema = z.strictObject({ ...decisionInputsSchema.shape, task: readableTaskSchema });
 
 const replaySchema = z.strictObject({
@@ -83,6 +94,23 @@ export const POLICY_COMMANDS: CommandGroup = {
 		'Where a penalized region would be placed',
 		{ input: regionInputSchema, output: placedSchema },
 		place
+	),
+	'shift-step': command(
+		'The levels of a target shift over the trials of a block',
+		{ input: shiftStepInputSchema, output: shiftStepOutputSchema },
+		runShift
+	),
+	yoke: command(
+		'Yoked pairs from baselines; the next block of a partner is decided by “decide”',
+		{ input: yokeInputSchema, output: yokeOutputSchema },
+		pairPeople
+	),
+	'check-policy': command(
+		'What a policy asks for that its measured properties speak against',
+		{ input: checkInputSchema, output: checkOutputSchema },
+		({ protocol, operatorsAreBlinded }) => ({
+			concerns: checkPolicy(protocol, { operatorsAreBlinded })
+		})
 	),
 	decide: command(
 		'The next block, with reasons, as a record to store',

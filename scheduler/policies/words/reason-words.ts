@@ -80,6 +80,22 @@ const COURSE: Record<string, Sentence> = {
 	'PROTOCOL-BLOCK': () => 'The protocol lists this block.'
 };
 
+const YOKED: Record<string, Sentence> = {
+	YOKED: (v) =>
+		v.has('leadHours')
+			? `The master’s block ${v.count('block')}, scored ${v.decimal('leadHours', 0)} hours ago.`
+			: `The master’s block ${v.count('block')}.`,
+	'RE-PAIRED': (v) =>
+		`The master has withdrawn: block ${v.count('block')} of the nearest finished master without a partner.`,
+	'ORPHAN-KEEP': () =>
+		'The master has withdrawn: the last level goes on, as the protocol declares.',
+	'ORPHAN-PRACTICE': () => 'The master has withdrawn: plain practice, as the protocol declares.',
+	'LATE-WAIT': (v) =>
+		`The master’s block ${v.count('block')} is not scored yet: this one waits for it, to the end of the longest gap.`,
+	'LATE-KEEP': () => 'The master’s block is not scored yet: the last level goes on, as declared.',
+	'LATE-PRACTICE': () => 'The master’s block is not scored yet: plain practice, as declared.'
+};
+
 const SETTLING: Record<string, Sentence> = {
 	'FIRST-BLOCKS': (v, { settings }) =>
 		`${v.count('blocks')} of at least ${settings.settle.minBlocks} plain blocks have been run: the error cannot be judged yet.`,
@@ -141,5 +157,6 @@ export const REASON_WORDS: Readonly<Record<string, Sentence>> = {
 	...COURSE,
 	...SETTLING,
 	...CHALLENGE,
+	...YOKED,
 	...BLOCK_END
 };

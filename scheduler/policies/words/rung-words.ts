@@ -19,5 +19,6 @@ export const RUNG_WORDS: Readonly<Record<LadderStep['rung'], { asks: string; pas
 	},
 	lean: { asks: 'Does a region fit beside the mean?', passed: 'No.' },
 	practice: { asks: 'What is left?', passed: 'Practice.' },
+	yoked: { asks: 'What did the master get?', passed: 'Nothing.' },
 	plan: { asks: 'What does the protocol list?', passed: 'Nothing.' }
 };

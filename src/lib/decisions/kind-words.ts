@@ -13,7 +13,8 @@ const words: Record<string, string> = {
 	transfer: 'transfer',
 	rest: 'rest',
 	stop: 'stop',
-	hold: 'wait for a person'
+	hold: 'wait for a person',
+	wait: 'wait for the yoked partner’s block'
 };
 
 /** A kind of block as it stands in a sentence. */
