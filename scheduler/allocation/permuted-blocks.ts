@@ -1,4 +1,5 @@
-import { drawBelow, type Uint32Stream } from '../random/random-stream.ts';
+import { drawBelow } from '../random/random-stream.ts';
+import type { CryptographicStream, OpenStream } from './cryptographic-stream.ts';
 
 /** Permuted blocks of random sizes. */
 export type PermutedBlockScheme = {
@@ -7,9 +8,6 @@ export type PermutedBlockScheme = {
 	/** Sizes a block may have, each as likely; multiples of the sum of the weights. */
 	blockSizes: readonly number[];
 };
-
-/** Opens the random stream that belongs to a name; the same name always gives the same words. */
-export type OpenStream = (name: string) => Uint32Stream;
 
 export type EntryRequest = {
 	scheme: PermutedBlockScheme;
@@ -66,7 +64,7 @@ export function deriveEntry(request: EntryRequest): AllocationEntry {
 /** Fills a block's places in order and says which arm takes the last of them. */
 function fillUpTo(options: {
 	scheme: PermutedBlockScheme;
-	stream: Uint32Stream;
+	stream: CryptographicStream;
 	blockSize: number;
 	positionInBlock: number;
 }): string {
@@ -86,7 +84,7 @@ function fillUpTo(options: {
 	}
 }
 
-function drawFrom(stream: Uint32Stream, sizes: readonly number[]): number {
+function drawFrom(stream: CryptographicStream, sizes: readonly number[]): number {
 	const size = sizes[drawBelow(stream, sizes.length)];
 	if (size === undefined) throw new Error('a draw below the count of sizes names one of them');
 	return size;

@@ -4,6 +4,8 @@ import type { Uint32Stream } from './random-stream.ts';
 
 /** A stream that always gives the same words for the same seed. For simulation, never for allocation. */
 export type SeededStream = Uint32Stream & {
+	/** Keeps it out of allocation, which takes no stream that says so. */
+	readonly purpose: 'simulation';
 	/** The state, from which {@link resumeSeededStream} goes on. */
 	getState(): readonly number[];
 };
@@ -68,6 +70,7 @@ export function seedFromText(text: string): number {
 
 function wrap(generator: JumpableRandomGenerator): SeededStream {
 	return {
+		purpose: 'simulation',
 		nextUint32: () => generator.next() >>> 0,
 		getState: () => [...generator.getState()]
 	};

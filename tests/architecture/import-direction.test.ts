@@ -55,18 +55,30 @@ describe('the engine', () => {
 		expect(faults).toEqual([]);
 	});
 
-	test('draws allocation from no generator made for simulation', () => {
-		const faults = files
-			.filter((file) => /^(scheduler\/allocation|src\/lib\/server\/(allocation|keys))\//.test(file))
-			.flatMap((file) =>
-				own(file)
-					.filter(
-						({ wanted, target }) =>
-							wanted.startsWith('pure-rand') || target === 'scheduler/random/seeded-stream.ts'
-					)
-					.map(({ wanted }) => `${file} imports ${wanted}`)
-			);
-		expect(faults).toEqual([]);
+	test('draws allocation from a stream handed in, with no generator within reach', () => {
+		const allocation = files.filter((file) =>
+			/^(scheduler\/allocation|src\/lib\/server\/(allocation|keys))\//.test(file)
+		);
+		const faults = allocation.flatMap((file) =>
+			own(file)
+				.filter(({ wanted, target }) => isGenerator(wanted, target))
+				.map(({ wanted }) => `${file} imports ${wanted}`)
+		);
+		const reached = reachFrom(allocation.filter((file) => file.startsWith('scheduler/')));
+		const hidden = reached.flatMap((file) =>
+			own(file)
+				.filter(({ wanted, target }) => isGenerator(wanted, target))
+				.map(({ wanted }) => `allocation reaches ${wanted} through ${file}`)
+		);
+		expect([...faults, ...hidden]).toEqual([]);
+		expect(reached).toContain('scheduler/random/random-stream.ts');
+
+		function isGenerator(wanted: string, target: string | null): boolean {
+			if (/^(pure-rand|jstat|simple-statistics)(\/|$)/.test(wanted)) return true;
+			// Of scheduler/random only what draws from a stream that somebody else opened.
+			if (!target?.startsWith('scheduler/random/')) return false;
+			return target !== 'scheduler/random/random-stream.ts';
+		}
 	});
 
 	/** A part may import parts that stand before it; the command line may import all. */
@@ -254,6 +266,14 @@ function findImpure(file: string): string[] {
 	};
 	visit(parse(file));
 	return faults;
+}
+
+/** Files that are imported, from file to file, by some. */
+function reachFrom(starts: readonly string[]): string[] {
+	const reached = new Set(starts);
+	for (const file of reached)
+		for (const { target } of own(file)) if (target && imports.has(target)) reached.add(target);
+	return [...reached];
 }
 
 /** Circles among imports that are still there after compiling. */

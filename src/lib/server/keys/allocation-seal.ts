@@ -1,4 +1,5 @@
 import { createHash, randomBytes } from 'node:crypto';
+import { writeCommitmentText } from '$scheduler/allocation/commitment';
 import { openBox, sealBox } from './authenticated-box';
 import { deriveKey, type KeyMaterial } from './secret-key';
 
@@ -65,7 +66,8 @@ export function openAllocation(
  */
 export function commitmentOf(secret: AllocationSecret): string {
 	const hex = (bytes: Uint8Array) => Buffer.from(checked(bytes)).toString('hex');
-	const text = `ovalry-allocation-commitment v1\nseed ${hex(secret.seed)}\nnonce ${hex(secret.nonce)}\n`;
+	const { seed, nonce } = secret;
+	const text = writeCommitmentText({ seedHex: hex(seed), nonceHex: hex(nonce) });
 	return createHash('sha256').update(text, 'utf8').digest('hex');
 }
 
