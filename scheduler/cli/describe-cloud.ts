@@ -13,6 +13,11 @@ import { computeCovariance, computeMeanVector } from '../variability/moments.ts'
 import { computeToleranceFactor } from '../variability/tolerance-factor.ts';
 import { trimOutliers } from '../variability/trim-outliers.ts';
 import { trialsInputSchema } from './trial-inputs.ts';
+import {
+	estimateCloud,
+	estimateResultSchema,
+	estimateSchema
+} from './variability/estimate-cloud.ts';
 
 const probability = z.number().gt(0).lt(1);
 
@@ -22,7 +27,9 @@ export const cloudInputSchema = z
 		/** Probability of the ellipsoids; for the tolerance ellipsoid the share of the population. */
 		probability: probability.default(0.9),
 		/** Confidence of the tolerance ellipsoid. */
-		confidence: probability.default(0.95)
+		confidence: probability.default(0.95),
+		/** Which mean and covariance the ellipsoids are drawn of. */
+		estimate: estimateSchema.prefault({ method: 'plain' })
 	})
 	.superRefine((input, context) => {
 		const checked = trialsInputSchema.safeParse({ task: input.task, trials: input.trials });
@@ -43,16 +50,21 @@ export const cloudSchema = z.strictObject({
 	n: z.int(),
 	inUnits: moments,
 	scaled: moments,
-	ellipsoids: z.array(
-		z.strictObject({
-			kind: z.enum(['coverage', 'mean', 'nextTrial', 'tolerance']),
-			factor: z.number(),
-			center: numbers,
-			halfAxes: numbers,
-			directions: z.array(numbers),
-			volume: z.number()
-		})
-	),
+	/** Of the estimate that was asked for. */
+	estimate: estimateResultSchema,
+	/** null: the estimate could not be made. */
+	ellipsoids: z
+		.array(
+			z.strictObject({
+				kind: z.enum(['coverage', 'mean', 'nextTrial', 'tolerance']),
+				factor: z.number(),
+				center: numbers,
+				halfAxes: numbers,
+				directions: z.array(numbers),
+				volume: z.number()
+			})
+		)
+		.nullable(),
 	/** Numbers of the trials that trimming leaves out; null: it cannot be told. */
 	strayTrials: z.array(z.int()).nullable(),
 	geometry: z
@@ -74,16 +86,19 @@ export function describeCloud(input: z.output<typeof cloudInputSchema>) {
 		cov: computeCovariance(executions)
 	};
 	const trimmed = trimOutliers(executions);
-	const mean = computeMeanVector(input.trials);
-	const covariance = computeCovariance(input.trials);
+	const estimate = estimateCloud(task, executions, input.estimate);
 	const factors = computeFactors(input);
 	return {
 		n: input.trials.length,
-		inUnits: { mean, covariance },
+		inUnits: { mean: computeMeanVector(input.trials), covariance: computeCovariance(input.trials) },
 		scaled: { mean: scaled.mean, covariance: scaled.cov },
-		ellipsoids: Object.entries(factors).map(([kind, factor]) => ({
-			...{ kind, factor, ...computeEllipsoid({ mean, covariance, factor }) }
-		})),
+		estimate,
+		ellipsoids: estimate.ok
+			? Object.entries(factors).map(([kind, factor]) => ({
+					...{ kind, factor },
+					...computeEllipsoid({ mean: estimate.mean, covariance: estimate.covariance, factor })
+				}))
+			: null,
 		strayTrials: trimmed.ok ? listStray(trimmed.kept) : null,
 		geometry: isFlat(scaled.cov) ? null : computeCloudGeometry(task, scaled)
 	};

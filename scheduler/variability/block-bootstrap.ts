@@ -65,16 +65,29 @@ export function bootstrapInterval(
  * different workers join to the same list.
  */
 export function drawReplicates(
-	{ blocks, measure, seed, blockLength = BLOCK_LENGTH }: BootstrapRequest,
+	request: BootstrapRequest,
 	from: number,
 	count: number
 ): (number | null)[] {
-	if (blocks.some((trials) => trials.length < blockLength))
-		throw new RangeError(`a bootstrap requires at least ${blockLength} trials in each block`);
-	return createSeededStreams(seed, from, count).map((stream) => {
-		const drawn = measure(blocks.map((trials) => drawTrials(stream, trials, blockLength)));
+	return Array.from(drawResamples(request, from, count), (blocks) => {
+		const drawn = request.measure(blocks);
 		return drawn.ok && Number.isFinite(drawn.value) ? drawn.value : null;
 	});
+}
+
+/**
+ * The blocks drawn anew, one after another, from a number on; for measures of several values.
+ * @throws {RangeError} a block of fewer trials than the block length
+ */
+export function* drawResamples(
+	{ blocks, seed, blockLength = BLOCK_LENGTH }: Omit<BootstrapRequest, 'measure'>,
+	from: number,
+	count: number
+): Generator<readonly Matrix[]> {
+	if (blocks.some((trials) => trials.length < blockLength))
+		throw new RangeError(`a bootstrap requires at least ${blockLength} trials in each block`);
+	for (const stream of createSeededStreams(seed, from, count))
+		yield blocks.map((trials) => drawTrials(stream, trials, blockLength));
 }
 
 /** The interval from the value as measured and all replicates in their order. */

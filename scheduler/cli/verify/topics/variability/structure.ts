@@ -1,6 +1,7 @@
 import { z } from 'zod';
-import { multiplyVector } from '../../../../linear-algebra/vector.ts';
+import { multiplyVector, type Matrix } from '../../../../linear-algebra/vector.ts';
 import { computeSymmetricEigen } from '../../../../linear-algebra/symmetric-eigen.ts';
+import { computeArmPosture } from '../../../../tasks/models/arm.ts';
 import { computeCloudAlignment } from '../../../../variability/cloud-alignment.ts';
 import { computeEllipsoid } from '../../../../variability/compute-ellipsoid.ts';
 import {
@@ -26,7 +27,6 @@ import { computeToleranceFactor } from '../../../../variability/tolerance-factor
 import { computeManifoldVariance } from '../../../../variability/uncontrolled-manifold.ts';
 import { firstOf, forInputs, Judged, listSchema, repeat, type TopicGroup } from '../../topic.ts';
 import { matrix, numbers, readTrials, requireOk, trialNames } from './case-inputs.ts';
-import { computeArmJacobian } from './arm-jacobian.ts';
 
 const divisor = z.literal('n-1').default('n-1');
 const level = z.number().gt(0).lt(1);
@@ -80,7 +80,7 @@ export const STRUCTURE_TOPICS: TopicGroup = {
 			z.strictObject({ ...trialNames, lengths: numbers, result: z.string(), divisor }),
 			({ lengths, result, ...inputs }, datasets) => {
 				const trials = readTrials(inputs, datasets);
-				const both = computeArmJacobian(lengths, computeMeanVector(trials));
+				const both = computeArmPosture(lengths, computeMeanVector(trials)).jacobian;
 				return describeManifold(trials, /\bonly\b/.test(result) ? both.slice(0, 1) : both);
 			}
 		)
@@ -132,7 +132,7 @@ function describeEllipsoid(trials: number[][], c2: number) {
 	};
 }
 
-function describeManifold(trials: number[][], J: number[][]) {
+function describeManifold(trials: number[][], J: Matrix) {
 	const found = requireOk(computeManifoldVariance(trials, J));
 	return {
 		...{ V_ucm: found.along, V_ort: found.across, V_tot: found.total },
