@@ -3,25 +3,6 @@
  * list, and none may join it.
  */
 export const NOT_YET_COMPUTED: readonly string[] = [
-	// task-tether
-	'tether-damped-1',
-	'tether-undamped-2',
-	'tether-ball-radius',
-	'tether-alignment-undamped',
-	'tether-jacobian-1',
-	'tether-jacobian-3',
-	// task-paddle
-	'paddle-stability-bounds',
-	'paddle-eigenvalues',
-	// task-projectile
-	'projectile-manifold',
-	'projectile-3d',
-	// task-puck
-	'puck-push',
-	// task-arm
-	'arm-singular',
-	// task-generic
-	'generic-gradient',
 	// tnc
 	'tnc-tether',
 	// quantiles
@@ -63,9 +44,5 @@ export const NOT_YET_COMPUTED: readonly string[] = [
 	'williams-5',
 	'permuted-block-4',
 	'efron-bcd-10',
-	'minimisation-score',
-	// task-cart
-	'cart-1',
-	'cart-3',
-	'cart-6'
+	'minimisation-score'
 ];

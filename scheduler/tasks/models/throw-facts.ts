@@ -41,3 +41,22 @@ export function computeSlowestThrow({ h, D, H, g }: ThrowPlace): {
 	const reach = q + Math.hypot(D, q);
 	return { speed: Math.sqrt(g * reach), thetaDeg: (Math.atan2(reach, D) * 180) / Math.PI };
 }
+
+/**
+ * How far a throw comes before it is down at a height; null: it does not come so high.
+ *
+ * Units:   speed m/s, angle degrees, m.
+ * Method:  R = (v·cos θ/g)·(v·sin θ + √(v²·sin²θ + 2g(h − H))).
+ * Source:  method sheet A3.
+ */
+export function computeRange(
+	{ h, H, g }: Omit<ThrowPlace, 'D'>,
+	speed: number,
+	thetaDeg: number
+): number | null {
+	const theta = (thetaDeg * Math.PI) / 180;
+	const rise = speed * Math.sin(theta);
+	const square = rise ** 2 + 2 * g * (h - H);
+	if (square < 0) return null;
+	return ((speed * Math.cos(theta)) / g) * (rise + Math.sqrt(square));
+}

@@ -1,19 +1,17 @@
-import { z } from 'zod';
-import { compileDual } from '../../../tasks/formula/compile-formula.ts';
-import { parseFormula } from '../../../tasks/formula/parse-formula.ts';
-import { forInputs, type TopicGroup } from '../topic.ts';
+import type { TopicGroup } from '../topic.ts';
+import { ARM_TOPIC, FORMULA_TOPIC } from './task-models/arm-and-formula.ts';
+import { CART_TOPIC } from './task-models/cart.ts';
+import { PADDLE_TOPIC } from './task-models/paddle.ts';
+import { TETHER_TOPIC } from './task-models/tether.ts';
+import { PUCK_TOPIC, THROW_TOPIC } from './task-models/throws-and-pucks.ts';
 
 /** Task models in check cases. */
 export const TASK_TOPICS: TopicGroup = {
-	'task-generic': forInputs(
-		z.strictObject({ formula: z.string(), x: z.record(z.string(), z.number()) }),
-		({ formula, x }) => {
-			const names = Object.keys(x);
-			const parsed = parseFormula(formula, names);
-			if (!parsed.ok)
-				throw new RangeError(`formula, character ${parsed.position + 1}: ${parsed.message}`);
-			const { value, slopes } = compileDual(parsed.expression, names.length)(Object.values(x));
-			return { value, gradient: slopes };
-		}
-	)
+	'task-tether': TETHER_TOPIC,
+	'task-paddle': PADDLE_TOPIC,
+	'task-projectile': THROW_TOPIC,
+	'task-puck': PUCK_TOPIC,
+	'task-arm': ARM_TOPIC,
+	'task-generic': FORMULA_TOPIC,
+	'task-cart': CART_TOPIC
 };
