@@ -1,6 +1,6 @@
 import { scaleMatrix } from '../linear-algebra/matrix.ts';
 import { subtract } from '../linear-algebra/vector.ts';
-import type { PlacementGround } from './prepare-placement.ts';
+import type { Lean, PlacementGround } from './prepare-placement.ts';
 import type { PlacedRegion } from './region-settings.ts';
 import { weighShare, type Exit, type PlacementRung, type WeighedShare } from './weigh-share.ts';
 
@@ -20,19 +20,25 @@ export type RegionChoice =
  * Source:  method sheet D2; case policy-placement-projectile, tests/reference/selector.test.ts.
  */
 export function placeRegion(ground: PlacementGround, shares: readonly number[]): RegionChoice {
-	return weighShares(ground, shares, 0, 0);
+	return weighShares(ground, shares, { size: 0, axis: 0 }, 0);
 }
 
 /**
  * The same with the center moved off the mean along the manifold, nearest lean first, so that a region
- * fits where a centered one leaves no way out. It must still catch `catchMin` of the trials.
+ * fits where a centered one leaves no way out; with two free directions along the wider, then the other. It must still catch `catchMin` of the trials.
  */
 export function placeLeaningRegion(
 	ground: PlacementGround,
 	options: { shares: readonly number[]; leans: readonly number[]; catchMin: number }
 ): RegionChoice {
 	const rungs: PlacementRung[] = [];
-	for (const lean of options.leans.flatMap((size) => [size, -size])) {
+	const leans = options.leans.flatMap((size) =>
+		ground.directions.flatMap((_, axis) => [
+			{ size, axis },
+			{ size: -size, axis }
+		])
+	);
+	for (const lean of leans) {
 		const choice = weighShares(ground, options.shares, lean, options.catchMin);
 		rungs.push(...choice.rungs);
 		if (choice.ok) return { ...choice, rungs };
@@ -43,7 +49,7 @@ export function placeLeaningRegion(
 function weighShares(
 	ground: PlacementGround,
 	shares: readonly number[],
-	lean: number,
+	lean: Lean,
 	catchMin: number
 ): RegionChoice {
 	const rungs: PlacementRung[] = [];
@@ -68,7 +74,7 @@ function describeRegion(
 	{ rung, center }: WeighedShare,
 	nearest: Exit
 ): PlacedRegion {
-	const { task, cloud, here, points, sdTangent } = ground;
+	const { task, cloud, here, points } = ground;
 	const offset = points.whiten(subtract(cloud.mean, center));
 	const kSquared = rung.k ** 2;
 	return {
@@ -83,8 +89,9 @@ function describeRegion(
 		exitMinus: rung.exitMinus,
 		nearest: nearest.s,
 		nearestSuccess: nearest.success,
-		reachSd: Math.abs(nearest.s) / sdTangent,
+		reachSd: Math.abs(nearest.s) / nearest.sd,
 		lean: rung.lean,
-		catch: rung.lean === 0 ? rung.share : points.countInside({ offset, kSquared }) / points.count
+		catch: rung.lean === 0 ? rung.share : points.countInside({ offset, kSquared }) / points.count,
+		...(ground.isSurface ? { exitInUnits: task.toUnits(nearest.z) } : {})
 	};
 }

@@ -1,9 +1,9 @@
-import { dot, quadraticForm, scale, subtract, type Matrix } from '../linear-algebra/vector.ts';
-import { computeTangent, projectToManifold } from '../tasks/project-to-manifold.ts';
+import { dot, entry, row, scale, subtract, type Matrix } from '../linear-algebra/vector.ts';
+import { projectToManifold } from '../tasks/project-to-manifold.ts';
 import type { ScaledTask } from '../tasks/scaled-task.ts';
-import { traceManifold } from '../tasks/trace-manifold.ts';
 import { createCloudPoints, once, type CarriedCloud, type CloudPoints } from './carried-cloud.ts';
 import type { PlacementSettings } from './region-settings.ts';
+import { findSolutionWays, type WaysRefusal, type WayPoint } from './solution-ways.ts';
 
 /** Mean and covariance in scaled units and the trials behind them. */
 export interface Cloud {
@@ -13,20 +13,9 @@ export interface Cloud {
 }
 
 /** Why the engine cannot place a region at all. */
-export type PlacementRefusal =
-	/** Two or more free directions (d − r ≥ 2): there is no single way along the solutions. */
-	| 'more-free-directions'
-	/** The result is not one number. */
-	| 'two-results'
-	/** As many results as variables: one solution only. */
-	| 'no-free-direction'
-	/** No solution is found near the person's own cloud. */
-	| 'no-solution-near'
-	| 'singular-cloud';
+export type PlacementRefusal = WaysRefusal | 'singular-cloud';
 
-export interface TracePoint {
-	readonly s: number;
-	readonly z: readonly number[];
+export interface TracePoint extends WayPoint {
 	/** Whitened place. */
 	readonly w: readonly number[];
 	/** The cloud carried here; computed when first asked for. */
@@ -39,10 +28,13 @@ export interface PlacementGround {
 	readonly cloud: Cloud;
 	readonly settings: PlacementSettings;
 	readonly points: CloudPoints;
-	/** Nearest solution to the mean, tangent there and the cloud's SD along it. */
+	/** Nearest solution to the mean, and the cloud's SD along its widest free direction there. */
 	readonly z0: readonly number[];
-	readonly tangent: readonly number[];
 	readonly sdTangent: number;
+	/** Free directions at z0, the one along which the cloud is widest first, and its SDs there. */
+	readonly directions: Matrix;
+	readonly sds: readonly number[];
+	readonly isSurface: boolean;
 	readonly plus: readonly TracePoint[];
 	readonly minus: readonly TracePoint[];
 	/** The cloud where it is now. */
@@ -50,7 +42,7 @@ export interface PlacementGround {
 }
 
 /**
- * Traces the manifold and prepares the cloud's point set: everything that does not depend on the share.
+ * Finds the ways along the solutions and prepares the cloud's point set: everything that does not depend on the share.
  *
  * Source:  method sheet D2 steps 2 and 3.
  */
@@ -66,26 +58,26 @@ export function preparePlacement(options: {
 	if (!made.ok) return made;
 	const { points } = made;
 	const nearest = projectToManifold({ task, mean: cloud.mean, covariance: cloud.cov });
-	const tangent = nearest.ok ? computeTangent(task, nearest.point) : null;
-	if (!nearest.ok || !tangent) return { ok: false, reason: 'no-solution-near' };
-	const trace = traceManifold(task, nearest.point, {
-		length: settings.lengthMax,
-		step: settings.step
+	if (!nearest.ok) return nearest;
+	const found = findSolutionWays({
+		...{ task, start: nearest.point, covariance: cloud.cov },
+		...{ length: settings.lengthMax, lengthSd: settings.reachMaxSd, step: settings.step }
 	});
-	const prepare = ({ s, z }: { s: number; z: readonly number[] }) => ({
-		s,
-		z,
-		w: points.whiten(z),
-		carried: once(() => points.carryTo(z))
+	if (!found.ok) return found;
+	const { plus, minus, directions, sds, isSurface } = found.ways;
+	const prepare = (point: WayPoint): TracePoint => ({
+		...point,
+		w: points.whiten(point.z),
+		carried: once(() => points.carryTo(point.z))
 	});
 	return {
 		ok: true,
 		ground: {
-			...{ task, cloud, settings, points, tangent },
+			...{ task, cloud, settings, points, directions, sds, isSurface },
 			z0: nearest.point,
-			sdTangent: Math.sqrt(quadraticForm(cloud.cov, tangent)),
-			plus: trace.plus.map(prepare),
-			minus: trace.minus.map(prepare),
+			sdTangent: entry(sds, 0),
+			plus: plus.map(prepare),
+			minus: minus.map(prepare),
 			here: points.carryTo(cloud.mean)
 		}
 	};
@@ -94,14 +86,23 @@ export function preparePlacement(options: {
 export function findDimensionRefusal(
 	task: Pick<ScaledTask, 'variableCount' | 'resultCount'>
 ): PlacementRefusal | null {
-	if (task.resultCount > 1) return 'two-results';
-	if (task.variableCount < 2) return 'no-free-direction';
-	return task.variableCount > 2 ? 'more-free-directions' : null;
+	const freeCount = task.variableCount - task.resultCount;
+	if (freeCount < 1) return 'no-free-direction';
+	return freeCount > 2 ? 'more-free-directions' : null;
 }
 
-/** Center of a region that leans `lean` own SD against the tangent. */
-export function computeLeaningCenter(ground: PlacementGround, lean: number): number[] {
-	return subtract(ground.cloud.mean, scale(ground.tangent, lean * ground.sdTangent));
+/** How far and along which free direction a region leans off the mean. */
+export interface Lean {
+	/** In own SD along the direction, against it; 0: centered. */
+	readonly size: number;
+	/** 0: the free direction along which the cloud is widest. */
+	readonly axis: number;
+}
+
+/** Center of a region that leans. */
+export function computeLeaningCenter(ground: PlacementGround, { size, axis }: Lean): number[] {
+	const direction = row(ground.directions, axis);
+	return subtract(ground.cloud.mean, scale(direction, size * entry(ground.sds, axis)));
 }
 
 /** Squared length of u − v. */

@@ -55,7 +55,9 @@ export const placedRegionSchema = z.strictObject({
 	/** How far the center leans away from the mean, in own standard deviations along the manifold. */
 	lean: z.number(),
 	/** Share of the person's own next trials expected inside. */
-	catch: z.number()
+	catch: z.number(),
+	/** Two free directions: where the nearest exit lies, which its arc length alone does not tell. */
+	exitInUnits: vector.optional()
 });
 
 /**

@@ -3,6 +3,7 @@ import { computeNextTrialFactor } from '../variability/ellipsoid-factors.ts';
 import {
 	computeLeaningCenter,
 	squaredDistance,
+	type Lean,
 	type PlacementGround,
 	type TracePoint
 } from './prepare-placement.ts';
@@ -21,6 +22,8 @@ export interface PlacementRung {
 	readonly share: number;
 	readonly k: number;
 	readonly lean: number;
+	/** Which free direction it leans along, where that is not the one the cloud is widest along. */
+	readonly leanAxis?: number;
 	/** Arc length of the first way out on each side; null: none. */
 	readonly exitPlus: number | null;
 	readonly exitMinus: number | null;
@@ -36,6 +39,8 @@ export interface Exit {
 	readonly s: number;
 	readonly z: readonly number[];
 	readonly hit: number;
+	/** SD of the cloud along the way there, scaled. */
+	readonly sd: number;
 	/** Share that hits outside the region there. */
 	readonly success: number;
 }
@@ -51,7 +56,7 @@ export interface WeighedShare {
  *
  * Source:  method sheet D2 step 4.
  */
-export function weighShare(ground: PlacementGround, share: number, lean: number): WeighedShare {
+export function weighShare(ground: PlacementGround, share: number, lean: Lean): WeighedShare {
 	const { cloud, points, settings, here } = ground;
 	const center = computeLeaningCenter(ground, lean);
 	const kSquared = computeNextTrialFactor({
@@ -69,7 +74,8 @@ export function weighShare(ground: PlacementGround, share: number, lean: number)
 		center,
 		nearest,
 		rung: {
-			...{ share, lean, staySuccess, cover, refusal },
+			...{ share, lean: lean.size, staySuccess, cover, refusal },
+			...(lean.axis === 0 ? {} : { leanAxis: lean.axis }),
 			k: Math.sqrt(kSquared),
 			exitPlus: plus?.s ?? null,
 			exitMinus: minus?.s ?? null,
@@ -89,14 +95,16 @@ function findExit(ground: PlacementGround, branch: readonly TracePoint[], ball: 
 	const { settings, here } = ground;
 	const clear = (Math.sqrt(ball.kSquared) + settings.exitWidth) ** 2;
 	const floor = Math.max(settings.successMin, settings.successRelativeMin * here.hitShare);
-	for (const { s, z, w, carried } of branch.slice(1)) {
+	for (const { s, z, w, sd, carried } of branch.slice(1)) {
 		if (!(squaredDistance(w, ball.whiteCenter) > clear)) continue;
+		// A net of points is too many to carry the cloud to those that would be refused anyway.
+		if (ground.isSurface && Math.abs(s) / sd > settings.reachMaxSd) continue;
 		const cloud = carried();
 		// The success outside the region cannot exceed the hits.
 		if (cloud.hitShare < floor) continue;
 		if (settings.edgeMax !== null && cloud.edgeShare() > settings.edgeMax) continue;
 		const success = computeSuccess(ground, { w, carried: cloud }, ball);
-		if (success >= floor) return { s, z, hit: cloud.hitShare, success };
+		if (success >= floor) return { s, z, sd, hit: cloud.hitShare, success };
 	}
 	return null;
 }
@@ -125,13 +133,13 @@ function computeCover({ plus, minus }: PlacementGround, ball: Ball): number {
 }
 
 function judge(
-	{ settings, sdTangent }: PlacementGround,
+	{ settings }: PlacementGround,
 	found: { exits: readonly (Exit | null)[]; staySuccess: number; cover: number | null }
 ): { nearest: Exit | null; refusal: ShareRefusal | null } {
 	const refuse = (refusal: ShareRefusal) => ({ nearest: null, refusal });
 	if (found.staySuccess < settings.leakMin) return refuse('too-little-leaks');
 	const exits = found.exits.filter((exit) => exit !== null);
-	const reach = (exit: Exit) => Math.abs(exit.s) / sdTangent;
+	const reach = (exit: Exit) => Math.abs(exit.s) / exit.sd;
 	const [nearest] = exits
 		.filter((exit) => reach(exit) >= settings.reachMinSd && reach(exit) <= settings.reachMaxSd)
 		.sort((a, b) => Math.abs(a.s) - Math.abs(b.s) || b.success - a.success);

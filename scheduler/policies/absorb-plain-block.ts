@@ -2,6 +2,7 @@ import { computeCholesky, solveWithCholesky } from '../linear-algebra/cholesky.t
 import { crossProduct, scaleMatrix } from '../linear-algebra/matrix.ts';
 import { computeSymmetricEigen } from '../linear-algebra/symmetric-eigen.ts';
 import { dot, row, subtract, type Matrix, type Vector } from '../linear-algebra/vector.ts';
+import { computeFreeDirections } from '../tasks/free-directions.ts';
 import { computeTangent, projectToManifold } from '../tasks/project-to-manifold.ts';
 import type { ScaledTask } from '../tasks/scaled-task.ts';
 import { findLargerMode } from '../variability/bimodality.ts';
@@ -120,7 +121,10 @@ function findTangent(task: ScaledTask, whole: BlockSummary): Vector | null {
 	const nearest = hasVolume
 		? projectToManifold({ task, mean: whole.mean, covariance: whole.cov })
 		: null;
-	return computeTangent(task, nearest?.ok ? nearest.point : whole.mean);
+	const place = nearest?.ok ? nearest.point : whole.mean;
+	if (task.resultCount === 1) return computeTangent(task, place);
+	const isCurve = task.variableCount - task.resultCount === 1;
+	return isCurve ? (computeFreeDirections(task, place)?.[0] ?? null) : null;
 }
 
 interface GateStep {

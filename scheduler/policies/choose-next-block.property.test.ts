@@ -37,6 +37,12 @@ const REACH: TaskRecordInput = {
 	]
 };
 
+/** One result of four forces: three free directions, too many for a region. */
+const FOUR: TaskRecordInput = {
+	...{ type: 'linear', coef: [1, 1, 1, 1], target: 40, tolerance: 1, resultUnit: 'N' },
+	variables: ['a', 'b', 'c', 'd'].map((name) => variable(name, 4, 16))
+};
+
 function spread(record: TaskRecordInput, count: number): number[][] {
 	const { variables } = taskRecordSchema.parse(record);
 	return computeNormalPoints(count, variables.length).map((point) =>
@@ -97,9 +103,9 @@ describe('chooseNextBlock on any input', () => {
 	}, 60_000);
 
 	it('does not depend on how often it is asked', () => {
-		const first = decide({ last: { kind: 'practice', trials: spread(REACH, 60) } }, REACH);
+		const first = decide({ last: { kind: 'practice', trials: spread(FOUR, 60) } }, FOUR);
 		const asked = [1, 2, 3, 4, 5].reduce<Decision>(
-			(decision) => decide({ memory: decision.memory }, REACH),
+			(decision) => decide({ memory: decision.memory }, FOUR),
 			first
 		);
 		expect([asked.kind, asked.reasons[0]?.code]).toEqual([first.kind, first.reasons[0]?.code]);
@@ -108,14 +114,14 @@ describe('chooseNextBlock on any input', () => {
 	});
 
 	it('holds after three blocks in a row without a challenge', () => {
-		const record = { ...REACH };
+		const record = { ...FOUR };
 		const protocol = { ...QUICK, aims: { region: { share: 1, escapes: 1 } } };
 		let memory: PolicyMemory | undefined;
 		const codes = [1, 2, 3, 4].map(() => {
 			const decision = chooseNextBlock({
 				...{ protocol, task: record },
 				state: {
-					...{ day: 1, blockInDay: 1, last: { kind: 'practice', trials: spread(REACH, 60) } },
+					...{ day: 1, blockInDay: 1, last: { kind: 'practice', trials: spread(FOUR, 60) } },
 					...(memory ? { memory } : {})
 				}
 			});
@@ -126,9 +132,19 @@ describe('chooseNextBlock on any input', () => {
 	});
 });
 
-describe('tasks in which no region can be placed', () => {
-	it('says that the solutions have more than one direction and offers what is possible', () => {
+describe('tasks of several variables', () => {
+	it('works with two free directions: a region, a shift or a reason why not', () => {
 		const decision = runBlocks(REACH, 2, spread(REACH, 60));
+		expect(['region', 'shift', 'practice']).toContain(decision.kind);
+		expect(decision.facts.place?.length).toBeGreaterThan(0);
+		expect(decision.facts.geometry).toMatchObject({ alignmentDeg: expect.any(Number) });
+		expectSound(decision);
+	});
+});
+
+describe('tasks in which no region can be placed', () => {
+	it('says that the solutions have too many directions and offers what is possible', () => {
+		const decision = runBlocks(FOUR, 2, spread(FOUR, 60));
 		expect(decision.facts.aims?.refused.region).toBe('MORE-FREE-DIRECTIONS');
 		expect(decision.facts.geometry).toMatchObject({ sdTangent: null });
 		expect([decision.kind, decision.reasons[0]?.code]).toEqual(['shift', 'REGION-IMPOSSIBLE']);
@@ -136,19 +152,24 @@ describe('tasks in which no region can be placed', () => {
 	});
 
 	it('checks the gates without a tangent', () => {
-		const { facts } = runBlocks(REACH, 1, spread(REACH, 60));
+		const { facts } = runBlocks(FOUR, 1, spread(FOUR, 60));
 		expect(facts.gates?.codes).toEqual(['OK']);
 		expect(facts.gates?.splitD).toHaveLength(1);
 	});
 
-	it('practises when a task has two results', () => {
-		const task: Task = { ...createTask(PUCK_RECORD), resultCount: 2 };
+	it('practises when a task has as many results as variables', () => {
+		const puck = createTask(PUCK_RECORD);
+		const results = (x: readonly number[]) => [puck.evaluate(x), 0.001 * ((x[0] ?? 0) - 2.486)];
+		const jacobian = (x: readonly number[]) => [puck.gradient(x), [0.001, 0]];
+		const task: Task = { ...puck, resultCount: 2, results, jacobian };
 		const settings = policySettingsSchema.parse(QUICK);
 		const last = { kind: 'practice' as const, trials: spreadAlongManifold(60) };
 		const state = policyStateSchema.parse({ day: 1, blockInDay: 1, last });
 		const decision = chooseForTask({ state, settings, task });
 		expect([decision.kind, decision.reasons[0]?.code]).toEqual(['practice', 'NO-CHALLENGE']);
-		expect(decision.facts.aims?.refused).toEqual({ region: 'TWO-RESULTS', shift: 'TWO-RESULTS' });
+		expect(decision.facts.aims?.refused).toEqual({
+			...{ region: 'NO-FREE-DIRECTION', shift: 'TWO-RESULTS' }
+		});
 	});
 
 	it('works with a single variable', () => {

@@ -13,11 +13,13 @@ export const AIM_REFUSAL_WORDS: Readonly<Record<string, string>> = {
 	'TOO-FEW-PLAIN': 'Too few plain trials are known to say how much the result spreads.',
 	'NO-SPREAD': 'Every plain trial had the same result; there is no spread to measure steps in.',
 	'MORE-FREE-DIRECTIONS':
-		'The solutions of this task run in more than one direction; Ovalry cannot place a region for such a task yet.',
+		'The solutions of this task run in three or more directions; a region can be placed for one or two.',
 	'TWO-RESULTS':
-		'This task has more than one result; Ovalry cannot place a region or shift a target for such a task yet.',
+		'This task has more than one result, so there is no one line along which its target could be shifted.',
 	'NO-FREE-DIRECTION':
-		'This task has one variable and one result: there is no other solution to move to.',
+		'This task has as many results as variables: there is no other solution to move to.',
+	'SINGULAR-PLACE':
+		'Near the person’s own trials the results depend on each other, as in a stretched arm: there is no clear way along the solutions.',
 	'NO-SOLUTION-NEAR': 'No solution of the task is found near the person’s own trials.',
 	'SINGULAR-CLOUD': 'The person’s cloud is flat in one direction.'
 };

@@ -112,7 +112,7 @@ function place(
 	const rung = choice.rungs.at(-1);
 	if (!choice.ok || !rung) throw new Error('the front page’s thrower has no way out');
 	const { region, nearest } = choice;
-	return { region, nearest, rung, reachSd: Math.abs(nearest.s) / ground.sdTangent };
+	return { region, nearest, rung, reachSd: Math.abs(nearest.s) / nearest.sd };
 }
 
 function draw(found: {
