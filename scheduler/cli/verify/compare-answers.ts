@@ -1,4 +1,4 @@
-import { HOW_CHECKED, Judged } from './topic.ts';
+import { HOW_CHECKED, Judged, OneOf } from './topic.ts';
 
 export interface CaseTolerance {
 	readonly abs?: number | undefined;
@@ -33,6 +33,7 @@ export function compareAnswers(
 	path: readonly string[] = []
 ): Fault[] {
 	if (got === HOW_CHECKED) return [];
+	if (got instanceof OneOf) return compareOneOf(got, expected, toleranceAt, path);
 	if (got instanceof Judged) return compareJudged(got, expected, toleranceAt, path);
 	const tolerance = toleranceAt(path);
 	const fault = { path: writePath(path), got: got ?? null, expected, tolerance };
@@ -60,6 +61,17 @@ function compareUnwrapped(
 	if (Array.isArray(expected) && expected.length === 1 && typeof got !== 'object')
 		return compareAnswers(got, expected[0], toleranceAt, path);
 	return undefined;
+}
+
+/** No fault when one of the answers has none; else those of the first. */
+function compareOneOf(
+	{ values }: OneOf,
+	expected: unknown,
+	toleranceAt: ToleranceAt,
+	path: readonly string[]
+): Fault[] {
+	const found = values.map((value) => compareAnswers(value, expected, toleranceAt, path));
+	return found.find(({ length }) => length === 0) ?? found[0] ?? [];
 }
 
 function compareJudged(

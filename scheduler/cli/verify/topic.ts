@@ -43,6 +43,15 @@ export class Judged {
 	}
 }
 
+/** Several answers to inputs whose names leave open what they mean; one of them must be as expected. */
+export class OneOf {
+	readonly values: readonly unknown[];
+
+	constructor(...values: readonly unknown[]) {
+		this.values = values;
+	}
+}
+
 /** A topic for inputs of exactly these names; those with a default or optional may be missing. */
 export function forInputs<S extends z.ZodObject>(
 	schema: S,
