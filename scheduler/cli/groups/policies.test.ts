@@ -51,6 +51,18 @@ describe('policies on the command line', () => {
 		expect(runJson('replay', { stored, inputs })).toEqual({ equal: true, sameVersions: true });
 	});
 
+	it('simulates a study with the policy that would run it', { timeout: 30_000 }, () => {
+		const report = runJson('simulate-study', {
+			...{ task: PUCK_RECORD, days: 2, blocksPerDay: 3, seed: 4 },
+			protocol: { place: { pointCount: 128 } },
+			groups: [{ name: 'g', count: 2, traits: { motorAlong: 0.9, motorAcross: 0.35 } }]
+		});
+		expect(report).toMatchObject({
+			groups: [{ name: 'g', sequences: [expect.stringMatching(/^b/), expect.any(String)] }]
+		});
+		expect(report).not.toHaveProperty('people');
+	});
+
 	it('reads a policy for what speaks against it', () => {
 		expect(
 			runJson('check-policy', {

@@ -15,6 +15,7 @@ import { createScaledTask } from '../../tasks/scaled-task.ts';
 import { computeCovariance, computeMeanVector } from '../../variability/moments.ts';
 import { estimateLagOne } from '../../variability/serial-dependence.ts';
 import { command, type CommandGroup } from '../command.ts';
+import { describeStudy, studyInputSchema, studyOutputSchema } from '../describe-study.ts';
 import { pairPeople, yokeInputSchema, yokeOutputSchema } from '../pair-people.ts';
 import { runShift, shiftStepInputSchema, shiftStepOutputSchema } from '../run-shift.ts';
 import { readableTaskSchema, trialsInputSchema } from '../trial-inputs.ts';
@@ -111,6 +112,11 @@ export const POLICY_COMMANDS: CommandGroup = {
 		({ protocol, operatorsAreBlinded }) => ({
 			concerns: checkPolicy(protocol, { operatorsAreBlinded })
 		})
+	),
+	'simulate-study': command(
+		'A study of model learners under the policy that would run it, group by group',
+		{ input: studyInputSchema, output: studyOutputSchema },
+		(input) => describeStudy(input)
 	),
 	decide: command(
 		'The next block, with reasons, as a record to store',
