@@ -1,5 +1,6 @@
 import { z } from 'zod';
 import { createTask } from '../tasks/create-task.ts';
+import { computeCost } from '../tasks/task.ts';
 import { parseFormula } from '../tasks/formula/parse-formula.ts';
 import { taskRecordSchema } from '../tasks/task-record.ts';
 
@@ -35,7 +36,13 @@ export const outcomeSchema = z.strictObject({
 	meanAbsoluteResult: z.number().nullable(),
 	/** null: the task has no result there. */
 	results: z.array(z.number().nullable()),
-	hits: z.array(z.boolean())
+	hits: z.array(z.boolean()),
+	/** Size of the miss that people are shown, with the penalty where the task has one. */
+	costs: z.array(z.number().nullable()),
+	/** Each signed result; for one result as without a penalty. */
+	signed: z.array(z.array(z.number()).nullable()),
+	/** Why a trial has no valid outcome; null: it has one. */
+	invalid: z.array(z.string().nullable())
 });
 
 export type TrialsInput = z.output<typeof trialsInputSchema>;
@@ -54,6 +61,13 @@ export function computeOutcome({ task: record, trials }: TrialsInput) {
 		undefinedResultCount: trials.length - defined.length,
 		meanAbsoluteResult: defined.length > 0 ? total / defined.length : null,
 		results: results.map((result) => (Number.isFinite(result) ? result : null)),
-		hits
+		hits,
+		costs: trials.map((trial) => computeCost(task, trial)),
+		signed: trials.map((trial) => finiteOrNull(task.results(trial))),
+		invalid: trials.map((trial) => task.findInvalid(trial))
 	};
+}
+
+function finiteOrNull(values: number[]): number[] | null {
+	return values.every(Number.isFinite) ? values : null;
 }

@@ -1,4 +1,11 @@
 import { command, type CommandGroup } from '../command.ts';
+import { describeJacobians, jacobianSchema } from '../tasks/describe-jacobian.ts';
+import {
+	describeManifold,
+	manifoldInputSchema,
+	manifoldSchema
+} from '../tasks/describe-manifold.ts';
+import { mapTransport, transportInputSchema, transportSchema } from '../tasks/map-transport.ts';
 import { computeOutcome, outcomeSchema, trialsInputSchema } from '../trial-inputs.ts';
 
 /** Task models on the command line. */
@@ -7,5 +14,20 @@ export const TASK_COMMANDS: CommandGroup = {
 		'Result and hit of each trial',
 		{ input: trialsInputSchema, output: outcomeSchema },
 		computeOutcome
+	),
+	jacobian: command(
+		'Slopes of the results at each trial, and what leaves them unchanged',
+		{ input: trialsInputSchema, output: jacobianSchema },
+		describeJacobians
+	),
+	manifold: command(
+		'All executions that solve a task, by arc length',
+		{ input: manifoldInputSchema, output: manifoldSchema },
+		describeManifold
+	),
+	'transport-map': command(
+		'Effort, smoothness and predictability of moving a cart with a pendulum',
+		{ input: transportInputSchema, output: transportSchema },
+		mapTransport
 	)
 };

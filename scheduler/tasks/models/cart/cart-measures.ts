@@ -23,18 +23,40 @@ export interface CartMeasures {
  * Source:  method sheet A8; cases cart-1, -3, -6 (mean_square_force_0_3s), 1e-5 relative.
  */
 export function measureCart(shape: CartShape, start: CartStart, seconds: number): CartMeasures {
-	const count = 2 * Math.max(1, Math.round(seconds / INTERVAL_INTEGRATED / 2)) + 1;
-	const interval = seconds / (count - 1);
-	let [effort, cart, bob] = [0, 0, 0];
+	const [measures] = measureWindows(shape, start, { seconds, windows: 1 });
+	if (!measures) throw new RangeError('measureCart requires a time');
+	return measures;
+}
+
+/** The same in windows one after another; one transport, of `windows` times `seconds`. */
+export function measureWindows(
+	shape: CartShape,
+	start: CartStart,
+	{ seconds, windows }: { seconds: number; windows: number }
+): CartMeasures[] {
+	const pieces = 2 * Math.max(1, Math.round(seconds / INTERVAL_INTEGRATED / 2));
+	const interval = seconds / pieces;
+	const sums = Array.from({ length: windows }, () => ({ effort: 0, cartJerk: 0, bobJerk: 0 }));
 	let i = 0;
-	for (const { force, cartJerk, bobJerk } of sampleCart(shape, start, { interval, count })) {
-		const weight = (i === 0 || i === count - 1 ? 1 : i % 2 === 1 ? 4 : 2) / (3 * (count - 1));
-		effort += weight * force ** 2;
-		cart += weight * cartJerk ** 2;
-		bob += weight * bobJerk ** 2;
+	for (const sample of sampleCart(shape, start, { interval, count: pieces * windows + 1 })) {
+		const [k, at] = [Math.floor(i / pieces), i % pieces];
+		// The sample between two windows belongs to both.
+		if (at === 0 && k > 0) addWeighted(sums[k - 1], sample, 1 / (3 * pieces));
+		addWeighted(sums[k], sample, (at === 0 ? 1 : at % 2 === 1 ? 4 : 2) / (3 * pieces));
 		i++;
 	}
-	return { effort, cartJerk: cart, bobJerk: bob };
+	return sums;
+}
+
+function addWeighted(
+	sums: { effort: number; cartJerk: number; bobJerk: number } | undefined,
+	{ force, cartJerk, bobJerk }: CartSample,
+	weight: number
+): void {
+	if (!sums) return;
+	sums.effort += weight * force * force;
+	sums.cartJerk += weight * cartJerk * cartJerk;
+	sums.bobJerk += weight * bobJerk * bobJerk;
 }
 
 /**

@@ -35,36 +35,37 @@ export function* sampleCart(
 	start: CartStart,
 	{ interval, count, stepsEach = 1 }: { interval: number; count: number; stepsEach?: number }
 ): Generator<CartSample> {
-	let state: PendulumState = { theta: start.theta, omega: start.omega };
+	const { amplitude } = start;
+	const state = { theta: start.theta, omega: start.omega };
 	const step = interval / stepsEach;
 	for (let i = 0; i < count; i++) {
-		yield describe(shape, start.amplitude, state, i * interval);
+		yield describe(shape, amplitude, state, i * interval);
 		for (let k = 0; k < stepsEach; k++)
-			state = advance(shape, start.amplitude, state, i * interval + k * step, step);
+			advance(shape, amplitude, state, i * interval + k * step, step);
 	}
 }
 
-/** One Runge-Kutta step. */
+/** One Runge-Kutta step, in place: a map of transports takes millions of them. */
 function advance(
 	shape: CartShape,
 	amplitude: number,
-	{ theta, omega }: PendulumState,
+	state: { theta: number; omega: number },
 	time: number,
 	h: number
-): PendulumState {
-	const pull = (t: number, angle: number, rate: number) =>
-		computeAngularAcceleration(shape, cartAcceleration(shape, amplitude, t), angle, rate);
-	const a1 = pull(time, theta, omega);
+): void {
+	const { theta, omega } = state;
+	const begin = cartAcceleration(shape, amplitude, time);
+	const middle = cartAcceleration(shape, amplitude, time + h / 2);
+	const end = cartAcceleration(shape, amplitude, time + h);
+	const a1 = computeAngularAcceleration(shape, begin, theta, omega);
 	const w2 = omega + (h / 2) * a1;
-	const a2 = pull(time + h / 2, theta + (h / 2) * omega, w2);
+	const a2 = computeAngularAcceleration(shape, middle, theta + (h / 2) * omega, w2);
 	const w3 = omega + (h / 2) * a2;
-	const a3 = pull(time + h / 2, theta + (h / 2) * w2, w3);
+	const a3 = computeAngularAcceleration(shape, middle, theta + (h / 2) * w2, w3);
 	const w4 = omega + h * a3;
-	const a4 = pull(time + h, theta + h * w3, w4);
-	return {
-		theta: theta + (h / 6) * (omega + 2 * w2 + 2 * w3 + w4),
-		omega: omega + (h / 6) * (a1 + 2 * a2 + 2 * a3 + a4)
-	};
+	const a4 = computeAngularAcceleration(shape, end, theta + h * w3, w4);
+	state.theta = theta + (h / 6) * (omega + 2 * w2 + 2 * w3 + w4);
+	state.omega = omega + (h / 6) * (a1 + 2 * a2 + 2 * a3 + a4);
 }
 
 function cartAcceleration({ frequency }: CartShape, amplitude: number, time: number): number {
@@ -100,5 +101,6 @@ function describe(
 		(cartMass + bobMass) * acceleration + bobMass * length * (alpha * cos - omega ** 2 * sin);
 	const jerkX = cartJerk + length * (change * cos - 3 * alpha * omega * sin - omega ** 3 * cos);
 	const jerkY = length * (change * sin + 3 * alpha * omega * cos - omega ** 3 * sin);
-	return { ...{ time, theta, omega, force, cartJerk }, bobJerk: Math.hypot(jerkX, jerkY) };
+	const bobJerk = Math.sqrt(jerkX * jerkX + jerkY * jerkY);
+	return { time, theta, omega, force, cartJerk, bobJerk };
 }

@@ -1,5 +1,7 @@
 import {
 	computeSwingWeights,
+	placeAt,
+	velocityAt,
 	type Launch,
 	type Place,
 	type SwingWeights,
@@ -16,22 +18,25 @@ export interface NearestPass {
 export interface SwingTable {
 	readonly swing: TetherSwing;
 	readonly interval: number;
-	readonly weights: readonly SwingWeights[];
+	/** c, s, dc, ds at each time, one after another. */
+	readonly weights: Float64Array;
 }
 
 /** Intervals of one turn. Two extremes inside one interval would differ by less than 1e-7 of the orbit. */
 const INTERVALS_PER_TURN = 128;
 const ROUNDS_MAX = 60;
-/** Relative error of a time at which Newton's steps end. */
-const TIME_DONE = 1e-15;
+/** Error of a time at which Newton's steps end, s; the distance there is off by its square. */
+const TIME_DONE = 1e-13;
 
 export function createSwingTable(swing: TetherSwing): SwingTable {
 	const turns = (swing.window * swing.omega0) / (2 * Math.PI);
 	const count = Math.max(16, Math.ceil(INTERVALS_PER_TURN * turns));
 	const interval = swing.window / count;
-	const weights = Array.from({ length: count + 1 }, (_, i) =>
-		computeSwingWeights(swing, i * interval)
-	);
+	const weights = new Float64Array(4 * (count + 1));
+	for (let i = 0; i <= count; i++) {
+		const { c, s, dc, ds } = computeSwingWeights(swing, i * interval);
+		weights.set([c, s, dc, ds], 4 * i);
+	}
 	return { swing, interval, weights };
 }
 
@@ -52,27 +57,51 @@ export function findNearestPass(
 	end: number = swing.window
 ): NearestPass {
 	const sag = (computeBend(swing, launch, point) * interval ** 2) / 8;
-	let best: NearestPass = { time: 0, squared: Number.POSITIVE_INFINITY };
-	const valleys: { time: number; floor: number }[] = [];
-	let before: Approach | null = null;
-	for (let i = 0; i < weights.length; i++) {
-		const at = weights[i];
-		const time = i * interval;
-		if (!at || time > end) break;
-		const here = measureApproach(launch, point, at);
-		if (here.squared < best.squared) best = { time, squared: here.squared };
-		if (before && before.rate < 0 && here.rate > 0)
-			valleys.push({
-				time: time - interval,
-				floor: Math.min(before.squared, here.squared) - sag
-			});
-		before = here;
+	const x0 = launch.place[0];
+	const y0 = launch.place[1];
+	const u0 = launch.velocity[0];
+	const v0 = launch.velocity[1];
+	const count = Math.min(weights.length / 4, Math.floor(end / interval) + 1);
+	let bestTime = 0;
+	let best = Number.POSITIVE_INFINITY;
+	const valleys: Valley[] = [];
+	let squaredBefore = 0;
+	let rateBefore = 0;
+	// Plain numbers only: this runs for every execution that is looked at.
+	for (let i = 0; i < count; i++) {
+		const c = weights[4 * i] ?? 0;
+		const s = weights[4 * i + 1] ?? 0;
+		const x = c * x0 + s * u0 - point[0];
+		const y = c * y0 + s * v0 - point[1];
+		const dc = weights[4 * i + 2] ?? 0;
+		const ds = weights[4 * i + 3] ?? 0;
+		const squared = x * x + y * y;
+		const rate = x * (dc * x0 + ds * u0) + y * (dc * y0 + ds * v0);
+		if (squared < best) {
+			best = squared;
+			bestTime = i * interval;
+		}
+		if (rateBefore < 0 && rate > 0) {
+			const floor = Math.min(squaredBefore, squared) - sag;
+			valleys.push({ from: (i - 1) * interval, to: i * interval, floor });
+		}
+		squaredBefore = squared;
+		rateBefore = rate;
 	}
-	best = nearer(best, measureAt(swing, launch, point, end));
-	for (const { time, floor } of valleys)
-		if (floor < best.squared)
-			best = nearer(best, descend({ swing, launch, point }, time, Math.min(time + interval, end)));
-	return best;
+	const last = (count - 1) * interval;
+	if (last < end) valleys.push({ from: last, to: end, floor: Number.NEGATIVE_INFINITY });
+	let nearest: NearestPass = { time: bestTime, squared: best };
+	for (const { from, to, floor } of valleys)
+		if (floor < nearest.squared)
+			nearest = nearer(nearest, descend({ swing, launch, point }, from, to));
+	return nearest;
+}
+
+interface Valley {
+	readonly from: number;
+	readonly to: number;
+	/** No distance in it is smaller, squared. */
+	readonly floor: number;
 }
 
 /** First time at which the ball is nearer to a point than a radius; null: never up to the end. */
@@ -155,7 +184,7 @@ function descend(
 		const step = rate / computeRateSlope({ swing, launch, point }, time);
 		const newton = time - step;
 		const next = newton > low && newton < high ? newton : (low + high) / 2;
-		const isDone = Math.abs(next - time) <= TIME_DONE * Math.max(1, time);
+		const isDone = Math.abs(next - time) <= TIME_DONE;
 		time = next;
 		if (isDone) break;
 	}
@@ -167,12 +196,11 @@ function computeRateSlope(
 	{ swing, launch, point }: { swing: TetherSwing; launch: Launch; point: Place },
 	time: number
 ): number {
-	const { omega0, gamma } = swing;
 	const at = computeSwingWeights(swing, time);
-	return [0, 1].reduce((sum, axis) => {
-		const [r, v] = [launch.place[axis] ?? 0, launch.velocity[axis] ?? 0];
-		const [place, velocity] = [at.c * r + at.s * v, at.dc * r + at.ds * v];
-		const pull = -(omega0 ** 2) * place - 2 * gamma * velocity;
-		return sum + velocity ** 2 + (place - (point[axis] ?? 0)) * pull;
-	}, 0);
+	const [x, y] = placeAt(launch, at);
+	const [vx, vy] = velocityAt(launch, at);
+	const stiffness = swing.omega0 ** 2;
+	const pullX = -stiffness * x - 2 * swing.gamma * vx;
+	const pullY = -stiffness * y - 2 * swing.gamma * vy;
+	return vx * vx + vy * vy + (x - point[0]) * pullX + (y - point[1]) * pullY;
 }

@@ -78,7 +78,7 @@ export function createTetheredBall(record: TetheredBallRecord): ResultModel {
 	const cutAtPost = (pass: TetherPass): TetherPass => {
 		if (pass.postTime === null) return pass;
 		const { time, squared } = findNearestPass(table, pass.launch, record.target, pass.postTime);
-		const signed = computeSigned(record, table, pass.launch, time);
+		const signed = computeSigned(record, table, pass.launch, time, pass.postTime);
 		return { ...pass, time, distance: Math.sqrt(squared), signed };
 	};
 	const gradient = (x: Vector) =>
@@ -106,7 +106,8 @@ function computeSigned(
 	{ target }: TetheredBallRecord,
 	{ swing }: SwingTable,
 	launch: Launch,
-	time: number
+	time: number,
+	end: number = swing.window
 ): number {
 	const at = computeSwingWeights(swing, time);
 	const [x, y] = placeAt(launch, at);
@@ -114,6 +115,8 @@ function computeSigned(
 	const rest = REST_SHARE * swing.omega0 * Math.hypot(launch.place[0], launch.place[1]);
 	if (!(Math.hypot(vx, vy) > rest)) return Number.NaN;
 	const side = vx * (y - target[1]) - vy * (x - target[0]);
+	const isTurning = time > 0 && time < end;
+	if (isTurning) return side / Math.hypot(vx, vy);
 	return Math.sign(side) * Math.hypot(x - target[0], y - target[1]);
 }
 
