@@ -2,8 +2,10 @@ import { describe, expect, it } from 'vitest';
 import { determinantFromCholesky, computeCholesky } from '../linear-algebra/cholesky.ts';
 import { multiplyMatrices, transpose } from '../linear-algebra/matrix.ts';
 import { add, multiplyVector } from '../linear-algebra/vector.ts';
-import { estimateMcd, findMcdSubset } from './estimate-mcd.ts';
+import { estimateMcd } from './estimate-mcd.ts';
+import { findMcdSubset } from './search-mcd-subset.ts';
 import { estimateOgk } from './estimate-ogk.ts';
+import { flagOutliers } from './flag-outliers.ts';
 import { computeSubsetSize, countSubsets, findNextSubset } from './mcd-factors.ts';
 import { tiltedTrials } from '../../tests/support/variability/any-trials.ts';
 import { shrinkCovariance, shrinkCovarianceOracle } from './shrink-covariance.ts';
@@ -62,6 +64,21 @@ describe('estimateMcd', () => {
 	it('says so when half of the trials lie on one line', () => {
 		const flat = trials.map(([x = 0, y = 0], i) => (i < 30 ? [x, 2 * x] : [x, y]));
 		expect(estimateMcd(flat)).toEqual({ ok: false, reason: 'singular-covariance' });
+	});
+
+	it('says so when the small-sample factors do not hold for so few trials', () => {
+		const few = tiltedTrials(6);
+		expect(estimateMcd(few)).toEqual({ ok: false, reason: 'few-trials' });
+		expect(estimateMcd(few, { isSmallSampleCorrected: false }).ok).toBe(true);
+	});
+
+	it('flags the strays and hardly any other trial', () => {
+		const cloud = estimateMcd(trials);
+		if (!cloud.ok) throw new Error(cloud.reason);
+		const { mean: center, covariance } = cloud;
+		const flags = flagOutliers({ executions: trials, center, covariance });
+		expect(strays.every((i) => flags.ok && flags.isOutlier[i])).toBe(true);
+		expect(flags.ok && flags.isOutlier.filter(Boolean).length).toBeLessThanOrEqual(12);
 	});
 
 	it('refuses too few trials', () => {

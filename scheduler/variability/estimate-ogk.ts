@@ -12,6 +12,7 @@ import {
 	type Vector
 } from '../linear-algebra/vector.ts';
 import { computeChiSquareQuantile } from '../statistics/chi-square.ts';
+import { computeConsistencyFactor } from './mcd-factors.ts';
 import { computeMeanVector, computeMedian } from './moments.ts';
 import { estimateTau } from './scale-estimates.ts';
 
@@ -22,6 +23,8 @@ export type OgkCloud =
 			mean: number[];
 			covariance: number[][];
 			kept: boolean[];
+			/** Makes the covariance of the kept trials that of all under the normal distribution. */
+			consistency: number;
 			/** Center and covariance before trials are left out. */
 			rawMean: number[];
 			rawCovariance: number[][];
@@ -38,7 +41,8 @@ const ROUNDS = 2;
  * Method:  tau scales of sums and differences of each pair of variables, eigenvectors of the result, two
  *          rounds; trials within the .9 quantile of χ²(d), rescaled by the median distance, are kept.
  * Source:  Maronna & Zamar 2002, Technometrics 44:307; method sheet B3 (iii); case ogk-hbk (R robustbase
- *          covOGK with scaleTau2). Accuracy: relative 1e-6 of the case.
+ *          covOGK with scaleTau2), whose covariance is that of the kept trials: multiply by the
+ *          consistency factor before an ellipsoid is drawn. Accuracy: relative 1e-6 of the case.
  * @throws {RangeError} fewer than two variables
  */
 export function estimateOgk(
@@ -79,8 +83,9 @@ export function estimateOgk(
 	);
 	const used = executions.filter((_, i) => kept[i]);
 	const mean = computeMeanVector(used);
+	const consistency = computeConsistencyFactor(used.length / executions.length, d);
 	return {
-		...{ ok: true, mean, covariance: computeCovarianceAround(used, mean), kept },
+		...{ ok: true, mean, covariance: computeCovarianceAround(used, mean), kept, consistency },
 		...{ rawMean: raw.mean, rawCovariance: raw.covariance }
 	};
 }

@@ -71,10 +71,19 @@ export function computeConsistencyFactor(share: number, variableCount: number): 
 	return share / computeChiSquareCdf(cut, variableCount + 2);
 }
 
+/** Counts of trials, by variables, up to which the fits of the small-sample factors do not hold. */
+const TRIALS_BELOW_FITS = [2, 6, 10, 13, 16, 18, 20, 20, 20];
+
+/** Whether the small-sample factors hold for so many trials of so many variables. */
+export function hasSmallSampleFactor(trialCount: number, variableCount: number): boolean {
+	return trialCount > (TRIALS_BELOW_FITS[variableCount - 1] ?? 2 * variableCount + 2);
+}
+
 /**
  * Factor that takes away the small-sample bias of the minimum covariance determinant.
  *
  * Method:  fits of simulations in n and d, straight lines in the share between .5, .875 and 1.
+ *          Where {@link hasSmallSampleFactor} is false they give nonsense.
  * Source:  Pison, Van Aelst & Willems 2002, Metrika 55:111, as used by R robustbase 0.95; case mcd-hbk.
  * @throws {RangeError} share outside .5 to 1
  */

@@ -114,7 +114,11 @@ describe('the engine', () => {
 			'simulation'
 		],
 		allocation: ['random'],
-		booking: ['random']
+		booking: ['random'],
+		calibration: [
+			...['random', 'linear-algebra', 'statistics', 'tasks', 'variability', 'perturbations'],
+			...['policies', 'learners', 'analysis', 'simulation', 'power', 'allocation']
+		]
 	};
 
 	test('has parts that import only the parts before them', () => {

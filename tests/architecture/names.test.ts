@@ -11,7 +11,7 @@ const lineCount = (file: string) => readText(file).split('\n').length - 1;
 
 test('a file is named in kebab-case, a component in PascalCase', () => {
 	const kebab =
-		/^[a-z0-9]+(-[a-z0-9]+)*(\.(test|property\.test|test-data|server|d|config|svelte))?$/;
+		/^[a-z0-9]+(-[a-z0-9]+)*(\.(test|property\.test|test-data|bench|server|d|config|svelte))?$/;
 	const pascal = /^[A-Z][A-Za-z0-9]*$/;
 	const route = /^\+(page|layout|server|error)(@[^.]*)?(\.server)?$/;
 	const faults = files.filter((file) => {

@@ -1,5 +1,5 @@
 import { z } from 'zod';
-import { multiplyMatrices, diagonal } from '../../linear-algebra/matrix.ts';
+import { diagonal, multiplyMatrices, scaleMatrix } from '../../linear-algebra/matrix.ts';
 import type { Matrix, Vector } from '../../linear-algebra/vector.ts';
 import type { ScaledTask } from '../../tasks/scaled-task.ts';
 import { estimateMcd } from '../../variability/estimate-mcd.ts';
@@ -81,8 +81,11 @@ function estimate(task: ScaledTask, executions: Matrix, request: EstimateRequest
 			return estimateMcd(executions, {
 				...{ share: request.share, startCount: request.starts, seed: request.seed }
 			});
-		case 'ogk':
-			return estimateOgk(executions);
+		case 'ogk': {
+			const cloud = estimateOgk(executions);
+			if (!cloud.ok) return cloud;
+			return { ...cloud, covariance: scaleMatrix(cloud.covariance, cloud.consistency) };
+		}
 		case 'ledoit-wolf':
 			return { ok: true, mean, covariance: shrinkCovariance(executions).covariance };
 		case 'prior':

@@ -1,6 +1,7 @@
 import { z } from 'zod';
 import { transpose } from '../../../../linear-algebra/matrix.ts';
-import { estimateMcd, findMcdSubset } from '../../../../variability/estimate-mcd.ts';
+import { estimateMcd } from '../../../../variability/estimate-mcd.ts';
+import { findMcdSubset } from '../../../../variability/search-mcd-subset.ts';
 import { estimateOgk } from '../../../../variability/estimate-ogk.ts';
 import { computeMedian } from '../../../../variability/moments.ts';
 import { poolWithPrior } from '../../../../variability/pool-covariance.ts';
@@ -56,13 +57,14 @@ export const ESTIMATE_TOPICS: TopicGroup = {
 				...trialNames,
 				alpha: z.number().min(0.5).max(1),
 				h: z.number().optional(),
-				reweight_quantile: share.default(0.975)
+				reweight_quantile: share
 			}),
 			({ alpha, h, reweight_quantile, ...inputs }, datasets) =>
 				describeMcd(readTrials(inputs, datasets), alpha, h, reweight_quantile)
 		),
-		forInputs(z.strictObject({ ...trialNames, h: z.number() }), ({ h, ...inputs }, datasets) =>
-			describeSubset(readTrials(inputs, datasets), h)
+		forInputs(
+			z.strictObject({ ...trialNames, h: z.number(), alpha: z.number().optional() }),
+			({ h, ...inputs }, datasets) => describeSubset(readTrials(inputs, datasets), h)
 		),
 		forInputs(
 			z.strictObject({

@@ -1,5 +1,6 @@
 import { z } from 'zod';
 import { multiplyVector, type Matrix } from '../../../../linear-algebra/vector.ts';
+import { splitRowSpace } from '../../../../linear-algebra/row-space.ts';
 import { computeSymmetricEigen } from '../../../../linear-algebra/symmetric-eigen.ts';
 import { computeArmPosture } from '../../../../tasks/models/arm.ts';
 import { computeCloudAlignment } from '../../../../variability/cloud-alignment.ts';
@@ -29,6 +30,7 @@ import { firstOf, forInputs, Judged, listSchema, repeat, type TopicGroup } from 
 import { matrix, numbers, readTrials, requireOk, trialNames } from './case-inputs.ts';
 
 const divisor = z.literal('n-1').default('n-1');
+const withScales = { divisor, scales: numbers.optional() };
 const level = z.number().gt(0).lt(1);
 const kinds = z.enum(['coverage chi-square', 'mean (Hotelling)', 'next trial', 'unit sigma']);
 
@@ -96,9 +98,29 @@ export const STRUCTURE_TOPICS: TopicGroup = {
 			aspect_ratio: found.aspectRatio
 		};
 	}),
-	gem: forInputs(
-		z.strictObject({ ...trialNames, J: matrix, divisor, scales: numbers.optional() }),
-		({ J, scales, ...inputs }, datasets) => describeGoal(readTrials(inputs, datasets), J, scales)
+	gem: firstOf(
+		forInputs(
+			z.strictObject({ ...trialNames, J: matrix, divisor, scales: numbers.optional() }),
+			({ J, scales, ...inputs }, datasets) => {
+				const trials = readTrials(inputs, datasets);
+				return { ...describeGoal(trials, J), ...describeSeries(trials, J, scales) };
+			}
+		),
+		forInputs(
+			z.strictObject({
+				...trialNames,
+				normal: numbers,
+				tangent: numbers.optional(),
+				...withScales
+			}),
+			({ normal, scales, ...inputs }, datasets) =>
+				describeSeries(readTrials(inputs, datasets), [normal], scales)
+		),
+		forInputs(
+			z.strictObject({ ...trialNames, tangent: numbers, ...withScales }),
+			({ tangent, scales, ...inputs }, datasets) =>
+				describeSeries(readTrials(inputs, datasets), splitRowSpace([tangent]).complement, scales)
+		)
 	)
 };
 
@@ -142,22 +164,36 @@ function describeManifold(trials: number[][], J: Matrix) {
 	};
 }
 
-function describeGoal(trials: number[][], J: number[][], scales: number[] | undefined) {
+function describeGoal(trials: number[][], J: Matrix) {
 	const found = requireOk(computeGoalSensitivity(computeCovariance(trials), J));
 	const results = trials.map((trial) => multiplyVector(J, trial)[0] ?? 0);
-	const series = splitGoalSeries(trials, computeMeanVector(trials), J);
-	const [along, across] = [series.along[0] ?? [], series.across[0] ?? []];
 	return {
 		...{ goal_sd: found.goalSd, goal_cov: found.goalCovariance },
 		goal_sd_from_results: computeStandardDeviation(results),
 		singular_value: found.singularValues[0],
 		singular_values: found.singularValues,
 		...{ body_sd_normal: found.acrossSd, body_sd_total: found.totalSd },
-		alignment_factor: found.alignmentFactor,
-		lag1_T: valueOf(computeLagOne(along)),
-		lag1_P: valueOf(computeLagOne(across)),
-		dfa_T: valueOf(computeFluctuationExponent(along, scales)),
-		dfa_P: valueOf(computeFluctuationExponent(across, scales))
+		alignment_factor: found.alignmentFactor
+	};
+}
+
+/** Series along (T) and across (P) the solutions, each with the names that cases use for it. */
+function describeSeries(trials: number[][], J: Matrix, scales: number[] | undefined) {
+	const { along, across } = splitGoalSeries(trials, computeMeanVector(trials), J);
+	const [T, P] = [describeOne(along[0] ?? [], scales), describeOne(across[0] ?? [], scales)];
+	return {
+		...{ lag1_T: T.lag1, lag1_P: P.lag1, dfa_T: T.dfa, dfa_P: P.dfa },
+		...{ lag1_delta_T: T.lag1, lag1_delta_P: P.lag1, dfa_delta_T: T.dfa, dfa_delta_P: P.dfa },
+		...{ lag1_tangent: T.lag1, lag1_normal: P.lag1, dfa_tangent: T.dfa, dfa_normal: P.dfa },
+		...{ sd_T: T.sd, sd_P: P.sd }
+	};
+}
+
+function describeOne(series: readonly number[], scales: number[] | undefined) {
+	return {
+		lag1: valueOf(computeLagOne(series)),
+		dfa: valueOf(computeFluctuationExponent(series, scales)),
+		sd: computeStandardDeviation(series)
 	};
 }
 
