@@ -13,6 +13,8 @@ export interface Command {
 	readonly input: z.ZodType;
 	/** The shape of the answer, as `--schema` prints it. */
 	readonly output: z.ZodType;
+	/** What `--help` says beyond the line of the command. */
+	readonly help?: () => string;
 	/** Prints the answer; JSON when there is nothing to say about it. */
 	readonly report?: (answer: unknown) => Report;
 	/** @throws {ZodError} an input that does not fit */
@@ -36,10 +38,11 @@ export function reportingCommand<I extends z.ZodType, A>(
 	about: string,
 	{ input, output }: { input: I; output: z.ZodType<A> },
 	run: (input: z.output<I>) => A,
-	report: (answer: A) => Report
+	{ report, help }: { report: (answer: A) => Report; help: () => string }
 ): Command {
 	return {
 		...command(about, { input, output }, run),
+		help,
 		report: (answer) => report(output.parse(answer))
 	};
 }

@@ -30,7 +30,7 @@ export function runCommand(words: readonly string[], readInput: () => string): A
 	const found = Object.hasOwn(COMMANDS, name) ? COMMANDS[name] : undefined;
 	if (!found) return mistake(`there is no command “${name}”; see --help`);
 	if (options.includes('--schema')) return done(print(describeShapes(found)));
-	if (options.includes('--help')) return done(`${name}: ${found.about}\n`);
+	if (options.includes('--help')) return done(`${name}: ${found.about}\n${found.help?.() ?? ''}`);
 	const [unknown] = options;
 	if (unknown) return mistake(`${name} does not know the option “${unknown}”; see --help`);
 	return runOn(readInput(), found);

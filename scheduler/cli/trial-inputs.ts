@@ -59,7 +59,8 @@ export function computeOutcome({ task: record, trials }: TrialsInput) {
 		trialCount: trials.length,
 		hitCount: hits.filter(Boolean).length,
 		undefinedResultCount: trials.length - defined.length,
-		meanAbsoluteResult: defined.length > 0 ? total / defined.length : null,
+		meanAbsoluteResult:
+			defined.length > 0 && Number.isFinite(total) ? total / defined.length : null,
 		results: results.map((result) => (Number.isFinite(result) ? result : null)),
 		hits,
 		costs: trials.map((trial) => computeCost(task, trial)),

@@ -1,6 +1,9 @@
-import { describe, it } from 'vitest';
+import { describe, expect, it } from 'vitest';
 import { z } from 'zod';
 import { createTask } from '../../scheduler/tasks/create-task.ts';
+import { computeSteadyBounce } from '../../scheduler/tasks/models/paddle-stability.ts';
+import { computeTetherAlignment } from '../../scheduler/tasks/models/tether/tether-facts.ts';
+import { tetheredBallRecordSchema } from '../../scheduler/tasks/models/tether/tether-record.ts';
 import { taskRecordSchema } from '../../scheduler/tasks/task-record.ts';
 import { findCase, numbers } from './reference-values.ts';
 import { expectNumbers } from './expect-numbers.ts';
@@ -40,6 +43,34 @@ describe('task models', () => {
 		);
 		const at = [Number(expected['v_min']), Number(expected['theta_at_v_min_deg'])];
 		expectNumbers([task.evaluate(at), task.gradient(at)[1]], [0, 0], { abs: 1e-8 });
+	});
+
+	it('has the alignment numbers of the sheet, section A1', () => {
+		const published = { k: 1, m: 0.1, relaxationTime: 20, arm: 0.4, pivot: [0, -1.5] };
+		const both = [{ ...published, target: [0.05, 1.055] }, {}].map((model) => {
+			const record = tetheredBallRecordSchema.parse({ type: 'tethered-ball', ...model });
+			return computeTetherAlignment(record);
+		});
+		expectNumbers(
+			both.map(({ number }) => number),
+			[0.3948, 0.428],
+			{ abs: 5e-4 }
+		);
+		expect(both.map(({ freeAngleDeg }) => freeAngleDeg)).toEqual([null, null]);
+	});
+
+	it('finds the steady bounce to be the fixed point of one bounce', () => {
+		const bouncing = { restitution: 0.5, g: 9.81 };
+		const steady = computeSteadyBounce(bouncing, { apex: 0.6, impactHeight: 0.1 });
+		if (!steady.ok) throw new RangeError(steady.reason);
+		const record = taskRecordSchema.parse({
+			...{ type: 'paddle-bounce', ...bouncing, targetHeight: 0.6, impactHeight: 0.1 }
+		});
+		const miss = createTask(record).evaluate([steady.ballSpeed, steady.paddleSpeed]);
+		expectNumbers(miss, 0, { abs: 1e-12 });
+		// Up and down at the speed of the apex: v² = 2·g·0.5.
+		expectNumbers(steady.ballSpeed, -Math.sqrt(9.81), { abs: 1e-12 });
+		expectNumbers(steady.period, 2 / Math.sqrt(9.81), { abs: 1e-12 });
 	});
 
 	it('gives a formula its value and exact gradient', () => {

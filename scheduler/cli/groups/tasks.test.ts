@@ -94,6 +94,17 @@ describe('task models on the command line', () => {
 		});
 	});
 
+	it('says how bouncing stays steady', () => {
+		const input = { restitution: 0.5, apex: 0.6, accelerations: [-2, 1] };
+		expect(run('bouncing', input)).toMatchObject({
+			...{ stable: [-10.9, 0], accelerations: [{ isStable: true }, { isStable: false }] },
+			steady: { ok: true }
+		});
+		expect(run('bouncing', { apex: 0, impactHeight: 0.2 })).toMatchObject({
+			steady: { ok: false, reason: 'apex-below-paddle' }
+		});
+	});
+
 	it('maps the transport of a cart', { timeout: 30_000 }, () => {
 		const range = { count: 2 };
 		const input = {

@@ -1,4 +1,9 @@
 import { command, type CommandGroup } from '../command.ts';
+import {
+	bouncingInputSchema,
+	bouncingSchema,
+	describeBouncing
+} from '../tasks/describe-bouncing.ts';
 import { describeJacobians, jacobianSchema } from '../tasks/describe-jacobian.ts';
 import {
 	describeManifold,
@@ -24,6 +29,11 @@ export const TASK_COMMANDS: CommandGroup = {
 		'All executions that solve a task, by arc length',
 		{ input: manifoldInputSchema, output: manifoldSchema },
 		describeManifold
+	),
+	bouncing: command(
+		'Steady bouncing of a ball on a paddle, and whether errors die out',
+		{ input: bouncingInputSchema, output: bouncingSchema },
+		describeBouncing
 	),
 	'transport-map': command(
 		'Effort, smoothness and predictability of moving a cart with a pendulum',

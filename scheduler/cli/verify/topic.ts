@@ -16,7 +16,11 @@ export type Answers = Readonly<Record<string, unknown>>;
  *
  * @throws {RangeError | ZodError} inputs of the right names whose values cannot be computed with
  */
-export type Topic = (inputs: Inputs, datasets: Datasets) => Answers | undefined;
+export interface Topic {
+	(inputs: Inputs, datasets: Datasets): Answers | undefined;
+	/** Names of the inputs of each kind of case, those that may be missing in brackets. */
+	readonly forms?: readonly string[];
+}
 
 /** Topics of one part of the engine by the names that cases use. */
 export type TopicGroup = Readonly<Record<string, Topic>>;
@@ -59,23 +63,26 @@ export function forInputs<S extends z.ZodObject>(
 ): Topic {
 	const names = Object.keys(schema.shape);
 	const needed = names.filter((name) => !schema.shape[name]?.safeParse(undefined).success);
-	return (inputs, datasets) => {
+	const topic: Topic = (inputs, datasets) => {
 		const given = Object.keys(inputs);
 		const fits =
 			needed.every((name) => given.includes(name)) && given.every((name) => names.includes(name));
 		return fits ? compute(schema.parse(inputs), datasets) : undefined;
 	};
+	const form = names.map((name) => (needed.includes(name) ? name : `[${name}]`)).join(', ');
+	return Object.assign(topic, { forms: [form] });
 }
 
 /** The first of several topics that knows the inputs. */
 export function firstOf(...topics: readonly Topic[]): Topic {
-	return (inputs, datasets) => {
+	const first: Topic = (inputs, datasets) => {
 		for (const topic of topics) {
 			const answers = topic(inputs, datasets);
 			if (answers) return answers;
 		}
 		return undefined;
 	};
+	return Object.assign(first, { forms: topics.flatMap(({ forms = [] }) => forms) });
 }
 
 /**

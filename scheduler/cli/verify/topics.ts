@@ -15,6 +15,17 @@ const GROUPS: readonly TopicGroup[] = [
 	ALLOCATION_TOPICS
 ];
 
+/** Every topic with the names of the inputs that it knows, one line a kind of case. */
+export function describeTopics(): string {
+	const lines = GROUPS.flatMap((group) =>
+		Object.entries(group).flatMap(([name, { forms = [] }]) => [
+			`  ${name}`,
+			...forms.map((form) => `      ${form}`)
+		])
+	);
+	return `Topics and the inputs of their cases; those in brackets may be missing\n${lines.join('\n')}\n`;
+}
+
 /** Everything that computes cases of a topic; two parts of the engine may share one. */
 export function findTopics(name: string): Topic[] {
 	return GROUPS.flatMap((group) => {

@@ -48,6 +48,14 @@ describe('verify', () => {
 		expect(stdout).toBe('x\tunsupported\ttopic “task-generic” has no inputs f\n');
 	});
 
+	it('lists topics and inputs without reading anything', () => {
+		const never = () => {
+			throw new Error('read');
+		};
+		const { stdout } = runCommand(['verify', '--help'], never);
+		expect(stdout).toContain('  task-generic\n      formula, x\n');
+	});
+
 	it('names the place of what is no case', () => {
 		const { stderr, exitCode } = verify({ id: 'x', topic: 'mass', inputs: {} });
 		expect(exitCode).toBe(2);
