@@ -7,6 +7,7 @@ import { explainClash, type Clash } from '$lib/server/bookings/explain-clash';
 import { loadLabCalendar } from '$lib/server/bookings/load-lab-calendar';
 import { loadVisits, type StudyVisit } from '$lib/server/bookings/load-visits';
 import { countPlanChangeAnyway, lockLab } from '$lib/server/bookings/lock-plan';
+import { revokeBundlesOfVisit } from '$lib/server/bundles/revoke-bundles';
 import { actorOf, recordEvent } from '$lib/server/record/record-event';
 import { markCompletion } from './mark-completion';
 
@@ -34,9 +35,11 @@ export async function recordAttendance(
 			if (!visit || refusal) return { ok: false, reason: refusal ?? 'not-found' };
 			if (visit.state === outcome) return { ok: true, from: visit.state };
 			await countPlanChangeAnyway(tx, grant.studyId);
+			const at = new Date(clock.now());
+			if (outcome === 'no-show') await revokeBundlesOfVisit(tx, at, visit);
 			await tx
 				.update(booking)
-				.set({ state: outcome, changedAt: new Date(clock.now()) })
+				.set({ state: outcome, changedAt: at })
 				.where(eq(booking.id, bookingId));
 			await markCompletion(tx, clock, visit.participantId);
 			await recordEvent(tx, clock, actorOf(grant), {

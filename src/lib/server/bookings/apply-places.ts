@@ -2,6 +2,7 @@ import { eq } from 'drizzle-orm';
 import type { Grant } from '$lib/server/access/require-permission';
 import type { Clock } from '$lib/server/clock';
 import type { Transaction } from '$lib/server/db/client';
+import { revokeBundlesOfVisit } from '$lib/server/bundles/revoke-bundles';
 import { booking } from '$lib/server/db/schema';
 import { actorOf, recordEvent } from '$lib/server/record/record-event';
 import type { PlacedVisit } from '$scheduler/booking/types.ts';
@@ -95,9 +96,11 @@ async function updateVisit(
 	clock: Clock,
 	{ plan, visit, now }: Where & { now: StudyVisit }
 ): Promise<void> {
+	const at = new Date(clock.now());
+	await revokeBundlesOfVisit(tx, at, now);
 	await tx
 		.update(booking)
-		.set({ ...placeColumns({ plan, visit }), changedAt: new Date(clock.now()) })
+		.set({ ...placeColumns({ plan, visit }), changedAt: at })
 		.where(eq(booking.id, now.bookingId));
 }
 

@@ -2,6 +2,7 @@ import { and, eq } from 'drizzle-orm';
 import type { Grant } from '$lib/server/access/require-permission';
 import type { Clock } from '$lib/server/clock';
 import type { Database, Transaction } from '$lib/server/db/client';
+import { revokeBundlesOfVisit } from '$lib/server/bundles/revoke-bundles';
 import { booking } from '$lib/server/db/schema';
 import { actorOf, recordEvent } from '$lib/server/record/record-event';
 import { announceChange } from './announce-change';
@@ -40,14 +41,16 @@ export async function cancelVisit(
 	});
 }
 
-/** Frees a visit's place. */
+/** Frees a visit's place, and makes the files for it worthless. */
 export async function markCancelled(
 	tx: Transaction,
 	clock: Clock,
 	visit: StudyVisit
 ): Promise<void> {
+	const at = new Date(clock.now());
+	await revokeBundlesOfVisit(tx, at, visit);
 	await tx
 		.update(booking)
-		.set({ state: 'cancelled', changedAt: new Date(clock.now()) })
+		.set({ state: 'cancelled', changedAt: at })
 		.where(and(eq(booking.id, visit.bookingId), eq(booking.state, 'booked')));
 }

@@ -1,4 +1,4 @@
-import { and, eq, inArray, isNull, lte, notExists, sql } from 'drizzle-orm';
+import { and, asc, eq, inArray, isNull, lte, notExists, sql } from 'drizzle-orm';
 import type { JWK } from 'jose';
 import type { Clock } from '$lib/server/clock';
 import type { Database, Transaction } from '$lib/server/db/client';
@@ -52,28 +52,32 @@ async function findDue(db: Database, clock: Clock): Promise<Due[]> {
 				eq(block.blockNumber, decision.blockNumber)
 			)
 		);
-	return db
-		.select({ decisionId: decision.id, studyId: decision.studyId })
-		.from(decision)
-		.innerJoin(
-			booking,
-			and(
-				eq(booking.participantId, decision.participantId),
-				eq(booking.visitNumber, decision.visitNumber),
-				inArray(booking.state, ['booked', 'attended'])
+	return (
+		db
+			.select({ decisionId: decision.id, studyId: decision.studyId })
+			.from(decision)
+			.innerJoin(
+				booking,
+				and(
+					eq(booking.participantId, decision.participantId),
+					eq(booking.visitNumber, decision.visitNumber),
+					inArray(booking.state, ['booked', 'attended'])
+				)
 			)
-		)
-		.innerJoin(rig, eq(rig.id, booking.rigId))
-		.where(
-			and(
-				lte(decision.readyAt, new Date(clock.now())),
-				inArray(decision.state, ['automatic', 'settled', 'fallback']),
-				sql`${rig.publicKey} is not null`,
-				sql`upper(${booking.occupied}) > ${new Date(clock.now()).toISOString()}`,
-				notExists(live),
-				notExists(scored)
+			.innerJoin(rig, eq(rig.id, booking.rigId))
+			.where(
+				and(
+					lte(decision.readyAt, new Date(clock.now())),
+					inArray(decision.state, ['automatic', 'settled', 'fallback']),
+					sql`${rig.publicKey} is not null`,
+					sql`upper(${booking.occupied}) > ${new Date(clock.now()).toISOString()}`,
+					notExists(live),
+					notExists(scored)
+				)
 			)
-		);
+			// The order shows in the record: it may depend on nothing that an arm changes.
+			.orderBy(asc(decision.readyAt), asc(decision.participantId), asc(decision.blockNumber))
+	);
 }
 
 async function issueBundle(tx: Transaction, services: Services, { decisionId, studyId }: Due) {

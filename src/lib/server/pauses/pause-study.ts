@@ -1,8 +1,9 @@
-import { and, eq, gt, isNull, sql } from 'drizzle-orm';
+import { and, eq, isNull, sql } from 'drizzle-orm';
 import type { Grant } from '$lib/server/access/require-permission';
+import { revokeBundles } from '$lib/server/bundles/revoke-bundles';
 import type { Clock } from '$lib/server/clock';
 import type { Database, Queryable } from '$lib/server/db/client';
-import { bundle, studyPause } from '$lib/server/db/schema';
+import { studyPause } from '$lib/server/db/schema';
 import { sha256Hex } from '$lib/server/record/canonical-json';
 import { recordEvent, type Actor } from '$lib/server/record/record-event';
 import { pauseLockKey } from './is-paused';
@@ -86,25 +87,4 @@ async function hasOwnPause(
 			)
 		);
 	return open !== undefined;
-}
-
-/** Revokes every open bundle of the study, or of one participant; answers how many. */
-export async function revokeBundles(
-	tx: Queryable,
-	revokedAt: Date,
-	{ studyId, participantId }: Scope
-): Promise<number> {
-	const rows = await tx
-		.update(bundle)
-		.set({ revokedAt })
-		.where(
-			and(
-				eq(bundle.studyId, studyId),
-				participantId ? eq(bundle.participantId, participantId) : undefined,
-				isNull(bundle.revokedAt),
-				gt(bundle.expiresAt, revokedAt)
-			)
-		)
-		.returning({ id: bundle.id });
-	return rows.length;
 }

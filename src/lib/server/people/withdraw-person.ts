@@ -5,10 +5,10 @@ import type { MailSetting } from '$lib/server/invitations/mail-setting';
 import { markCancelled } from '$lib/server/bookings/cancel-visit';
 import { loadVisits } from '$lib/server/bookings/load-visits';
 import { countPlanChangeAnyway, lockLab } from '$lib/server/bookings/lock-plan';
+import { revokeBundles } from '$lib/server/bundles/revoke-bundles';
 import type { Clock } from '$lib/server/clock';
 import type { Database } from '$lib/server/db/client';
 import { participant } from '$lib/server/db/schema';
-import { revokeBundles } from '$lib/server/pauses/pause-study';
 import { actorOf, recordEvent } from '$lib/server/record/record-event';
 
 export type WithdrawOutcome =
