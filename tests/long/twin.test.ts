@@ -48,7 +48,7 @@ const seeing = ['approver', 'unblinded'];
 const moments: [Moment, Moment, Moment] = [
 	{ name: 'a held decision waits', atMs: at('2027-03-01', '11:16') + 30_000 },
 	{ name: 'a block is ready inside a visit', atMs: at('2027-03-02', '11:00') + 30_000 },
-	{ name: 'the hour of a fallback has passed', atMs: at('2027-03-03', '00:00') + 30_000 }
+	{ name: 'the hour of a fallback has passed', atMs: at('2027-03-03', '09:00') + 30_000 }
 ];
 
 type Seen = {

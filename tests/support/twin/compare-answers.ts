@@ -8,6 +8,7 @@ import type { Answer } from './ask-everything';
 const drawn: [kind: string, pattern: RegExp][] = [
 	['sealed', /\beyJ[\w-]+\.[\w-]*\.[\w-]+\.[\w-]+\.[\w-]+\b/g],
 	['id', /\b[0-9a-f]{8}-[0-9a-f]{4}-4[0-9a-f]{3}-[89ab][0-9a-f]{3}-[0-9a-f]{12}\b/g],
+	['key', /(?<="(?:x|kid)": ")[\w-]{43}(?=")/g],
 	['hash', /(?<![\w-])[0-9a-f]{64}(?![\w-])/g],
 	['nonce', /(?<=nonce[-=]"?)[A-Za-z0-9+/]{22}==/g]
 ];

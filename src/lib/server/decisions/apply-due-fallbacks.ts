@@ -1,4 +1,4 @@
-import { and, eq, lte } from 'drizzle-orm';
+import { and, asc, eq, lte } from 'drizzle-orm';
 import type { Clock } from '$lib/server/clock';
 import type { Database } from '$lib/server/db/client';
 import { decision } from '$lib/server/db/schema';
@@ -9,7 +9,8 @@ export async function applyDueFallbacks(db: Database, clock: Clock): Promise<num
 	const due = await db
 		.select({ decisionId: decision.id, studyId: decision.studyId })
 		.from(decision)
-		.where(and(eq(decision.state, 'held'), lte(decision.readyAt, new Date(clock.now()))));
+		.where(and(eq(decision.state, 'held'), lte(decision.readyAt, new Date(clock.now()))))
+		.orderBy(asc(decision.readyAt), asc(decision.participantId));
 	let count = 0;
 	for (const { decisionId, studyId } of due) {
 		const reason = 'Nobody settled it by the ready hour.';

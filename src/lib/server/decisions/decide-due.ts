@@ -26,7 +26,8 @@ async function findUndecided(db: Database, nowMs: number): Promise<string[]> {
 			and not exists (
 				select 1 from decision d
 				where d.participant_id = k.participant_id and d.visit_number = k.visit_number
-					and d.block_number = ${firstBlock})`);
+					and d.block_number = ${firstBlock})
+		order by k.participant_id`);
 	return rows.map((row) => row.participant_id);
 }
 
@@ -42,6 +43,7 @@ async function findMovedVisits(db: Database): Promise<string[]> {
 			and d.ready_at is distinct from date_trunc('milliseconds', ${readyAt})
 			and not exists (
 				select 1 from block b
-				where b.participant_id = k.participant_id and b.visit_number = k.visit_number)`);
+				where b.participant_id = k.participant_id and b.visit_number = k.visit_number)
+		order by k.participant_id`);
 	return rows.map((row) => row.participant_id);
 }

@@ -33,7 +33,7 @@ export async function buildStudy(world: DemoWorld, labId: string, seed: number):
 	await giveRoles(world, studyId);
 	let hash = await freezeWith(world, studyId, designStudy);
 	const later: Change[] = [
-		(draft) => ({ ...draft, readyLeadHours: 12, consentTextVersion: '2' }),
+		(draft) => ({ ...draft, readyLeadHours: 3, consentTextVersion: '2' }),
 		(draft) => ({ ...draft, limits: { ...draft.limits, minutesPerVisit: 60 } }),
 		(draft) => ({ ...draft, consentTextVersion: '3' })
 	];

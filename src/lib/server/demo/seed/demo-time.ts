@@ -10,8 +10,8 @@ export function at(date: string, time: string): number {
 	return instant;
 }
 
-/** Thursday morning of the second week: when the demo opens. */
-export const demoNowMs = at('2027-03-11', '10:24');
+/** Wednesday morning, the tenth day of visits: when the demo opens. */
+export const demoNowMs = at('2027-03-10', '10:24');
 
 /** A clock that the seed sets. */
 export function createSetClock(startMs: number) {

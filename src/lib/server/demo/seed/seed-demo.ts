@@ -24,7 +24,7 @@ const waves: { date: string; count: number }[] = [
 	{ date: '2027-03-03', count: 3 },
 	{ date: '2027-03-05', count: 3 },
 	{ date: '2027-03-08', count: 3 },
-	{ date: '2027-03-10', count: 2 }
+	{ date: '2027-03-09', count: 2 }
 ];
 
 /**
