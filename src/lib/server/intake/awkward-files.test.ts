@@ -1,6 +1,7 @@
 import { readdirSync, readFileSync } from 'node:fs';
 import { describe, expect, it } from 'vitest';
-import { checkRows, type Roster } from './check-rows';
+import { checkRows } from './check-rows';
+import type { Roster } from './roster';
 import { proposeMapping } from './propose-mapping';
 import { readTable } from './read-table';
 

@@ -1,5 +1,6 @@
 import { describe, expect, it } from 'vitest';
-import { checkRows, type Roster, type RosterVisit } from './check-rows';
+import { checkRows } from './check-rows';
+import type { Roster, RosterVisit } from './roster';
 import { judgeQuality } from './judge-quality';
 import { proposeMapping } from './propose-mapping';
 import { readTable } from './read-table';

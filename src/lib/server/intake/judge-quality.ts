@@ -1,4 +1,5 @@
-import type { CheckedBlock, Roster } from './check-rows';
+import type { CheckedBlock } from './check-rows';
+import type { Roster } from './roster';
 
 export type Quality = { verdict: 'green' | 'amber' | 'red'; codes: string[] };
 

@@ -4,7 +4,7 @@ import type { Queryable } from '$lib/server/db/client';
 import { block, booking, lab, participant, protocolVersion, study } from '$lib/server/db/schema';
 import { taskRecordSchema } from '$scheduler/tasks/task-record';
 import { localDateOf } from '$lib/time/wall-clock';
-import type { Roster, RosterVisit } from './check-rows';
+import type { Roster, RosterVisit } from './roster';
 
 export type StudyRoster = Roster & { idByCode: Map<string, string> };
 
@@ -62,17 +62,17 @@ async function loadBookings(db: Queryable, { clock, studyId, zone }: Place) {
 		.select({
 			participantId: booking.participantId,
 			visitNumber: booking.visitNumber,
-			during: booking.during
+			during: booking.during,
+			occupied: booking.occupied
 		})
 		.from(booking)
 		.where(and(eq(booking.studyId, studyId), inArray(booking.state, ['booked', 'attended'])));
-	const today = localDateOf(clock.now(), zone);
 	return new Map(
 		rows.map((row) => {
 			const bookedOn = localDateOf(row.during.startsAt.getTime(), zone);
 			return [
 				`${row.participantId} ${row.visitNumber}`,
-				{ bookedOn, hasStarted: bookedOn <= today }
+				{ bookedOn, hasStarted: row.occupied.startsAt.getTime() <= clock.now() }
 			];
 		})
 	);
