@@ -92,6 +92,8 @@ export function openTurn(options: {
 		memory.recent = [];
 		memory.noChallenge = 0;
 		memory.stuckSeen = true;
+		// Somebody has looked at the stray trials too; the cloud of that block stays unused.
+		memory.lastGates = memory.lastGates.filter((gate) => gate !== 'OUTLIERS');
 	}
 	const { state, settings, task } = options;
 	return { state, settings, task: createScaledTask(task), memory, facts: {} };

@@ -229,6 +229,26 @@ describe('a running shift', () => {
 });
 
 describe('a hold', () => {
+	it('for stray trials ends when somebody has looked, also before a new block', () => {
+		// A quarter of the trials lies far off, all around: no second cloud.
+		const strayed = trials.map(([v = 0, x = 0], i) =>
+			i % 4 === 0 ? [v + 0.7 * Math.cos(2.4 * i), x + 0.6 * Math.sin(2.4 * i)] : [v, x]
+		);
+		const ask = (state: Partial<PolicyStateInput>) =>
+			chooseNextBlock({
+				state: { day: 1, blockInDay: 1, ...state },
+				protocol: QUICK,
+				task: PUCK_RECORD
+			});
+		const known = ask({ last: { kind: 'practice', trials } });
+		const held = ask({ memory: known.memory, last: { kind: 'practice', trials: strayed } });
+		expect([held.kind, held.reasons[0]?.code]).toEqual(['hold', 'OUTLIERS']);
+		expect(ask({ memory: held.memory }).kind).toBe('hold');
+		const released = ask({ memory: held.memory, release: true });
+		expect(released.kind).not.toBe('hold');
+		expect(released.memory.cloud).toEqual(known.memory.cloud);
+	});
+
 	it('names the block that runs meanwhile where operators are blinded', () => {
 		const memory = { held: 'TRACE' };
 		const held = (protocol: PolicySettingsInput) =>
