@@ -35,7 +35,7 @@ export function computeManyToOneCdf(critical: number, comparisons: ManyToOne): n
 	requireComparisons(comparisons);
 	const { df } = comparisons;
 	if (critical <= 0 && comparisons.sides === 2) return 0;
-	const inner = spreadPoints(-9, 9, 6);
+	const inner = spreadPoints(-9, 9, countPanels(comparisons.loadings));
 	if (df === Infinity) return integrateShared(critical, comparisons, inner);
 	// Density of u = (estimate / true spread), u² df being chi-square.
 	const density = (u: number) => (df * computePoissonWeight(df / 2, (df * u * u) / 2)) / u;
@@ -43,7 +43,7 @@ export function computeManyToOneCdf(critical: number, comparisons: ManyToOne): n
 	const low = df < 12 ? 1e-12 : Math.max(1e-12, 1 - 9.5 * spread);
 	const high = 1 + (df < 12 ? 13 : 10.5) * spread * (df < 3 ? 1.4 : 1);
 	return integrate((u) => density(u) * integrateShared(critical * u, comparisons, inner), {
-		...{ low, high, panelCount: df < 12 ? 4 : 3 }
+		...{ low, high, panelCount: df < 12 ? 4 : 2 }
 	});
 }
 
@@ -65,7 +65,7 @@ export function computeDunnettCritical(alpha: number, comparisons: ManyToOne): n
 	while (excess(high) < 0 && high < 1e6) high *= 2;
 	let low = comparisons.sides === 2 ? 0 : -1;
 	while (comparisons.sides === 1 && excess(low) > 0 && low > -1e6) low *= 2;
-	return findRoot({ compute: excess, low, high, tolerance: 1e-10 });
+	return findRoot({ compute: excess, low, high, tolerance: 1e-9 });
 }
 
 /**
@@ -75,6 +75,12 @@ export function computeDunnettCritical(alpha: number, comparisons: ManyToOne): n
 export function computeDunnettPValue(t: number, comparisons: ManyToOne): number {
 	const size = comparisons.sides === 2 ? Math.abs(t) : t;
 	return Math.min(1, Math.max(0, 1 - computeManyToOneCdf(size, comparisons)));
+}
+
+/** The nearer a loading is to 1, the sharper what is integrated. */
+function countPanels(loadings: readonly number[]): number {
+	const sharpest = Math.max(...loadings.map((value) => value / Math.sqrt(1 - value * value)));
+	return Math.min(40, Math.max(2, Math.ceil(2.5 * sharpest)));
 }
 
 /** The chance with the spread known: an average over the value that the control gives to all. */

@@ -130,28 +130,16 @@ function sumGroups(parts: {
 	const p = q.length;
 	const [z1, z2] = z;
 	const found = new Map<number, GroupSums>();
+	const x = new Float64Array(p);
 	for (let i = 0; i < rest.length; i += 1) {
 		const key = group[i] ?? -1;
 		let sums = found.get(key);
 		if (!sums) {
-			const [zx, xx] = [new Float64Array(2 * p), new Float64Array(p * p)];
-			sums = { rowCount: 0, g: [0, 0, 0], zx, xx, zy: [0, 0] };
+			sums = createSums(p);
 			found.set(key, sums);
 		}
-		const [a, b, y] = [z1?.[i] ?? 0, z2?.[i] ?? 0, rest[i] ?? 0];
-		sums.rowCount += 1;
-		sums.g[0] += a * a;
-		sums.g[1] += a * b;
-		sums.g[2] += b * b;
-		sums.zy[0] += a * y;
-		sums.zy[1] += b * y;
-		for (let j = 0; j < p; j += 1) {
-			const x = q[j]?.[i] ?? 0;
-			sums.zx[j] = (sums.zx[j] ?? 0) + a * x;
-			sums.zx[p + j] = (sums.zx[p + j] ?? 0) + b * x;
-			for (let k = 0; k <= j; k += 1)
-				sums.xx[j * p + k] = (sums.xx[j * p + k] ?? 0) + x * (q[k]?.[i] ?? 0);
-		}
+		for (let j = 0; j < p; j += 1) x[j] = q[j]?.[i] ?? 0;
+		addRow(sums, x, z1?.[i] ?? 0, z2?.[i] ?? 0, rest[i] ?? 0);
 	}
 	for (const { xx } of found.values())
 		for (let j = 0; j < p; j += 1)
@@ -159,26 +147,64 @@ function sumGroups(parts: {
 	return [...found.values()];
 }
 
+function createSums(p: number): GroupSums {
+	const [zx, xx] = [new Float64Array(2 * p), new Float64Array(p * p)];
+	return { rowCount: 0, g: [0, 0, 0], zx, xx, zy: [0, 0] };
+}
+
+/** @param a, b the row's values of both random columns */
+function addRow(sums: GroupSums, x: Float64Array, a: number, b: number, y: number): void {
+	const { g, zx, xx, zy } = sums;
+	const p = x.length;
+	sums.rowCount += 1;
+	g[0] += a * a;
+	g[1] += a * b;
+	g[2] += b * b;
+	zy[0] += a * y;
+	zy[1] += b * y;
+	for (let j = 0; j < p; j += 1) {
+		const own = x[j] ?? 0;
+		zx[j] = (zx[j] ?? 0) + a * own;
+		zx[p + j] = (zx[p + j] ?? 0) + b * own;
+		for (let k = 0; k <= j; k += 1) xx[j * p + k] = (xx[j * p + k] ?? 0) + own * (x[k] ?? 0);
+	}
+}
+
 /** Groups with the same sums of design cost as much as one. */
 function joinCells(groups: readonly GroupSums[]): DesignCell[] {
-	const cells = new Map<string, DesignCell>();
-	for (const { rowCount, g, zx, xx, zy } of groups) {
-		const key = `${rowCount}|${g.join()}|${zx.join()}`;
-		const [a, b] = zy;
-		const cell = cells.get(key);
-		if (!cell) {
-			const zyzy: DesignCell['zyzy'] = [a * a, a * b, b * b];
-			cells.set(key, { count: 1, rowCount, g, zx, xx, zy: [a, b], zyzy });
+	const cells: DesignCell[] = [];
+	const known = new Map<number, DesignCell[]>();
+	for (const group of groups) {
+		const [a, b] = group.zy;
+		const key = group.rowCount + group.g[0];
+		const alike = known.get(key)?.find((cell) => isSameDesign(cell, group));
+		if (alike) {
+			addOutcomes(alike, a, b);
 			continue;
 		}
-		cell.count += 1;
-		cell.zy[0] += a;
-		cell.zy[1] += b;
-		cell.zyzy[0] += a * a;
-		cell.zyzy[1] += a * b;
-		cell.zyzy[2] += b * b;
+		const { rowCount, g, zx, xx } = group;
+		const cell: DesignCell = {
+			...{ count: 1, rowCount, g, zx, xx, zy: [a, b], zyzy: [a * a, a * b, b * b] }
+		};
+		cells.push(cell);
+		known.set(key, [...(known.get(key) ?? []), cell]);
 	}
-	return [...cells.values()];
+	return cells;
+}
+
+function isSameDesign(cell: DesignCell, { rowCount, g, zx }: GroupSums): boolean {
+	if (cell.rowCount !== rowCount || cell.g[1] !== g[1] || cell.g[2] !== g[2]) return false;
+	for (let j = 0; j < zx.length; j += 1) if (cell.zx[j] !== zx[j]) return false;
+	return cell.g[0] === g[0];
+}
+
+function addOutcomes(cell: DesignCell, a: number, b: number): void {
+	cell.count += 1;
+	cell.zy[0] += a;
+	cell.zy[1] += b;
+	cell.zyzy[0] += a * a;
+	cell.zyzy[1] += a * b;
+	cell.zyzy[2] += b * b;
 }
 
 function requireData({ y, fixed, group, random }: MixedModelData): void {
