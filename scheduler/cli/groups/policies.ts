@@ -66,12 +66,18 @@ const checkOutputSchema = z.strictObject({
 
 const decideSchema = z.strictObject({ ...decisionInputsSchema.shape, task: readableTaskSchema });
 
-const replaySchema = z.strictObject({
-	/** A record as `decide` gives it. */
-	stored: z.looseObject({}),
-	/** Trials, memory, policy and task as they stand now. */
-	inputs: decideSchema
-});
+const recordSchema = z.looseObject({ recordVersion: z.literal(1), inputs: decideSchema });
+
+/** A record alone is made again from its own inputs; with inputs beside it, from those. */
+const replaySchema = z.union([
+	z.strictObject({
+		/** A record as `decide` gives it and the application stores it. */
+		stored: recordSchema,
+		/** Trials, memory, policy and task as they stand now. */
+		inputs: decideSchema
+	}),
+	recordSchema
+]);
 
 const replayedSchema = z.union([
 	z.strictObject({ equal: z.literal(true), sameVersions: z.boolean() }),
@@ -126,9 +132,15 @@ export const POLICY_COMMANDS: CommandGroup = {
 	replay: command(
 		'Makes a stored record again and names the first difference',
 		{ input: replaySchema, output: replayedSchema },
-		(input) => replayDecision({ ...input, versions: currentVersions(), digest })
+		(input) => replayDecision({ ...splitReplay(input), versions: currentVersions(), digest })
 	)
 };
+
+function splitReplay(input: z.output<typeof replaySchema>) {
+	if (!('stored' in input)) return { stored: input, inputs: input.inputs };
+	const asked = replaySchema.options[0].parse(input);
+	return { stored: asked.stored, inputs: asked.inputs };
+}
 
 function judgeTrials({ task: record, trials }: z.output<typeof trialsInputSchema>) {
 	const task = createScaledTask(createTask(record));
