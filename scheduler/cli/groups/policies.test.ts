@@ -51,6 +51,21 @@ describe('policies on the command line', () => {
 		expect(runJson('replay', { stored, inputs })).toEqual({ equal: true, sameVersions: true });
 	});
 
+	it('measures an escape', () => {
+		const region = {
+			center: [0, 0],
+			shape: [
+				[1, 0],
+				[0, 1]
+			],
+			share: 0.8,
+			stay: 0.1
+		};
+		expect(
+			runJson('escape', { task: PUCK_RECORD, region, trials: spreadAlongManifold(60) })
+		).toMatchObject({ ok: true, trialCount: 60, reentry: null });
+	});
+
 	it('simulates a study with the policy that would run it', { timeout: 30_000 }, () => {
 		const report = runJson('simulate-study', {
 			...{ task: PUCK_RECORD, days: 2, blocksPerDay: 3, seed: 4 },
@@ -75,6 +90,19 @@ describe('policies on the command line', () => {
 	it.each([
 		['shift-step', { rule: { sigma: 1, goal: 1 }, errors: [1], hits: [] }, /hits: one hit/],
 		['yoke', { task: PUCK_RECORD, masters: [], partners: [] }, /masters: /],
+		[
+			'escape',
+			{
+				task: PUCK_RECORD,
+				region: { center: [0], shape: [[1]], share: 0.8, stay: 0 },
+				trials: [
+					[1, 2],
+					[1, 2],
+					[1, 2]
+				]
+			},
+			/region\.shape: each needs 2 values/
+		],
 		['check-policy', { protocol: { hysteresis: -1 } }, /protocol\.hysteresis: /]
 	])('%s says what is wrong and where', (name, input, message) => {
 		const { exitCode, stderr } = run(name, input);

@@ -15,6 +15,7 @@ import { createScaledTask } from '../../tasks/scaled-task.ts';
 import { computeCovariance, computeMeanVector } from '../../variability/moments.ts';
 import { estimateLagOne } from '../../variability/serial-dependence.ts';
 import { command, type CommandGroup } from '../command.ts';
+import { describeEscape, escapeInputSchema, escapeOutputSchema } from '../describe-escape.ts';
 import { describeStudy, studyInputSchema, studyOutputSchema } from '../describe-study.ts';
 import { pairPeople, yokeInputSchema, yokeOutputSchema } from '../pair-people.ts';
 import { runShift, shiftStepInputSchema, shiftStepOutputSchema } from '../run-shift.ts';
@@ -101,6 +102,11 @@ export const POLICY_COMMANDS: CommandGroup = {
 		'Where a penalized region would be placed',
 		{ input: regionInputSchema, output: placedSchema },
 		place
+	),
+	escape: command(
+		'How far a person moved out of a penalized region, and whether they came back',
+		{ input: escapeInputSchema, output: escapeOutputSchema },
+		describeEscape
 	),
 	'shift-step': command(
 		'The levels of a target shift over the trials of a block',
