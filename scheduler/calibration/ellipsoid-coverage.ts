@@ -8,6 +8,7 @@ import {
 import { computeSquaredDistances } from '../variability/mahalanobis.ts';
 import { computeMassInside } from '../variability/mass-inside.ts';
 import { computeCovariance, computeMeanVector } from '../variability/moments.ts';
+import { computeEffectiveCount, estimateLagOne } from '../variability/serial-dependence.ts';
 import { computeToleranceFactor } from '../variability/tolerance-factor.ts';
 import { writeShare, writeTable } from './markdown-table.ts';
 import { drawTrials } from './normal-trials.ts';
@@ -27,15 +28,21 @@ export function calibrateEllipsoids(runs: number): string {
 		[2, 3].flatMap((d) => [0, 0.3].map((carry) => ({ n, d, carry })))
 	);
 	const rows = settings.map((setting) => {
-		const { mean, next, tolerance, mass } = judge(setting, runs);
+		const { mean, serial, next, tolerance, mass } = judge(setting, runs);
 		const { n, d, carry } = setting;
-		const counts = [mean, next, tolerance].map((count) => writeShare(count, runs));
+		const counts = [mean, serial, next, tolerance].map((count) => writeShare(count, runs));
 		return [n, d, carry, ...counts, (mass / runs).toFixed(3)];
 	});
 	return writeTable(
 		[
 			...['trials', 'variables', 'lag-1'],
-			...['mean (.9)', 'next trial (.9)', 'tolerance (.95)', 'population in the coverage ellipsoid']
+			...[
+				'mean (.9)',
+				'mean, effective count (.9)',
+				'next trial (.9)',
+				'tolerance (.95)',
+				'population in the coverage ellipsoid'
+			]
 		],
 		rows
 	);
@@ -54,7 +61,7 @@ function judge({ n, d, carry }: { n: number; d: number; carry: number }, runs: n
 		Array.from({ length: d }, (_entry, j) => (j > i ? 0 : j === i ? 1 + i : 0.5))
 	);
 	const population = { mean: new Array<number>(d).fill(1), lower, carry };
-	const held = { mean: 0, next: 0, tolerance: 0, mass: 0 };
+	const held = { mean: 0, serial: 0, next: 0, tolerance: 0, mass: 0 };
 	for (const stream of createSeededStreams(SEED, 0, runs)) {
 		// The next trial is one of the same population, seen on its own.
 		const trials = drawTrials(stream, n, population);
@@ -71,6 +78,9 @@ function judge({ n, d, carry }: { n: number; d: number; carry: number }, runs: n
 			return mass.ok ? mass.probability : 0;
 		};
 		held.mean += toMean <= factors.mean ? 1 : 0;
+		const effective = computeEffectiveCount(n, estimateLagOne(transpose(trials)));
+		const wider = computeMeanFactor({ ...request, trialCount: Math.max(effective, d + 1) });
+		held.serial += toMean <= wider ? 1 : 0;
 		held.next += toNext <= factors.next ? 1 : 0;
 		held.tolerance += massOf(factors.tolerance) >= PROBABILITY ? 1 : 0;
 		held.mass += massOf(factors.coverage);

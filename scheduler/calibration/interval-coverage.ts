@@ -1,6 +1,6 @@
 import type { Matrix } from '../linear-algebra/vector.ts';
 import { createSeededStreams } from '../random/seeded-stream.ts';
-import { drawResamples, summariseReplicates } from '../variability/block-bootstrap.ts';
+import { drawResamples, shapeOf, summariseReplicates } from '../variability/block-bootstrap.ts';
 import { computeCloudAlignment } from '../variability/cloud-alignment.ts';
 import { decomposeImprovement } from '../variability/decompose-improvement.ts';
 import { computeGoalSensitivity } from '../variability/goal-sensitivity.ts';
@@ -88,7 +88,10 @@ function countHeld(
 		const drawn = Array.from(drawResamples({ blocks, seed }, 0, REPLICATES), measureAll);
 		for (const name of NAMES) {
 			const values = drawn.map((values) => values[name]);
-			const found = summariseReplicates(made[name] ?? 0, values, LEVEL);
+			const found = summariseReplicates(made[name] ?? 0, values, {
+				level: LEVEL,
+				...shapeOf({ blocks })
+			});
 			const isHeld = found.ok && found.low <= TRUTHS[name] && TRUTHS[name] <= found.high;
 			held[name] = (held[name] ?? 0) + (isHeld ? 1 : 0);
 		}

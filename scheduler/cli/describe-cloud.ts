@@ -1,4 +1,5 @@
 import { z } from 'zod';
+import { transpose } from '../linear-algebra/matrix.ts';
 import type { Matrix } from '../linear-algebra/vector.ts';
 import { computeCloudGeometry } from '../policies/cloud-geometry.ts';
 import { createTask } from '../tasks/create-task.ts';
@@ -10,6 +11,7 @@ import {
 	computeNextTrialFactor
 } from '../variability/ellipsoid-factors.ts';
 import { computeCovariance, computeMeanVector } from '../variability/moments.ts';
+import { computeEffectiveCount, estimateLagOne } from '../variability/serial-dependence.ts';
 import { computeToleranceFactor } from '../variability/tolerance-factor.ts';
 import { trimOutliers } from '../variability/trim-outliers.ts';
 import { trialsInputSchema } from './trial-inputs.ts';
@@ -65,6 +67,13 @@ export const cloudSchema = z.strictObject({
 			})
 		)
 		.nullable(),
+	/** Trials resemble their neighbours: how many independent ones they are worth for the mean. */
+	serial: z.strictObject({
+		lagOne: z.number(),
+		effectiveCount: z.number(),
+		/** c² of the mean ellipsoid for so many; null: not more than there are variables. */
+		meanFactor: z.number().nullable()
+	}),
 	/** Numbers of the trials that trimming leaves out; null: it cannot be told. */
 	strayTrials: z.array(z.int()).nullable(),
 	geometry: z
@@ -99,9 +108,19 @@ export function describeCloud(input: z.output<typeof cloudInputSchema>) {
 					...computeEllipsoid({ mean: estimate.mean, covariance: estimate.covariance, factor })
 				}))
 			: null,
+		serial: describeSerial(executions, input.probability),
 		strayTrials: trimmed.ok ? listStray(trimmed.kept) : null,
 		geometry: isFlat(scaled.cov) ? null : computeCloudGeometry(task, scaled)
 	};
+}
+
+function describeSerial(executions: Matrix, share: number) {
+	const lagOne = executions.length < 3 ? 0 : estimateLagOne(transpose(executions));
+	const effectiveCount = computeEffectiveCount(executions.length, lagOne);
+	const variableCount = executions[0]?.length ?? 0;
+	const request = { trialCount: effectiveCount, variableCount, probability: share };
+	const meanFactor = effectiveCount > variableCount ? computeMeanFactor(request) : null;
+	return { lagOne, effectiveCount, meanFactor };
 }
 
 function computeFactors(input: z.output<typeof cloudInputSchema>) {

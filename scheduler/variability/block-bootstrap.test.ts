@@ -22,6 +22,7 @@ function correlatedTrials(count: number, carry: number): number[][] {
 }
 
 describe('bootstrapInterval', () => {
+	const shape = { trialCount: 60, blockLength: 5 };
 	const request = { blocks: [tiltedTrials(60)], measure: meanOfFirst, seed: 4 };
 
 	it('has about the standard error that theory gives for a mean', () => {
@@ -65,10 +66,13 @@ describe('bootstrapInterval', () => {
 			ok: false,
 			reason: 'no-value'
 		});
-		expect(summariseReplicates(1, [1, 2, null, 3, 4])).toEqual({
+		expect(summariseReplicates(1, [1, 2, null, 3, 4], shape)).toEqual({
 			...{ ok: false, reason: 'too-many-without-value' }
 		});
-		const nearly = summariseReplicates(1, [...Array.from({ length: 19 }, (_, i) => i), null], 0.9);
+		const nearly = summariseReplicates(1, [...Array.from({ length: 19 }, (_, i) => i), null], {
+			...shape,
+			level: 0.9
+		});
 		expect(nearly.ok && nearly.failedCount).toBe(1);
 	});
 

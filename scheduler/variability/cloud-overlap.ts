@@ -31,7 +31,9 @@ export interface CloudOverlap {
 }
 
 export type CloudOverlapResult =
-	({ ok: true } & CloudOverlap) | { ok: false; reason: 'singular-covariance' };
+	| ({ ok: true } & CloudOverlap)
+	/** The clouds differ in size by more than a double can hold. */
+	| { ok: false; reason: 'singular-covariance' | 'sizes-too-different' };
 
 /**
  * How far two normal clouds of executions lie apart.
@@ -58,8 +60,7 @@ export function computeCloudOverlap(first: NormalCloud, second: NormalCloud): Cl
 	);
 	const [a = 0, b = 0, m = 0] = [log1, log2, logMiddle];
 	const distance = Math.max(0, squareIn(between.lower, delta) / 8 + (m - (a + b) / 2) / 2);
-	return {
-		ok: true,
+	const overlap = {
 		bhattacharyyaDistance: distance,
 		bhattacharyyaCoefficient: Math.exp(-distance),
 		hellinger: Math.sqrt(-Math.expm1(-distance)),
@@ -67,6 +68,9 @@ export function computeCloudOverlap(first: NormalCloud, second: NormalCloud): Cl
 		divergenceFromSecond: divergence(factor.lower, second.covariance, delta, a - b),
 		wasserstein: computeWasserstein(first, second)
 	};
+	return Object.values(overlap).every(Number.isFinite)
+		? { ok: true, ...overlap }
+		: { ok: false, reason: 'sizes-too-different' };
 }
 
 /** vᵀ·(L·Lᵀ)⁻¹·v. */

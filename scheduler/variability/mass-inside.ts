@@ -5,7 +5,9 @@ import { computeNormalCdf, computeNormalDensity } from '../statistics/normal.ts'
 import { computeQuadraticCdf, GAUSS_8, type WeightedSquare } from './quadratic-form.ts';
 
 export type MassInside =
-	{ ok: true; probability: number } | { ok: false; reason: 'singular-covariance' };
+	| { ok: true; probability: number }
+	/** Cloud and region differ in size by more than a double can hold. */
+	| { ok: false; reason: 'singular-covariance' | 'sizes-too-different' };
 
 /** Each variable beyond the first multiplies the work by 64; more are done by inversion. */
 const VARIABLES_MAX = 4;
@@ -39,8 +41,13 @@ export function computeMassInside(options: {
 		scale,
 		mean: dot(delta, row(vectors, j)) / Math.sqrt(scale)
 	}));
-	if (axes.length > VARIABLES_MAX) return { ok: true, probability: computeQuadraticCdf(axes, 1) };
-	return { ok: true, probability: Math.min(1, integrate(axes, 1)) };
+	if (axes.some(({ scale, mean }) => !(scale > 0 && Number.isFinite(mean))))
+		return { ok: false, reason: 'sizes-too-different' };
+	const isFew = axes.length <= VARIABLES_MAX;
+	const probability = isFew ? Math.min(1, integrate(axes, 1)) : computeQuadraticCdf(axes, 1);
+	return Number.isFinite(probability)
+		? { ok: true, probability }
+		: { ok: false, reason: 'sizes-too-different' };
 }
 
 /** P(Σ scale·y² ≤ room). */

@@ -35,6 +35,19 @@ export function estimateLagOne(series: readonly Vector[]): number {
 	return Math.min(LAG_ONE_MAX, Math.max(0, computeMean(correlations) + 1 / trialCount));
 }
 
+const EFFECTIVE_MIN = 3;
+
+/**
+ * Independent trials that tell as much of a mean as n trials with this lag-1 correlation; at least 3.
+ *
+ * Method:  n·(1 − r) / (1 + r); a correlation below 0 counts as none.
+ * Source:  method sheet B1. Accuracy: coverage of the mean ellipsoid in scheduler/CALIBRATION.md.
+ */
+export function computeEffectiveCount(trialCount: number, lagOne: number): number {
+	const r = Math.min(Math.max(lagOne, 0), 1);
+	return Math.min(trialCount, Math.max(EFFECTIVE_MIN, (trialCount * (1 - r)) / (1 + r)));
+}
+
 /** SD of a detrended series that single stray trials cannot pull: 1.4826 · MAD. */
 export function estimateRobustSd(series: Vector): number {
 	return MAD_TO_SD * computeMad(removeTrend(series));

@@ -10,7 +10,7 @@ import { computeSeparation } from './ellipsoid-separation.ts';
 import { computeSquaredDistances } from './mahalanobis.ts';
 import { computeMassInside } from './mass-inside.ts';
 import { computeCovariance, computeMeanVector, computeMedian } from './moments.ts';
-import { estimateLagOne, removeTrend } from './serial-dependence.ts';
+import { computeEffectiveCount, estimateLagOne, removeTrend } from './serial-dependence.ts';
 import { trimOutliers } from './trim-outliers.ts';
 
 const entry = fc.double({ min: -3, max: 3, noNaN: true });
@@ -154,6 +154,13 @@ describe('robust and serial measures', () => {
 				expect(r >= 0 && r <= 0.6).toBe(true);
 			})
 		);
+	});
+
+	it('correlated trials are worth fewer, never more than there are nor fewer than three', () => {
+		// 60 · .7 / 1.3.
+		expect(computeEffectiveCount(60, 0.3)).toBeCloseTo(32.3076923, 6);
+		expect([computeEffectiveCount(60, -0.5), computeEffectiveCount(60, 1)]).toEqual([60, 3]);
+		expect(computeEffectiveCount(2, 0.9)).toBe(2);
 	});
 
 	it('takes the mean of the middle two as median', () => {

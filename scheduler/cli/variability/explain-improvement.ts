@@ -2,7 +2,7 @@ import { z } from 'zod';
 import type { Matrix } from '../../linear-algebra/vector.ts';
 import { createTask } from '../../tasks/create-task.ts';
 import { computeCost, type Task } from '../../tasks/task.ts';
-import { drawResamples, summariseReplicates } from '../../variability/block-bootstrap.ts';
+import { drawResamples, shapeOf, summariseReplicates } from '../../variability/block-bootstrap.ts';
 import { compareCoordinates } from '../../variability/compare-coordinates.ts';
 import type { CoordinateSystem } from '../../variability/coordinates.ts';
 import {
@@ -128,7 +128,7 @@ function drawIntervals(
 		summariseReplicates(
 			readPart(found, part),
 			drawn.map((replicate) => (replicate.ok ? readPart(replicate, part) : null)),
-			level
+			{ level, ...shapeOf({ blocks, blockLength }) }
 		)
 	);
 }
