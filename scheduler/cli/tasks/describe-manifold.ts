@@ -100,6 +100,7 @@ function trace(task: Task, scaled: ScaledTask, input: ManifoldInput) {
 	const surface = traceSurface(scaled, start ?? nearestToOrigin(solutions, first), {
 		...{ reach: input.length, spacing: input.spacing }
 	});
+	if (surface.points.length === 0) return { ok: false, reason: 'singular' };
 	const points = surface.points.map((point) => toUnits(scaled, point));
 	return { ok: true, kind: 'surface', points, isComplete: surface.isComplete };
 }

@@ -1,6 +1,8 @@
 import { z } from 'zod';
-import { measureCart, measurePredictability } from '../../../../tasks/models/cart/cart-measures.ts';
-import { sampleCart } from '../../../../tasks/models/cart/cart-motion.ts';
+import { measureCart, readForces } from '../../../../tasks/models/cart/cart-measures.ts';
+import { sampleCart, type CartStart } from '../../../../tasks/models/cart/cart-motion.ts';
+import type { CartShape } from '../../../../tasks/models/cart/cart-record.ts';
+import { computePhaseInformation } from '../../../../tasks/models/cart/phase-information.ts';
 import { forInputs, Judged } from '../../topic.ts';
 
 const INTERVAL = 0.001;
@@ -8,6 +10,14 @@ const INTERVAL = 0.001;
 const SECONDS = [1, 2, 3, 4, 5, 10];
 /** The sheet's own limit: samples on the edge of a bin may fall to either side. */
 const INFORMATION_TOLERANCE = { abs: 0.02 };
+
+/** As the sheet counts: equal bins from the least to the largest phase that occurs. */
+function computeInformation(shape: CartShape, start: CartStart, seconds: number): number {
+	const { phases, forces } = readForces(shape, start, seconds);
+	const [low, high] = [Math.min(...phases), Math.max(...phases)];
+	const spread = phases.map((phase) => (phase - low) / (high - low));
+	return computePhaseInformation(spread, forces, { phase: 20, force: 16 });
+}
 
 /** Cases of the cart with a pendulum. */
 export const CART_TOPIC = forInputs(
@@ -36,7 +46,7 @@ export const CART_TOPIC = forInputs(
 				[`mean_square_force_0_${seconds}s`, measureCart(shape, start, seconds).effort]
 			] as const;
 		});
-		const bits = measurePredictability(shape, start, 10);
+		const bits = computeInformation(shape, start, 10);
 		return {
 			...Object.fromEntries(at),
 			mutual_information_bits_10s: new Judged(bits, { tolerance: INFORMATION_TOLERANCE })
