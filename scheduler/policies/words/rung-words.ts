@@ -5,7 +5,10 @@ export const RUNG_WORDS: Readonly<Record<LadderStep['rung'], { asks: string; pas
 	limits: { asks: 'May the person go on today?', passed: 'Yes: no limit is reached.' },
 	person: { asks: 'Must somebody look first?', passed: 'No: nothing is held.' },
 	recovery: { asks: 'Is a recovery block due?', passed: 'No: no perturbation has failed.' },
-	obligations: { asks: 'Is a block due?', passed: 'No: no probe, clamp, washout, retention or transfer block is due.' },
+	obligations: {
+		asks: 'Is a block due?',
+		passed: 'No: no probe, clamp, washout, retention or transfer block is due.'
+	},
 	data: { asks: 'Can the last block be used?', passed: 'Yes: it shows one steady cloud.' },
 	target: { asks: 'Does the person hit?', passed: 'Yes: the mean lies on the target.' },
 	running: { asks: 'Is a perturbation running?', passed: 'No.' },
