@@ -8,7 +8,8 @@ import { computeEllipsoid } from '../../../../variability/compute-ellipsoid.ts';
 import {
 	computeCoverageFactor,
 	computeMeanFactor,
-	computeNextTrialFactor
+	computeNextTrialFactor,
+	type FactorRequest
 } from '../../../../variability/ellipsoid-factors.ts';
 import {
 	computeFluctuationExponent,
@@ -32,16 +33,20 @@ import { matrix, numbers, readTrials, requireOk, trialNames } from './case-input
 const divisor = z.literal('n-1').default('n-1');
 const withScales = { divisor, scales: numbers.optional() };
 const level = z.number().gt(0).lt(1);
-const kinds = z.enum(['coverage chi-square', 'mean (Hotelling)', 'next trial', 'unit sigma']);
 
 /** Ellipsoids of one cloud, and how it lies to the solutions. */
 export const STRUCTURE_TOPICS: TopicGroup = {
 	ellipsoid: firstOf(
 		forInputs(
-			z.strictObject({ n: listSchema, d: listSchema, level }),
-			({ n, d, level: probability }) => ({
+			z.strictObject({
+				n: listSchema,
+				d: listSchema,
+				level,
+				kind: z.string().default('next trial')
+			}),
+			({ n, d, level: probability, kind }) => ({
 				c2: n.map((trialCount, i) =>
-					computeNextTrialFactor({ trialCount, variableCount: at(d, n, i), probability })
+					factorOf(kind, { trialCount, variableCount: at(d, n, i), probability })
 				)
 			})
 		),
@@ -59,11 +64,16 @@ export const STRUCTURE_TOPICS: TopicGroup = {
 		forInputs(
 			z.strictObject({
 				...trialNames,
-				...{ kind: kinds, level: level.optional(), c2: z.number().positive().optional() }
+				...{ kind: z.string(), level: level.optional(), c2: z.number().positive().optional() }
 			}),
 			({ kind, level: probability = 0.95, c2, ...inputs }, datasets) => {
 				const trials = readTrials(inputs, datasets);
-				return describeEllipsoid(trials, c2 ?? factorOf(kind, trials, probability));
+				const request = {
+					trialCount: trials.length,
+					variableCount: trials[0]?.length ?? 0,
+					probability
+				};
+				return describeEllipsoid(trials, c2 ?? factorOf(kind, request));
 			}
 		)
 	),
@@ -128,12 +138,13 @@ function at(values: number[], all: number[], i: number): number {
 	return repeat(values, all.length)[i] ?? Number.NaN;
 }
 
-function factorOf(kind: z.output<typeof kinds>, trials: number[][], probability: number): number {
-	const variableCount = trials[0]?.length ?? 0;
-	const request = { trialCount: trials.length, variableCount, probability };
-	if (kind === 'mean (Hotelling)') return computeMeanFactor(request);
-	if (kind === 'next trial') return computeNextTrialFactor(request);
-	return kind === 'unit sigma' ? 1 : computeCoverageFactor(request);
+/** @throws {RangeError} a kind that none of its words tells */
+function factorOf(kind: string, request: FactorRequest): number {
+	if (/\b(next|prediction)\b/i.test(kind)) return computeNextTrialFactor(request);
+	if (/\b(mean|hotelling)\b/i.test(kind)) return computeMeanFactor(request);
+	if (/\b(coverage|chi-square)\b/i.test(kind)) return computeCoverageFactor(request);
+	if (/\bunit\b/i.test(kind)) return 1;
+	throw new RangeError(`no ellipsoid of the kind “${kind}”`);
 }
 
 function describeEllipsoid(trials: number[][], c2: number) {
