@@ -4,6 +4,9 @@ import { readNumbers, type Datasets } from '../../topic.ts';
 export const numbers = z.array(z.number());
 export const matrix = z.array(numbers);
 
+/** What sums of squares are divided by; nothing else is offered. */
+export const divisor = z.literal('n-1').default('n-1');
+
 /** Names with which a case tells its trials: a dataset, all of its columns or some. */
 export const trialNames = { dataset: z.string(), columns: z.array(z.string()).optional() };
 

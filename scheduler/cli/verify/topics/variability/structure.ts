@@ -1,6 +1,5 @@
 import { z } from 'zod';
-import { multiplyVector, type Matrix } from '../../../../linear-algebra/vector.ts';
-import { splitRowSpace } from '../../../../linear-algebra/row-space.ts';
+import type { Matrix } from '../../../../linear-algebra/vector.ts';
 import { computeSymmetricEigen } from '../../../../linear-algebra/symmetric-eigen.ts';
 import { computeArmPosture } from '../../../../tasks/models/arm.ts';
 import { computeCloudAlignment } from '../../../../variability/cloud-alignment.ts';
@@ -11,27 +10,14 @@ import {
 	computeNextTrialFactor,
 	type FactorRequest
 } from '../../../../variability/ellipsoid-factors.ts';
-import {
-	computeFluctuationExponent,
-	computeLagOne
-} from '../../../../variability/fluctuation-analysis.ts';
-import {
-	computeGoalSensitivity,
-	splitGoalSeries
-} from '../../../../variability/goal-sensitivity.ts';
+import { computeGoalSensitivity } from '../../../../variability/goal-sensitivity.ts';
 import { computeSquaredDistances } from '../../../../variability/mahalanobis.ts';
-import {
-	computeCovariance,
-	computeMeanVector,
-	computeStandardDeviation
-} from '../../../../variability/moments.ts';
+import { computeCovariance, computeMeanVector } from '../../../../variability/moments.ts';
 import { computeToleranceFactor } from '../../../../variability/tolerance-factor.ts';
 import { computeManifoldVariance } from '../../../../variability/uncontrolled-manifold.ts';
 import { firstOf, forInputs, Judged, listSchema, repeat, type TopicGroup } from '../../topic.ts';
-import { matrix, numbers, readTrials, requireOk, trialNames } from './case-inputs.ts';
+import { divisor, matrix, numbers, readTrials, requireOk, trialNames } from './case-inputs.ts';
 
-const divisor = z.literal('n-1').default('n-1');
-const withScales = { divisor, scales: numbers.optional() };
 const level = z.number().gt(0).lt(1);
 
 /** Ellipsoids of one cloud, and how it lies to the solutions. */
@@ -107,31 +93,7 @@ export const STRUCTURE_TOPICS: TopicGroup = {
 			eigenvalue_ratio: found.eigenvalueRatio,
 			aspect_ratio: found.aspectRatio
 		};
-	}),
-	gem: firstOf(
-		forInputs(
-			z.strictObject({ ...trialNames, J: matrix, divisor, scales: numbers.optional() }),
-			({ J, scales, ...inputs }, datasets) => {
-				const trials = readTrials(inputs, datasets);
-				return { ...describeGoal(trials, J), ...describeSeries(trials, J, scales) };
-			}
-		),
-		forInputs(
-			z.strictObject({
-				...trialNames,
-				normal: numbers,
-				tangent: numbers.optional(),
-				...withScales
-			}),
-			({ normal, scales, ...inputs }, datasets) =>
-				describeSeries(readTrials(inputs, datasets), [normal], scales)
-		),
-		forInputs(
-			z.strictObject({ ...trialNames, tangent: numbers, ...withScales }),
-			({ tangent, scales, ...inputs }, datasets) =>
-				describeSeries(readTrials(inputs, datasets), splitRowSpace([tangent]).complement, scales)
-		)
-	)
+	})
 };
 
 function at(values: number[], all: number[], i: number): number {
@@ -173,41 +135,4 @@ function describeManifold(trials: number[][], J: Matrix) {
 		...{ delta_V_z: found.indexZ, half_log_ratio_identity: found.indexZ },
 		result_sd: requireOk(computeGoalSensitivity(computeCovariance(trials), J)).goalSd
 	};
-}
-
-function describeGoal(trials: number[][], J: Matrix) {
-	const found = requireOk(computeGoalSensitivity(computeCovariance(trials), J));
-	const results = trials.map((trial) => multiplyVector(J, trial)[0] ?? 0);
-	return {
-		...{ goal_sd: found.goalSd, goal_cov: found.goalCovariance },
-		goal_sd_from_results: computeStandardDeviation(results),
-		singular_value: found.singularValues[0],
-		singular_values: found.singularValues,
-		...{ body_sd_normal: found.acrossSd, body_sd_total: found.totalSd },
-		alignment_factor: found.alignmentFactor
-	};
-}
-
-/** Series along (T) and across (P) the solutions, each with the names that cases use for it. */
-function describeSeries(trials: number[][], J: Matrix, scales: number[] | undefined) {
-	const { along, across } = splitGoalSeries(trials, computeMeanVector(trials), J);
-	const [T, P] = [describeOne(along[0] ?? [], scales), describeOne(across[0] ?? [], scales)];
-	return {
-		...{ lag1_T: T.lag1, lag1_P: P.lag1, dfa_T: T.dfa, dfa_P: P.dfa },
-		...{ lag1_delta_T: T.lag1, lag1_delta_P: P.lag1, dfa_delta_T: T.dfa, dfa_delta_P: P.dfa },
-		...{ lag1_tangent: T.lag1, lag1_normal: P.lag1, dfa_tangent: T.dfa, dfa_normal: P.dfa },
-		...{ sd_T: T.sd, sd_P: P.sd }
-	};
-}
-
-function describeOne(series: readonly number[], scales: number[] | undefined) {
-	return {
-		lag1: valueOf(computeLagOne(series)),
-		dfa: valueOf(computeFluctuationExponent(series, scales)),
-		sd: computeStandardDeviation(series)
-	};
-}
-
-function valueOf(measure: { ok: true; value: number } | { ok: false }): number | undefined {
-	return measure.ok ? measure.value : undefined;
 }
