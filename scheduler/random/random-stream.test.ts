@@ -2,7 +2,12 @@ import { describe, expect, it } from 'vitest';
 import { computeChiSquareSurvival } from '../statistics/chi-square.ts';
 import { computeNormalCdf } from '../statistics/normal.ts';
 import { drawBelow, drawNormal, drawOrder, drawUniform } from './random-stream.ts';
-import { createSeededStream, resumeSeededStream, seedFromText } from './seeded-stream.ts';
+import {
+	createSeededStream,
+	createSeededStreams,
+	resumeSeededStream,
+	seedFromText
+} from './seeded-stream.ts';
 
 function listWords(words: number[]) {
 	const left = [...words];
@@ -80,6 +85,21 @@ describe('seeded streams', () => {
 		const high = firsts.filter((word) => word >= 2 ** 31).length;
 		// Within four standard errors of one half.
 		expect(Math.abs(high - 500)).toBeLessThan(4 * Math.sqrt(250));
+	});
+
+	it('replicates come out the same, however many workers share them and in whatever order', () => {
+		const replicate = (stream: ReturnType<typeof createSeededStream>) =>
+			drawNormal(stream) + drawNormal(stream);
+		const alone = createSeededStreams(11, 0, 24).map(replicate);
+		for (const workerCount of [2, 3, 7]) {
+			const results = new Array<number>(24).fill(Number.NaN);
+			for (let worker = workerCount - 1; worker >= 0; worker -= 1)
+				for (let i = worker; i < 24; i += workerCount)
+					results[i] = replicate(createSeededStream(11, i));
+			expect(results).toEqual(alone);
+		}
+		const halves = [createSeededStreams(11, 12, 12), createSeededStreams(11, 0, 12)];
+		expect([...(halves[1] ?? []), ...(halves[0] ?? [])].map(replicate)).toEqual(alone);
 	});
 
 	it('goes on from its state', () => {
