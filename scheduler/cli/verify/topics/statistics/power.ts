@@ -18,7 +18,7 @@ import {
 import { approximateWelchPower, computeWelchPower } from '../../../../power/welch-power.ts';
 import { firstOf, HOW_CHECKED, OneOf, type Answers, type Topic } from '../../topic.ts';
 import { computePooledPower } from './pooled-power.ts';
-import { forRows, readNumber as number, readSides, type Row } from './rows.ts';
+import { forRows, inRows, readNumber as number, readSides, type Row } from './rows.ts';
 
 const TEST = ['alpha', 'sides', 'tails', 'strict'] as const;
 
@@ -172,6 +172,17 @@ function readMixed(row: Row, f: number, effect: MixedAnovaDesign['effect']): Mix
 	};
 }
 
+/** Noncentrality and degrees of freedom of method sheet E. */
+function describeMixed(design: MixedAnovaDesign): Answers {
+	const { groupCount: k, measurementCount: m, totalN: n, correlation, f, effect } = design;
+	const { epsilon = 1 } = design;
+	const size = n * m * f * f;
+	const [between, df] = [size / (1 + (m - 1) * correlation), epsilon * (m - 1)];
+	const lambda = effect === 'between' ? between : (size * epsilon) / (1 - correlation);
+	const df1 = effect === 'between' ? k - 1 : effect === 'within' ? df : df * (k - 1);
+	return { lambda, ncp: lambda, df1, df2: effect === 'between' ? n - k : df * (n - k) };
+}
+
 function readMixedEffect(value: unknown): MixedAnovaDesign['effect'] {
 	const text = String(value);
 	if (text === 'between' || text === 'within' || text === 'interaction') return text;
@@ -183,7 +194,7 @@ const mixed = firstOf(
 	...['effect', 'type'].map((effect) =>
 		forRows({ needed: [...MIXED, 'f', effect], optional: ['epsilon', 'alpha'] }, (row) => {
 			const design = readMixed(row, number(row, 'f'), readMixedEffect(row[effect]));
-			return { power: computeMixedAnovaPower(design) };
+			return { power: computeMixedAnovaPower(design), ...describeMixed(design) };
 		})
 	),
 	forRows(
@@ -228,26 +239,37 @@ const ancova = firstOf(
 	)
 );
 
-/** Slopes; the measuring times are a list, so that inputs do not run in parallel. */
+const SLOPE_NAMES = {
+	difference: ['delta', 'delta_slope', 'slope_difference', 'difference'],
+	slopeSd: ['sd_slope', 'sigma_b', 'sd_b', 'sigma_slope'],
+	residualSd: ['sd_residual', 'sigma', 'sd_resid', 'sigma_e', 'sd_error'],
+	times: ['times', 'days', 't', 'S_xx', 'sxx', 'Sxx']
+};
+
+/** Slopes; the measuring times are a list, or their sum of squares, so inputs do not run in parallel. */
 const slope: Topic = (inputs, datasets) => {
-	const { times, ...rest } = inputs;
-	if (!Array.isArray(times)) return undefined;
-	const list = times.map(Number);
-	return forRows(
-		{ needed: ['n_per_group', 'delta', 'sd_slope', 'sd_residual'], optional: TEST },
-		(row) => {
-			const n = number(row, 'n_per_group');
-			return {
-				power: withStrict(row, (strict) =>
-					computeSlopePower({
-						...{ slopeDifference: number(row, 'delta'), n1: n, n2: n, times: list },
-						...{ slopeSd: number(row, 'sd_slope'), residualSd: number(row, 'sd_residual') },
-						...{ ...readTest(row), strict }
-					})
-				)
-			};
-		}
-	)(rest, datasets);
+	const found = Object.entries(SLOPE_NAMES).map(
+		([what, names]) => [what, names.find((name) => name in inputs)] as const
+	);
+	if (found.some(([, name]) => name === undefined)) return undefined;
+	const names = Object.fromEntries(found);
+	const name = (what: keyof typeof SLOPE_NAMES) => names[what] ?? '';
+	const { [name('times')]: given, ...rest } = inputs;
+	const times = Array.isArray(given) ? given.map(Number) : { sumOfSquares: Number(given) };
+	const needed = ['n_per_group', name('difference'), name('slopeSd'), name('residualSd')];
+	return forRows({ needed, optional: TEST }, (row) => {
+		const n = number(row, 'n_per_group');
+		return {
+			df: 2 * n - 2,
+			power: withStrict(row, (strict) =>
+				computeSlopePower({
+					...{ slopeDifference: number(row, name('difference')), n1: n, n2: n, times },
+					...{ slopeSd: number(row, name('slopeSd')), residualSd: number(row, name('residualSd')) },
+					...{ ...readTest(row), strict }
+				})
+			)
+		};
+	})(rest, datasets);
 };
 
 const PROPORTIONS = ['p1', 'p2'] as const;
@@ -329,8 +351,10 @@ const attrition = firstOf(
 );
 
 /** Power and numbers of people. */
-export const POWER: Topic = firstOf(
-	...twoSample,
-	...paired,
-	...[welch, anova, mixed, ancova, slope, proportions, equivalence, clusters, attrition]
+export const POWER: Topic = inRows(
+	firstOf(
+		...twoSample,
+		...paired,
+		...[welch, anova, mixed, ancova, slope, proportions, equivalence, clusters, attrition]
+	)
 );

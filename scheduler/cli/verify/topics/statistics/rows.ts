@@ -32,6 +32,19 @@ export function forRows(
 	};
 }
 
+const rowListSchema = z.array(z.record(z.string(), scalar)).min(1);
+
+/** A topic whose inputs may also stand row by row, under the one name `rows`. */
+export function inRows(topic: Topic): Topic {
+	return (inputs, datasets) => {
+		if (Object.keys(inputs).join() !== 'rows') return topic(inputs, datasets);
+		const rows = rowListSchema.parse(inputs['rows']);
+		const names = Object.keys(rows[0] ?? {});
+		const columns = names.map((name) => [name, rows.map((row) => row[name])]);
+		return topic(Object.fromEntries(columns), datasets);
+	};
+}
+
 function hasNames(
 	inputs: Inputs,
 	{ needed, optional = [] }: { needed: readonly string[]; optional?: readonly string[] }
