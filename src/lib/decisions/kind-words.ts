@@ -1,5 +1,7 @@
-/** Kinds of block in plain words. */
-const words: Record<string, string> = {
+import type { DecisionKind } from '$scheduler/policies/policy-memory';
+
+/** Kinds of block in plain words, every one that the engine can name. */
+const words: Readonly<Record<DecisionKind, string>> = {
 	baseline: 'baseline',
 	practice: 'plain practice',
 	region: 'penalized region',
@@ -18,8 +20,32 @@ const words: Record<string, string> = {
 };
 
 /** A kind of block as it stands in a sentence. */
-export function describeKind(kind: string): string {
-	return words[kind] ?? kind;
+export function describeKind(kind: DecisionKind): string {
+	return words[kind];
+}
+
+/** Whether a decision of this kind brings trials that a rig can run. */
+const hasTrials: Readonly<Record<DecisionKind, boolean>> = {
+	baseline: true,
+	practice: true,
+	region: true,
+	shift: true,
+	probe: true,
+	washout: true,
+	recovery: true,
+	maintenance: true,
+	retention: true,
+	clamp: true,
+	transfer: true,
+	rest: false,
+	stop: false,
+	hold: false,
+	wait: false
+};
+
+/** False for a rest, a stop, a hold and a wait: they have no block of their own to be used. */
+export function hasBlockToRun(kind: DecisionKind): boolean {
+	return hasTrials[kind];
 }
 
 /** How a decision stands, for lists. */

@@ -1,6 +1,7 @@
 import type { Fault, RigLimit } from './fault';
 import { findComparisonFaults } from './find-comparison-faults';
 import { findGapFaults } from './find-gap-faults';
+import { findPolicyFaults } from './find-policy-faults';
 import { findRuleFaults } from './find-rule-faults';
 import { findTaskFaults } from './find-task-faults';
 import { findVisitFaults } from './find-visit-faults';
@@ -13,6 +14,7 @@ export function findFaults(draft: ProtocolDraft, rigs: readonly RigLimit[]): Fau
 		...findVisitFaults(draft, rigs),
 		...findGapFaults(draft),
 		...findRuleFaults(draft),
+		...findPolicyFaults(draft),
 		...findComparisonFaults(draft)
 	];
 }

@@ -1,5 +1,6 @@
 import { equaliseBlockLengths, policySettingsSchema } from '$scheduler/policies/policy-settings';
 import { taskRecordSchema } from '$scheduler/tasks/task-record';
+import { buildPolicy } from './build-policy';
 import { readClockText } from './clock-text';
 import type { Fault } from './fault';
 import { hasAdaptiveTime } from './has-adaptive-time';
@@ -40,25 +41,6 @@ function toFaults(
 		text: `${message}.`,
 		remedy: 'Correct this value.'
 	}));
-}
-
-function buildPolicy({ aims, settle, otherPolicy, visits, limits }: ProtocolDraft) {
-	const { region, shift } = aims;
-	const adaptive = visits.flatMap(({ blocks }) => blocks).find((b) => b.purpose === 'adaptive');
-	const other = (key: string) => (otherPolicy[key] ?? {}) as Record<string, unknown>;
-	return {
-		...otherPolicy,
-		blockTrials: adaptive?.trials ?? 60,
-		aims:
-			region.isOn || shift.isOn
-				? {
-						...(region.isOn ? { region: { share: region.share, escapes: region.escapes } } : {}),
-						...(shift.isOn ? { shift: { share: shift.share, goal: shift.goal } } : {})
-					}
-				: undefined,
-		settle: { ...other('settle'), minBlocks: settle.minBlocks, maxBlocks: settle.maxBlocks },
-		limits: { ...other('limits'), trialsPerDay: Math.min(2000, limits.trialsPerVisit ?? 2000) }
-	};
 }
 
 function buildContent(draft: ProtocolDraft) {

@@ -1,9 +1,10 @@
+import type { DecisionKind } from '$scheduler/policies/policy-memory';
 import { readPuck } from '../../support/puck-protocol';
 
 type Expected = {
 	participants: {
 		participant: string;
-		blocks: { day: number; trials: number; decision: { kind: string; code: string } }[];
+		blocks: { day: number; trials: number; decision: { kind: DecisionKind; code: string } }[];
 	}[];
 };
 
@@ -31,7 +32,7 @@ export function addColumn(file: { name: string; text: string }, column: string, 
 }
 
 /** What the first block of somebody must lead to in the adaptive arm. */
-export function expectDecision(like: string): { kind: string; code: string } {
+export function expectDecision(like: string): { kind: DecisionKind; code: string } {
 	const person = expected.participants.find(({ participant }) => participant === like);
 	const decision = person?.blocks.find(({ day }) => day === 1)?.decision;
 	if (!decision) throw new Error(`no block of ${like}`);

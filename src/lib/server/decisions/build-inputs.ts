@@ -5,7 +5,7 @@ import {
 } from '$scheduler/policies/policy-settings';
 import { taskRecordSchema } from '$scheduler/tasks/task-record';
 import type { DecisionInputsInput } from '$scheduler/policies/decision-record';
-import type { ExecutedKind } from '$scheduler/policies/policy-memory';
+import type { DecisionKind, ExecutedKind } from '$scheduler/policies/policy-memory';
 import type { PolicyStateInput } from '$scheduler/policies/policy-state';
 import { EXECUTED_KINDS } from '$scheduler/policies/policy-memory';
 import { findEffectiveBlock, type BlockPlanned } from './effective-block';
@@ -126,12 +126,12 @@ function isComplete(execution: (number | null)[]): execution is number[] {
  */
 export function findBlockThatRan(place: Slot, decided: StoredDecision | null): BlockPlanned {
 	const plain = place.purpose === 'adaptive' ? 'practice' : place.purpose;
-	const fallback = { kind: plain, parameters: { trials: place.trials } };
+	const fallback: BlockPlanned = { kind: plain, parameters: { trials: place.trials } };
 	if (!decided?.wasIssued) return fallback;
 	return findEffectiveBlock(decided) ?? fallback;
 }
 
-function readKind(kind: string): ExecutedKind {
+function readKind(kind: DecisionKind): ExecutedKind {
 	const known = EXECUTED_KINDS.find((found) => found === kind);
 	if (!known) throw new RangeError(`a block of kind ${kind} cannot have run`);
 	return known;

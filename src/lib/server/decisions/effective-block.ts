@@ -1,6 +1,10 @@
 import { z } from 'zod';
+import { DECISION_KINDS } from '$scheduler/policies/policy-memory';
 
-const planSchema = z.object({ kind: z.string(), parameters: z.record(z.string(), z.unknown()) });
+const planSchema = z.object({
+	kind: z.enum(DECISION_KINDS),
+	parameters: z.record(z.string(), z.unknown())
+});
 export type BlockPlanned = z.infer<typeof planSchema>;
 
 type Decided = {

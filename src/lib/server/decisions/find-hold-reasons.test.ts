@@ -2,7 +2,7 @@ import { describe, expect, it } from 'vitest';
 import { findHoldReasons } from './find-hold-reasons';
 
 const rails = { automaticCoverMax: 0.3, automaticReachSdMax: 3.5, fallback: 'practice' as const };
-const region = { kind: 'region', code: 'ONLY-AIM', coverShare: 0.2, reachSd: 3 };
+const region = { kind: 'region' as const, code: 'ONLY-AIM', coverShare: 0.2, reachSd: 3 };
 
 describe('findHoldReasons', () => {
 	it('lets a region inside the guard rails run', () => {
@@ -15,13 +15,23 @@ describe('findHoldReasons', () => {
 		expect(beyond.map((reason) => reason.code)).toEqual(['COVER-HIGH', 'REACH-FAR']);
 	});
 
-	it('always holds what the rule itself leaves to a person', () => {
-		const hold = { kind: 'hold', code: 'OUTLIERS', coverShare: null, reachSd: null };
-		expect(findHoldReasons(hold, rails)).toEqual([{ code: 'OUTLIERS', values: {} }]);
+	it.each([
+		['hold', 'OUTLIERS'],
+		['stop', 'PAIN'],
+		['wait', 'LATE-WAIT'],
+		['rest', 'FATIGUE']
+	] as const)('always holds a %s: it has no trials of its own', (kind, code) => {
+		const choice = { kind, code, coverShare: null, reachSd: null };
+		expect(findHoldReasons(choice, rails)).toEqual([{ code, values: {} }]);
 	});
 
 	it('never holds plain blocks', () => {
-		const practice = { kind: 'practice', code: 'COOL-DOWN', coverShare: null, reachSd: null };
+		const practice = {
+			kind: 'practice' as const,
+			code: 'COOL-DOWN',
+			coverShare: null,
+			reachSd: null
+		};
 		expect(findHoldReasons(practice, rails)).toEqual([]);
 	});
 });

@@ -1,9 +1,11 @@
+import type { DecisionKind } from '$scheduler/policies/policy-memory';
+import { hasBlockToRun } from '$lib/decisions/kind-words';
 import type { ProtocolContent } from '$lib/protocol/protocol-content';
 
 export type HoldReason = { code: string; values: Record<string, number> };
 
 type Choice = {
-	kind: string;
+	kind: DecisionKind;
 	code: string;
 	/** Share of the traced zero-error line inside the region, where one was placed. */
 	coverShare: number | null;
@@ -12,14 +14,14 @@ type Choice = {
 };
 
 /**
- * Why a decision may not act by itself; empty when it is inside the guard rails. Kinds `hold` and
- * `stop` always wait for a person.
+ * Why a decision may not act by itself; empty when it is inside the guard rails. Kinds without
+ * trials of their own (rest, stop, hold, wait) always wait for a person.
  */
 export function findHoldReasons(
 	choice: Choice,
 	rails: ProtocolContent['guardRails']
 ): HoldReason[] {
-	if (choice.kind === 'hold' || choice.kind === 'stop') return [{ code: choice.code, values: {} }];
+	if (!hasBlockToRun(choice.kind)) return [{ code: choice.code, values: {} }];
 	if (choice.kind !== 'region') return [];
 	const reasons: HoldReason[] = [];
 	if (choice.coverShare !== null && choice.coverShare > rails.automaticCoverMax) {

@@ -1,15 +1,14 @@
 import { eq } from 'drizzle-orm';
-import { decisionRecordSchema, type DecisionRecord } from '$scheduler/policies/decision-record';
-import { explainRecord } from '$scheduler/policies/explain';
+import type { DecisionRecord } from '$scheduler/policies/decision-record';
 import { computeWilsonInterval } from '$scheduler/statistics/wilson-interval';
 import { describeKind } from '$lib/decisions/kind-words';
 import type { Grant } from '$lib/server/access/require-permission';
 import type { Clock } from '$lib/server/clock';
 import type { Database } from '$lib/server/db/client';
 import { decision, lab, person as personTable } from '$lib/server/db/schema';
+import { describeRecord, readRecord } from './describe-record';
 import { findEffectiveBlock } from './effective-block';
 import { loadPerson, type PersonOnRecord, type StoredDecision } from './load-person';
-import { pictureCloud } from './picture-cloud';
 
 /** One decision with everything an approver needs to settle it, as plain data. */
 export type DecisionCard = NonNullable<Awaited<ReturnType<typeof loadDecisionCard>>>;
@@ -26,7 +25,6 @@ export async function loadDecisionCard(
 	const { person, stored } = found;
 	const record = readRecord(stored);
 	const [place] = await db.select({ zone: lab.zone }).from(lab).where(eq(lab.id, grant.labId));
-	const explained = explainRecord(record);
 	return {
 		id: stored.id,
 		code: person.code,
@@ -34,19 +32,12 @@ export async function loadDecisionCard(
 		blockNumber: stored.blockNumber,
 		zone: place?.zone ?? 'UTC',
 		nowMs: clock.now(),
-		kind: stored.kind,
-		kindWords: describeKind(stored.kind),
 		state: stored.state,
 		holdReasons: stored.holdReasons,
 		guardRails: person.content.guardRails,
-		coverNever: record.inputs.protocol.place.coverMax,
 		decidedAtMs: stored.decidedAt.getTime(),
 		readyAtMs: stored.readyAt?.getTime() ?? null,
-		explained,
-		weighed: listWeighed(record),
-		region: describeRegion(record),
-		facts: listFacts(record),
-		picture: pictureCloud(record),
+		...describeRecord(record),
 		before: listEarlierRegions(person, stored),
 		way: listWay(person),
 		versions: { engine: stored.engineVersion, runtime: stored.runtimeVersion },
@@ -68,62 +59,6 @@ async function findDecision(db: Database, grant: Grant, decisionId: string) {
 	const person = await loadPerson(db, row.participantId, { lock: false });
 	const stored = person?.decisions.find((candidate) => candidate.id === decisionId);
 	return person && stored ? { person, stored } : null;
-}
-
-/** The stored parts put together as the engine wrote them. */
-export function readRecord(stored: { inputs: string; output: string }): DecisionRecord {
-	const output = JSON.parse(stored.output) as object;
-	return decisionRecordSchema.parse({ ...output, inputs: JSON.parse(stored.inputs) });
-}
-
-/** One row for each share that was weighed. */
-function listWeighed(record: DecisionRecord) {
-	const rungs = [...(record.facts.place ?? []), ...(record.facts.lean ?? [])];
-	const sd = record.facts.geometry?.sdTangent ?? null;
-	return rungs.map((rung) => {
-		const exits = [rung.exitPlus, rung.exitMinus].flatMap((s) => (s === null ? [] : [Math.abs(s)]));
-		const nearest = exits.length > 0 && sd ? Math.min(...exits) / sd : null;
-		return {
-			share: rung.share,
-			lean: rung.lean,
-			wayOutSd: nearest,
-			stay: rung.staySuccess,
-			cover: rung.cover,
-			accepted: rung.accepted,
-			refusal: rung.refusal
-		};
-	});
-}
-
-function describeRegion(record: DecisionRecord) {
-	const region = record.parameters.region;
-	if (!region) return null;
-	const { variables } = record.inputs.task;
-	return {
-		share: region.share,
-		stay: region.stay,
-		reachSd: region.reachSd ?? null,
-		success: region.nearestSuccess ?? null,
-		center: variables.map(({ name, unit }, index) => ({
-			name: name.replaceAll('_', ' '),
-			unit,
-			value: region.centerInUnits?.[index] ?? null
-		}))
-	};
-}
-
-function listFacts(record: DecisionRecord) {
-	const { geometry, gates, band } = record.facts;
-	return {
-		alignmentDeg: geometry?.alignmentDeg ?? null,
-		eigenvalueRatio: geometry?.eigenvalueRatio ?? null,
-		driftP: gates?.pTrend ?? null,
-		outlierShare: gates?.outlierShare ?? null,
-		bandDistance: band?.distance ?? null,
-		bandLimit: band?.limit ?? null,
-		aims: record.inputs.protocol.aims,
-		done: record.memory.done
-	};
 }
 
 /** What the regions before this decision did: hits outside, seen against expected if unmoved. */

@@ -1,4 +1,6 @@
 import { and, eq } from 'drizzle-orm';
+import type { DecisionKind } from '$scheduler/policies/policy-memory';
+import { hasBlockToRun } from '$lib/decisions/kind-words';
 import type { Grant } from '$lib/server/access/require-permission';
 import type { Clock } from '$lib/server/clock';
 import type { Database, Transaction } from '$lib/server/db/client';
@@ -25,7 +27,7 @@ type HeldDecision = {
 	blockNumber: number;
 	output: string;
 	readyAt: Date | null;
-	kind: string;
+	kind: DecisionKind;
 	trials: number;
 };
 
@@ -56,7 +58,7 @@ type Chosen = { ok: true; block: BlockPlanned } | Extract<Settled, { ok: false }
 
 function chooseBlock(held: HeldDecision, input: SettleInput): Chosen {
 	if (input.action === 'plain-practice') return { ok: true, block: planFallback(held.trials) };
-	if (held.kind === 'hold' || held.kind === 'stop') return { ok: false, reason: 'nothing-to-use' };
+	if (!hasBlockToRun(held.kind)) return { ok: false, reason: 'nothing-to-use' };
 	const own = JSON.parse(held.output) as BlockPlanned;
 	const block = { kind: own.kind, parameters: own.parameters };
 	if (input.action === 'use') return { ok: true, block };

@@ -1,3 +1,4 @@
+import type { DecisionKind } from '$scheduler/policies/policy-memory';
 import { index, integer, pgTable, text, uniqueIndex, uuid, jsonb } from 'drizzle-orm/pg-core';
 import { person } from './account';
 import { bytes, instant, randomId } from './columns';
@@ -28,7 +29,7 @@ export const decision = pgTable(
 		inputsDigest: text('inputs_digest').notNull(),
 		inputs: text('inputs').notNull(),
 		output: text('output').notNull(),
-		kind: text('kind').notNull(),
+		kind: text('kind').$type<DecisionKind>().notNull(),
 		code: text('code').notNull(),
 		/** Empty when inside the guard rails; else why a person must look. */
 		holdReasons: jsonb('hold_reasons')

@@ -11,6 +11,7 @@ import {
 	type PersonTraits
 } from '$scheduler/learners/simulated-person';
 import { createSeededStream, type SeededStream } from '$scheduler/random/seeded-stream';
+import { hasBlockToRun } from '$lib/decisions/kind-words';
 import type { ProtocolContent } from '$lib/protocol/protocol-content';
 import { allocateParticipant } from '$lib/server/allocation/allocate-participant';
 import { recordAttendance } from '$lib/server/attendance/record-attendance';
@@ -220,7 +221,7 @@ export async function settleHeld(
 	const settled = which === 'all' ? held : held.slice(which.leave);
 	const grant = await world.grant('approver', 'decision:settle', { studyId });
 	for (const { id, kind } of settled) {
-		const action = kind === 'hold' || kind === 'stop' ? 'plain-practice' : 'use';
+		const action = hasBlockToRun(kind) ? 'use' : 'plain-practice';
 		const reason = action === 'use' ? '' : 'Looked at: the rig is fine, practice goes on.';
 		await settleDecision(db, clock, grant, {
 			decisionId: id,
