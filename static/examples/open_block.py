@@ -18,6 +18,16 @@ import sys
 from jwcrypto import jwe, jwk, jws
 from jwcrypto.common import JWException
 
+# What a block of each kind needs beside its count of trials; any one name of a group will do.
+NEEDS = {
+    "baseline": [], "practice": [], "probe": [], "washout": [], "retention": [], "recovery": [],
+    "maintenance": [],
+    "region": [["region"]],
+    "shift": [["rule", "levels"]],
+    "clamp": [["feedback"]],
+    "transfer": [["targetOffset"]],
+}
+FEEDBACKS = ("shown", "hidden", "clamped-to-zero", "clamped-to-noise")
 SIZE = 16384  # every signed content is filled up with blanks to this size
 
 
@@ -49,8 +59,39 @@ def find_fault(block, wanted, now):
             return f"it is for {name} {block[name]}, not {wanted[name]}"
     if now >= parse_instant(block["expiresAt"]):
         return f"it expired at {block['expiresAt']}"
-    if block["plan"]["parameters"].get("trials", 0) > block["limits"]["trialsPerVisit"]:
-        return "it asks for more trials than the limit"
+    return find_plan_fault(block["plan"], block["limits"], block["variables"])
+
+
+def find_plan_fault(plan, limits, variables):
+    """Why this kind of block cannot be run as it stands, or None."""
+    kind, parameters = plan["kind"], plan["parameters"]
+    if kind not in NEEDS:
+        return f"this rig knows no block of kind {kind}"
+    trials = parameters.get("trials", 0)
+    if not 1 <= trials <= limits["trialsPerVisit"]:
+        return f"it asks for {trials} trials, the limit is {limits['trialsPerVisit']}"
+    for names in NEEDS[kind]:
+        if not any(name in parameters for name in names):
+            return f"a block of kind {kind} needs {' or '.join(names)}"
+    feedback = parameters.get("feedback", "shown")
+    if feedback not in FEEDBACKS:
+        return f"this rig knows no feedback {feedback}"
+    if feedback == "clamped-to-noise" and "clampSd" not in parameters:
+        return "feedback clamped to noise needs clampSd"
+    if len(parameters.get("levels", [0] * trials)) < trials:
+        return "it has fewer levels of the target than trials"
+    return find_region_fault(parameters.get("region"), limits, variables)
+
+
+def find_region_fault(region, limits, variables):
+    """A region's centre must be a movement that this rig allows."""
+    if region is None:
+        return None
+    for variable, coordinate in zip(variables, region["center"]):
+        value = variable["origin"] + variable["scale"] * coordinate
+        most = limits["variableMax"].get(variable["name"])
+        if most is not None and abs(value) > most:
+            return f"its region lies at {variable['name']} {value:g}, the limit is {most:g}"
     return None
 
 

@@ -19,6 +19,8 @@ const content: BundleContent = {
 	protocolHash: 'a'.repeat(64),
 	ruleHash: 'b'.repeat(64),
 	limits: { minutesPerVisit: 60, trialsPerVisit: 300, variableMax: {} },
+	resultUnit: 'm',
+	variables: [{ name: 'release_speed', unit: 'm/s', origin: 2.5, scale: 0.1 }],
 	plan: { kind: 'practice', parameters: { trials: 60 } },
 	fallback: { kind: 'practice', trials: 60 }
 };
@@ -52,6 +54,16 @@ async function openWith(more: string[], sealed?: string) {
 	);
 }
 
+async function openPlan(
+	kind: string,
+	parameters: Record<string, unknown>,
+	variableMax: Record<string, number> = {}
+) {
+	const limits = { ...content.limits, variableMax };
+	const planned = { ...content, limits, plan: { kind, parameters } };
+	return openWith([], await sealBundle(planned, { signing, rigPublicKey: rig }));
+}
+
 describe('the example that opens a block on its rig', () => {
 	it('has the package it needs', () => {
 		expect(
@@ -73,6 +85,37 @@ describe('the example that opens a block on its rig', () => {
 		['a time past its end', ['--now', '2027-03-11T12:00:00Z'], 'it expired']
 	])('refuses %s', async (_, more, words) => {
 		const opened = await openWith(more);
+		expect(opened.status).toBe(1);
+		expect(opened.stderr).toContain(words);
+	});
+
+	const region = { center: [4], shape: [[1]], share: 0.6, stay: 0.2 };
+	const rule = { sigma: 0.1, goal: 0.3 };
+
+	it.each<[string, Record<string, unknown>]>([
+		['clamp', { trials: 60, feedback: 'clamped-to-noise', clampSd: 0.1 }],
+		['transfer', { trials: 60, feedback: 'hidden', targetOffset: 0.2 }],
+		['retention', { trials: 60, feedback: 'hidden' }],
+		['region', { trials: 60, region }],
+		['shift', { trials: 60, rule, level: 0.1 }],
+		['shift', { trials: 2, levels: [0.1, 0.2] }]
+	])('opens a block of kind %s with all it needs', async (kind, parameters) => {
+		const opened = await openPlan(kind, parameters);
+		expect(opened.stderr).toBe('');
+		expect(JSON.parse(opened.stdout)).toMatchObject({ plan: { kind, parameters } });
+	});
+
+	it.each<[string, string, Record<string, unknown>, string]>([
+		['a wait', 'wait', {}, 'no block of kind wait'],
+		['a kind that it does not know', 'other', { trials: 60 }, 'no block of kind other'],
+		['too many trials', 'probe', { trials: 301 }, '301 trials, the limit is 300'],
+		['a clamp that does not say what is shown', 'clamp', { trials: 60 }, 'needs feedback'],
+		['a shift without a course', 'shift', { trials: 60 }, 'needs rule or levels'],
+		['a course shorter than its block', 'shift', { trials: 60, levels: [0.1] }, 'fewer levels'],
+		['a transfer without a target', 'transfer', { trials: 60 }, 'needs targetOffset'],
+		['a region beyond the rig', 'region', { trials: 60, region }, 'release_speed 2.9, the limit']
+	])('refuses %s', async (_, kind, parameters, words) => {
+		const opened = await openPlan(kind, parameters, { release_speed: 2.8 });
 		expect(opened.status).toBe(1);
 		expect(opened.stderr).toContain(words);
 	});

@@ -1,28 +1,27 @@
 import { createTask } from '$scheduler/tasks/create-task';
+import { findSolutions } from '$scheduler/tasks/find-solutions';
+import { createScaledTask } from '$scheduler/tasks/scaled-task';
 import type { TaskRecord } from '$scheduler/tasks/task-record';
+import { visitResults } from './visit-results';
 
-/** Steps of the grid along each variable, by the count of variables. */
-const stepsByCount: readonly number[] = [0, 60, 40, 14, 8, 5];
+/** Scaled distance below which two solutions count as one: a coarse look is enough here. */
+const APART = 1;
+const VARIABLES_MAX = 5;
 
 /**
- * Whether the result takes both signs (or 0) on a grid over the ranges; null when there are too many
- * variables to look.
+ * Whether some execution inside the ranges is perfect: the result takes both signs (or 0), or, for
+ * several results, the engine finds a place where all are 0. Null when there are too many variables to
+ * look.
  */
 export function hasZeroInside(record: TaskRecord): boolean | null {
-	const steps = stepsByCount[record.variables.length];
-	if (steps === undefined) return null;
+	if (record.variables.length > VARIABLES_MAX) return null;
 	const task = createTask(record);
+	if (task.resultCount > 1) return findSolutions(task, createScaledTask(task), APART).length > 0;
 	let [hasLow, hasHigh] = [false, false];
-	const point = record.variables.map(({ min }) => min);
-	const count = (steps + 1) ** record.variables.length;
-	for (let cell = 0; cell < count && !(hasLow && hasHigh); cell++) {
-		record.variables.forEach(({ min, max }, i) => {
-			const step = Math.floor(cell / (steps + 1) ** i) % (steps + 1);
-			point[i] = min + ((max - min) * step) / steps;
-		});
-		const result = task.evaluate(point);
+	visitResults(record, (result) => {
 		hasLow ||= result <= 0;
 		hasHigh ||= result >= 0;
-	}
+		return hasLow && hasHigh;
+	});
 	return hasLow && hasHigh;
 }

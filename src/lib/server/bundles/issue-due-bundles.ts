@@ -1,5 +1,7 @@
 import { and, asc, eq, inArray, isNull, lte, notExists, sql } from 'drizzle-orm';
 import type { JWK } from 'jose';
+import { taskRecordSchema } from '$scheduler/tasks/task-record';
+import type { ProtocolContent } from '$lib/protocol/protocol-content';
 import type { Clock } from '$lib/server/clock';
 import type { Database, Transaction } from '$lib/server/db/client';
 import {
@@ -117,6 +119,7 @@ async function issueBundle(tx: Transaction, services: Services, { decisionId, st
 				),
 				variableMax: place.rig.limits.variableMax
 			},
+			...describeCoordinates(place.content),
 			plan,
 			fallback: { kind: 'practice', trials: Number(plan.parameters.trials) }
 		},
@@ -145,6 +148,15 @@ async function issueBundle(tx: Transaction, services: Services, { decisionId, st
 		}
 	);
 	return true;
+}
+
+/** What the rig needs to read a region's coordinates and a target's level. */
+function describeCoordinates({ task }: ProtocolContent) {
+	const { resultUnit, variables } = taskRecordSchema.parse(task);
+	return {
+		resultUnit,
+		variables: variables.map(({ name, unit, origin, scale }) => ({ name, unit, origin, scale }))
+	};
 }
 
 async function loadPlace(tx: Transaction, decided: { participantId: string; visitNumber: number }) {

@@ -17,6 +17,10 @@ export type BundleContent = {
 	protocolHash: string;
 	ruleHash: string;
 	limits: { minutesPerVisit: number; trialsPerVisit: number; variableMax: Record<string, number> };
+	/** In the order of the region's coordinates: value = origin + scale · coordinate. */
+	variables: { name: string; unit: string; origin: number; scale: number }[];
+	/** Unit of levels, offsets and shown noise. */
+	resultUnit: string;
 	plan: { kind: string; parameters: Record<string, unknown> };
 	/** Runs when this block is refused: plain practice of the same length. */
 	fallback: { kind: 'practice'; trials: number };
