@@ -123,7 +123,18 @@ describe('a formula of one’s own', () => {
 	it('brings a caution when regions cannot be placed for its variables', () => {
 		const draft = formulaDraft('a + b');
 		draft.task.formula.variables.push({ ...unitVariable, name: 'c' });
-		expect(findFaults(draft, rigs).map(({ code }) => code)).toEqual(['region-unplaceable']);
+		expect(findFaults(draft, rigs)).toEqual([]);
+		draft.task.formula.variables.push({ ...unitVariable, name: 'd' });
+		const [caution] = findFaults(draft, rigs);
+		expect(caution).toMatchObject({ code: 'region-unplaceable', level: 'caution' });
+		expect(caution?.text).toContain('3 directions');
+	});
+
+	it('brings a caution when a puck may be let go beyond its target', () => {
+		const draft = draftWith(({ task }) => Object.assign(task.puck, { D: 1 }));
+		const caution = findFaults(draft, rigs).find(({ code }) => code === 'release-beyond-target');
+		expect(caution).toMatchObject({ level: 'caution', place: 'Task' });
+		expect(caution?.text).toContain('1 m');
 	});
 
 	it('refuses two variables of one name', () => {

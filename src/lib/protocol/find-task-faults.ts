@@ -1,6 +1,8 @@
+import { createTask } from '$scheduler/tasks/create-task';
 import type { TaskRecord } from '$scheduler/tasks/task-record';
 import { checkNumber, type Fault } from './fault';
 import { findNameFaults, findVariableFaults } from './find-variable-faults';
+import { findDegenerateFaults } from './find-degenerate-faults';
 import { hasAdaptiveTime } from './has-adaptive-time';
 import { hasZeroInside } from './has-zero-inside';
 import type { ProtocolDraft, TaskDraft } from './protocol-draft';
@@ -21,6 +23,7 @@ export function findTaskFaults(draft: ProtocolDraft): Fault[] {
 	if (faults.length > 0 || !record) return faults;
 	return [
 		...findMissingZero(record, task.type),
+		...findDegenerateFaults(record, task.type === 'puck' ? 'task.puck.D' : 'task.formula.formula'),
 		...(hasAdaptiveTime(draft) && aims.region.isOn ? findUnplaceable(record, task.type) : [])
 	];
 }
@@ -94,13 +97,15 @@ function findMissingZero(record: TaskRecord, type: TaskDraft['type']): Fault[] {
 	];
 }
 
+/** Regions are placed where one or two directions are free; the rest becomes plain practice. */
 function findUnplaceable(record: TaskRecord, type: TaskDraft['type']): Fault[] {
-	const count = record.variables.length;
-	if (count === 2) return [];
+	const { variableCount, resultCount } = createTask(record);
+	const free = variableCount - resultCount;
+	if (free === 1 || free === 2) return [];
 	const text =
-		count === 1
-			? 'With one variable there is only one way to be right, so there is nowhere to drive people to.'
-			: `With ${count} variables the ways to be right form a surface; Ovalry places regions on a line, so it will not place any here.`;
+		free <= 0
+			? 'With as many results as variables there is only one way to be right, so there is nowhere to drive people to.'
+			: `With ${variableCount} variables the ways to be right run in ${free} directions; regions can be placed for one or two, so none is placed here.`;
 	return [
 		{
 			code: 'region-unplaceable',

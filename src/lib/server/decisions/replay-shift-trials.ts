@@ -1,8 +1,9 @@
 import { TargetShift } from '$scheduler/perturbations/target-shift';
 import { shiftRuleSchema } from '$scheduler/perturbations/shift-rule';
-import { policyMemorySchema } from '$scheduler/policies/policy-memory';
+import { blockParametersSchema, policyMemorySchema } from '$scheduler/policies/policy-memory';
 import type { PolicyStateInput } from '$scheduler/policies/policy-state';
 import { createTask } from '$scheduler/tasks/create-task';
+import { isHit, type Task } from '$scheduler/tasks/task';
 import { taskRecordSchema } from '$scheduler/tasks/task-record';
 import type { BlockPlanned } from './effective-block';
 import type { PersonOnRecord, StoredDecision } from './load-person';
@@ -11,26 +12,38 @@ type ShiftTrials = { trials: number[][]; before: StoredDecision | null; planned:
 
 /**
  * A block under a moving target, from its executions: the rule is deterministic, so the level at
- * each trial, and with it the error against the moved target, follow from the results themselves.
+ * each trial, and with it the error against the moved target, follow from the results themselves. A
+ * course that was given trial by trial is taken as it was given.
  */
 export function replayShiftTrials(
 	person: PersonOnRecord,
 	{ trials, before, planned }: ShiftTrials
 ): NonNullable<PolicyStateInput['last']> {
 	const task = createTask(taskRecordSchema.parse(person.content.task));
-	const rule = shiftRuleSchema.parse(planned.parameters.rule);
+	const { levels, rule: declared } = blockParametersSchema.parse(planned.parameters);
+	if (levels && !declared) return { kind: 'shift', trials, ...followCourse(task, trials, levels) };
+	const rule = shiftRuleSchema.parse(declared);
 	const shift = new TargetShift(rule, findRunningState(before));
 	const errors: number[] = [];
 	const hits: boolean[] = [];
 	for (const [index, execution] of trials.entries()) {
 		const error = shift.level - task.evaluate(execution);
-		const hit = Math.abs(error) <= task.tolerance;
+		const hit = isHit(task, error);
 		errors.push(error);
 		hits.push(hit);
 		const isLastOfBlock = index === trials.length - 1;
 		shift.observe({ error, hit, leftToday: null, isLastOfBlock });
 	}
 	return { kind: 'shift', trials, errors, hits, rule };
+}
+
+/** Errors against a course of the target; beyond its end the last level stands. */
+function followCourse(task: Task, trials: number[][], levels: readonly number[]) {
+	const last = levels.at(-1) ?? 0;
+	const errors = trials.map(
+		(execution, index) => (levels[index] ?? last) - task.evaluate(execution)
+	);
+	return { errors, hits: errors.map((error) => isHit(task, error)) };
 }
 
 /** Where the running shift stood when the block began; null for its first block. */
