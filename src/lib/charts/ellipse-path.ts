@@ -1,3 +1,5 @@
+import { computeEllipsoid } from '$scheduler/variability/compute-ellipsoid';
+
 /** A 2-D ellipse {x : (x − center)ᵀ · shape⁻¹ · (x − center) = 1}; shape is factor² × covariance. */
 export interface PlaneEllipse {
 	readonly center: readonly [number, number];
@@ -36,7 +38,7 @@ export type Scale = (value: number) => number;
  *
  * Shapes:  2 × 2 symmetric shape matrix.
  * Units:   half axes in the units of the variables (only meaningful when both share one unit or scale).
- * Method:  eigenvalues of a symmetric 2 × 2 matrix, the smaller by det / larger.
+ * Method:  the engine's ellipsoid of factor 1.
  * Accuracy: every point of the drawn path solves the quadratic form to 1e-9 (ellipse-path.test.ts).
  * @throws {RangeError} a matrix that is not positive definite
  * @example computeEllipseAxes([[4, 0], [0, 1]]) // { long: 2, short: 1, angleRad: 0 }
@@ -47,12 +49,19 @@ export function computeEllipseAxes(shape: PlaneEllipse['shape']): EllipseAxes {
 	if (!(a > 0 && d > 0 && determinant > 0 && Number.isFinite(a + d))) {
 		throw new RangeError('an ellipse requires a positive definite shape matrix');
 	}
-	const larger = (a + d) / 2 + Math.hypot((a - d) / 2, b);
-	return {
-		long: Math.sqrt(larger),
-		short: Math.sqrt(determinant / larger),
-		angleRad: 0.5 * Math.atan2(2 * b, a - d)
-	};
+	const symmetric = [
+		[a, b],
+		[b, d]
+	];
+	const { halfAxes, directions } = computeEllipsoid({
+		mean: [0, 0],
+		covariance: symmetric,
+		factor: 1
+	});
+	const [long = 0, short = 0] = halfAxes;
+	const [x = 1, y = 0] = directions[0] ?? [];
+	// The half turn that looks to the right: a direction and its opposite are one axis.
+	return { long, short, angleRad: x === 0 ? Math.PI / 2 : Math.atan(y / x) };
 }
 
 /**

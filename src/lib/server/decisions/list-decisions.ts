@@ -1,4 +1,5 @@
 import { and, asc, desc, eq, inArray } from 'drizzle-orm';
+import type { DecisionKind } from '$scheduler/policies/policy-memory';
 import { describeKind } from '$lib/decisions/kind-words';
 import type { Grant } from '$lib/server/access/require-permission';
 import type { Database } from '$lib/server/db/client';
@@ -9,7 +10,8 @@ export type DecisionRow = {
 	code: string;
 	visitNumber: number;
 	blockNumber: number;
-	kind: string;
+	kind: DecisionKind;
+	kindWords: string;
 	reason: string;
 	state: 'automatic' | 'held' | 'settled' | 'fallback';
 	decidedAtMs: number;
@@ -59,10 +61,10 @@ function select(db: Database) {
 
 type Selected = Awaited<ReturnType<typeof select>>[number];
 
-function toRow({ decidedAt, readyAt, kind, ...row }: Selected): DecisionRow {
+function toRow({ decidedAt, readyAt, ...row }: Selected): DecisionRow {
 	return {
 		...row,
-		kind: describeKind(kind),
+		kindWords: describeKind(row.kind),
 		decidedAtMs: decidedAt.getTime(),
 		readyAtMs: readyAt?.getTime() ?? null
 	};

@@ -1,6 +1,10 @@
 import { eq } from 'drizzle-orm';
 import type { DecisionRecord } from '$scheduler/policies/decision-record';
+import { explainReason } from '$scheduler/policies/explain';
+import { policySettingsSchema } from '$scheduler/policies/policy-settings';
+import type { WordContext } from '$scheduler/policies/words/read-values';
 import { computeWilsonInterval } from '$scheduler/statistics/wilson-interval';
+import { taskRecordSchema } from '$scheduler/tasks/task-record';
 import { describeKind } from '$lib/decisions/kind-words';
 import type { Grant } from '$lib/server/access/require-permission';
 import type { Clock } from '$lib/server/clock';
@@ -83,15 +87,22 @@ function listEarlierRegions(person: PersonOnRecord, stored: StoredDecision) {
 
 /** The person's way so far: one piece a block, with what was decided and what runs. */
 function listWay(person: PersonOnRecord) {
+	const { resultUnit } = taskRecordSchema.parse(person.content.task);
+	const context = { resultUnit, settings: policySettingsSchema.parse(person.content.policy) };
 	return person.decisions.map((found) => ({
 		id: found.id,
 		visitNumber: found.visitNumber,
 		blockNumber: found.blockNumber,
 		decided: describeKind(found.kind),
 		runs: describeKind(findEffectiveBlock(found)?.kind ?? 'hold'),
-		code: found.code,
+		why: explainFirst(found, context),
 		state: found.state
 	}));
+}
+
+function explainFirst({ output }: StoredDecision, context: WordContext): string {
+	const [reason] = (JSON.parse(output) as Pick<DecisionRecord, 'reasons'>).reasons;
+	return reason ? explainReason(reason, context).text : '';
 }
 
 async function describeSettlement(db: Database, stored: StoredDecision) {
