@@ -137,6 +137,19 @@ describe('freezing', () => {
 		]);
 	});
 
+	it('is refused when the measured properties of the policy speak against it', async () => {
+		const edit = await investigator.grantFor('protocol:edit');
+		const otherPolicy = { shift: { rule: { firstStepSd: 0.5 } } };
+		const draft = { ...finishedDraft(), otherPolicy };
+		await saveDraft(handle.db, edit, { number: 1, revision: 0, draft });
+		const grant = await investigator.grantFor('protocol:freeze');
+		const refused = await freezeVersion(handle.db, clock, grant, { number: 1, revision: 1 });
+		const faults = !refused.ok && refused.reason === 'faults' ? refused.faults : [];
+		expect(faults.map(({ place, text }) => [place, text.split(':')[0]])).toEqual([
+			['Aims, target shift', 'The first step is 0.5 SD']
+		]);
+	});
+
 	it('is refused when the draft changed since it was seen', async () => {
 		const edit = await investigator.grantFor('protocol:edit');
 		await saveDraft(handle.db, edit, { number: 1, revision: 0, draft: finishedDraft() });

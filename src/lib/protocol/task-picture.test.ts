@@ -1,4 +1,5 @@
 import { describe, expect, it } from 'vitest';
+import { taskRecordSchema } from '$scheduler/tasks/task-record';
 import { createPatternDraft } from './patterns';
 import { readTask } from './read-task';
 import { pictureTask } from './task-picture';
@@ -31,5 +32,17 @@ describe('the picture of a task', () => {
 		task.formula = { formula: 'a', resultUnit: '', tolerance: 0.1, variables: [variable] };
 		const record = readTask(task);
 		expect(record && pictureTask(record)).toBeNull();
+	});
+});
+
+describe('a task of two results', () => {
+	it('is drawn as the distance from the target, without a line of perfect trials', () => {
+		const arm = taskRecordSchema.parse({ type: 'arm-endpoint' });
+		const picture = pictureTask(arm);
+		expect(picture?.zeroSet).toEqual([]);
+		expect(picture?.zeroLabel).toBe('');
+		const values = picture?.grid?.values.flat().filter((value) => value !== null) ?? [];
+		expect(values.length).toBeGreaterThan(0);
+		expect(Math.min(...values)).toBeGreaterThanOrEqual(0);
 	});
 });

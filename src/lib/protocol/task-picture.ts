@@ -28,7 +28,8 @@ export function pictureTask(record: TaskRecord): CloudData | null {
 		x: axisOf(first),
 		y: axisOf(second),
 		grid: evaluateErrorGrid(task, window, gridSteps, gridSteps),
-		zeroSet: traceZeroSet(task, window),
+		// Several results give a distance, which has no change of sign to be followed.
+		zeroSet: task.resultCount === 1 ? traceZeroSet(task, window) : [],
 		tolerance: record.tolerance,
 		result: { unit: record.resultUnit, factor: 1 },
 		trials: [],
@@ -43,7 +44,7 @@ export function pictureTask(record: TaskRecord): CloudData | null {
 				label: 'one SD by your scales'
 			}
 		],
-		zeroLabel: 'error 0'
+		zeroLabel: task.resultCount === 1 ? 'error 0' : ''
 	};
 }
 

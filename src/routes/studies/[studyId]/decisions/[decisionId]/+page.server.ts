@@ -18,7 +18,7 @@ export const load: PageServerLoad = async ({ locals, params }) => {
 const refusals = {
 	'not-held': 'It is settled already. Reload the page to see how.',
 	'too-late': 'Its ready hour has come: the fallback runs.',
-	'nothing-to-use': 'The rule asks for a person and has no block of its own. Run plain practice.',
+	'nothing-to-use': 'This decision has no block of its own. Run plain practice.',
 	'out-of-bounds': 'That change is not possible.'
 };
 
