@@ -2,6 +2,14 @@ import { sveltekit } from '@sveltejs/kit/vite';
 import tailwindcss from '@tailwindcss/vite';
 import { defineConfig } from 'vitest/config';
 
+/** Tests that start the built application on a database of their own. */
+const onServers = {
+	globalSetup: ['tests/support/database-setup.ts'],
+	testTimeout: 600_000,
+	hookTimeout: 600_000,
+	maxWorkers: 2
+};
+
 export default defineConfig({
 	plugins: [tailwindcss(), sveltekit()],
 	server: { host: '127.0.0.1', port: 5173 },
@@ -15,19 +23,9 @@ export default defineConfig({
 				testTimeout: 60_000,
 				hookTimeout: 120_000
 			}),
-			project('e2e', ['tests/e2e/**/*.test.ts'], {
-				globalSetup: ['tests/support/database-setup.ts'],
-				testTimeout: 600_000,
-				hookTimeout: 300_000,
-				fileParallelism: false
-			}),
-			// Long: `npm run test:journeys`, `npm run test:start`
-			project('journeys', ['tests/long/**/*.test.ts'], {
-				globalSetup: ['tests/support/database-setup.ts'],
-				testTimeout: 600_000,
-				hookTimeout: 1_200_000,
-				fileParallelism: false
-			}),
+			project('blinding', ['tests/blinding/**/*.test.ts'], onServers),
+			project('e2e', ['tests/e2e/**/*.test.ts'], onServers),
+			// Long: `npm run test:start`
 			project('start', ['tests/start/**/*.test.ts'], {
 				testTimeout: 600_000,
 				hookTimeout: 300_000,

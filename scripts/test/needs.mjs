@@ -2,17 +2,18 @@ import { existsSync } from 'node:fs';
 import { findProgram, requirePackages } from '../start/debian-packages.mjs';
 import { findPostgres } from '../start/find-postgres.mjs';
 
-const databaseTiers = ['integration', 'e2e', 'journeys', 'start'];
+const databaseTiers = ['integration', 'blinding', 'e2e', 'start'];
 
 export const needsCluster = (tiers) =>
-	tiers.some((tier) => ['integration', 'e2e', 'journeys'].includes(tier));
+	tiers.some((tier) => ['integration', 'blinding', 'e2e'].includes(tier));
 export const needsBuild = (tiers) => tiers.some((tier) => databaseTiers.includes(tier));
 
 /** Debian packages that the chosen tiers need. */
 export async function requireTestPackages(tiers, context) {
 	const wanted = [];
 	if (tiers.some((tier) => databaseTiers.includes(tier))) wanted.push(postgres);
-	if (tiers.includes('e2e') || tiers.includes('journeys')) wanted.push(chromium, jwcrypto);
+	if (tiers.includes('e2e')) wanted.push(chromium);
+	if (tiers.includes('e2e') || tiers.includes('integration')) wanted.push(jwcrypto);
 	await requirePackages(wanted, context);
 }
 

@@ -3,17 +3,25 @@ import { join, relative, resolve } from 'node:path';
 import { StartFailure } from '../start/failure.mjs';
 
 /** The quick tier, in the order in which it runs: cheap and telling things first. */
-export const tiers = ['types', 'unit', 'reference', 'architecture', 'integration', 'e2e'];
+export const tiers = [
+	'types',
+	'unit',
+	'reference',
+	'architecture',
+	'integration',
+	'blinding',
+	'e2e'
+];
 
 /** Tiers with commands of their own, which `npm test` leaves out. */
-export const longTiers = ['journeys', 'start'];
+export const longTiers = ['start'];
 
 const places = {
 	'tests/reference/': 'reference',
 	'tests/architecture/': 'architecture',
 	'tests/integration/': 'integration',
+	'tests/blinding/': 'blinding',
 	'tests/e2e/': 'e2e',
-	'tests/long/': 'journeys',
 	'tests/start/': 'start'
 };
 

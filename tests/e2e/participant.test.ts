@@ -131,7 +131,11 @@ describe('a participant with a phone', () => {
 		await keepScreenshot(page, 'participant-old-link-phone');
 		const refused = await fetch(link, {
 			method: 'POST',
-			headers: { accept: 'text/html', origin: app.origin, 'content-type': 'application/x-www-form-urlencoded' },
+			headers: {
+				accept: 'text/html',
+				origin: app.origin,
+				'content-type': 'application/x-www-form-urlencoded'
+			},
 			body: 'answer=accepted&note='
 		});
 		expect(refused.status).toBe(409);

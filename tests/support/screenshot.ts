@@ -4,6 +4,13 @@ import type { Page } from 'playwright-core';
 
 const folder = resolve(import.meta.dirname, '../../test-results/screens');
 
+/** Pictures that follow their width are drawn anew a frame after it changed. */
+export async function waitForPaint(page: Page): Promise<void> {
+	await page.evaluate(
+		() => new Promise((done) => requestAnimationFrame(() => requestAnimationFrame(done)))
+	);
+}
+
 /**
  * Keeps a picture of the page as a test artefact, in test-results/screens.
  *
@@ -13,6 +20,7 @@ const folder = resolve(import.meta.dirname, '../../test-results/screens');
 export async function keepScreenshot(page: Page, name: string): Promise<string> {
 	mkdirSync(folder, { recursive: true });
 	const file = join(folder, `${name.replace(/[^\w-]+/g, '-')}.png`);
+	await waitForPaint(page);
 	await page.screenshot({ path: file, fullPage: true });
 	return file;
 }

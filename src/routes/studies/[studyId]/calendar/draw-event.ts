@@ -19,7 +19,7 @@ function drawPiece(props: GridProps): HTMLElement {
 	if (props.bookingId !== null || props.kind === 'candidate') line.append(drawOval());
 	line.append(makeText('span', 'piece-title', props.title));
 	piece.append(line);
-	if (props.detail) piece.append(makeText('span', 'piece-detail', props.detail));
+	if (props.detail) piece.append(' ', makeText('span', 'piece-detail', props.detail));
 	return piece;
 }
 

@@ -7,7 +7,7 @@ export type TrialFile = { name: string; text: string };
 export async function readTrials(desk: Desk, file: TrialFile): Promise<void> {
 	await desk.section('Visits');
 	await desk.follow('Upload trials');
-	await desk.page.getByLabel('Trial file').setInputFiles({
+	await desk.hands.give(desk.page.getByLabel('Trial file'), {
 		name: file.name,
 		mimeType: 'text/csv',
 		buffer: Buffer.from(file.text)
@@ -22,7 +22,7 @@ export async function storeTrials(desk: Desk, count: number): Promise<void> {
 /** Fetches the file of a ready block from the board. */
 export async function fetchBlock(desk: Desk, code: string, visit: number) {
 	const saving = desk.page.waitForEvent('download');
-	await desk.link(`Fetch the file of ${code}, visit ${visit}, block 1`).click();
+	await desk.follow(`fetch its file of ${code}, visit ${visit}, block 1`);
 	const file = await saving;
 	return { name: file.suggestedFilename(), text: readFileSync(await file.path(), 'utf8') };
 }

@@ -14,7 +14,7 @@ export async function createStudy(desk: Desk, facts: StudyFacts): Promise<string
 	await desk.fill('Public title', facts.publicTitle);
 	await desk.fill('Letters of the codes', facts.prefix);
 	await desk.fill('Phone for participants', facts.phone);
-	await desk.page.getByRole('radio', { name: /^Two arms over eight visits/ }).check();
+	await desk.tick('radio', /^Two arms over eight visits/);
 	await desk.press('Create the study');
 	await desk.page.waitForURL(/\/studies\/[0-9a-f-]{36}\/protocol\/draft$/);
 	return desk.path().replace('/protocol/draft', '');
@@ -26,7 +26,7 @@ const visit = (desk: Desk, label: string) => ({
 });
 
 export async function removeVisit(desk: Desk, label: string): Promise<void> {
-	await visit(desk, label).summary.click();
+	await desk.hands.press(visit(desk, label).summary);
 	await desk.press(`Remove ${label}`);
 	await visit(desk, label).summary.waitFor({ state: 'detached' });
 }
@@ -34,23 +34,23 @@ export async function removeVisit(desk: Desk, label: string): Promise<void> {
 /** A visit of twenty minutes with one block of sixty trials. */
 export async function shortenVisit(desk: Desk, label: string): Promise<void> {
 	const { row, summary } = visit(desk, label);
-	await summary.click();
+	await desk.hands.press(summary);
 	for (const [field, minutes] of [
 		['Length', '20'],
 		['Set-up', '5'],
 		['Clean-up', '5']
 	] as const) {
-		await row.getByLabel(new RegExp(`^${field}`)).fill(minutes);
+		await desk.hands.write(row.getByLabel(new RegExp(`^${field}`)), minutes);
 	}
 	const remove = row.getByRole('button', { name: /^Remove block/ });
-	while ((await remove.count()) > 0) await remove.last().click();
-	await row.getByLabel(/^Trials of block 1/).fill('60');
-	await summary.click();
+	while ((await remove.count()) > 0) await desk.hands.press(remove.last());
+	await desk.hands.write(row.getByLabel(/^Trials of block 1/), '60');
+	await desk.hands.press(summary);
 }
 
 /** Regions only, from the first block on, and everything but the mildest held for a person. */
 export async function setRule(desk: Desk): Promise<void> {
-	await desk.page.getByRole('checkbox', { name: /^Target shift/ }).uncheck();
+	await desk.hands.tick(desk.page.getByRole('checkbox', { name: /^Target shift/ }), false);
 	await desk.fill(/^Share of perturbed trials/, '1');
 	await desk.fill(/^Until escaped/, '3');
 	await desk.fill('Plain blocks first, at least', '1');
@@ -62,11 +62,11 @@ export async function setComparison(desk: Desk): Promise<void> {
 	await desk.fill('People per arm', '26');
 	const sources = desk.page.getByLabel('Where it comes from');
 	await desk.fill(/^Effect d/, '0.8');
-	await sources.nth(0).fill('A pilot of twelve invented people');
+	await desk.hands.write(sources.nth(0), 'A pilot of twelve invented people');
 	await desk.fill(/^Share of people lost/, '0.1');
-	await sources.nth(1).fill('The lab’s last three studies');
+	await desk.hands.write(sources.nth(1), 'The lab’s last three studies');
 	await desk.fill(/^Share of the effect lost/, '0.05');
-	await sources.nth(2).fill('One missed day in twenty');
+	await desk.hands.write(sources.nth(2), 'One missed day in twenty');
 }
 
 export async function freeze(desk: Desk): Promise<void> {

@@ -39,9 +39,9 @@ export async function addRig(desk: Desk, facts: RigFacts): Promise<void> {
 	await desk.fill('Name', facts.name);
 	await desk.fill(/^Longest visit/, facts.minutes);
 	await desk.fill(/^Most trials in a visit/, facts.trials);
-	await desk.page.getByRole('checkbox', { name: /^Powered/ }).check();
+	await desk.tick('checkbox', /^Powered/);
 	await desk.fill(/^Largest values/, facts.limits);
-	await desk.page.getByRole('checkbox', { name: /^Qualified staff/ }).check();
+	await desk.tick('checkbox', /^Qualified staff/);
 	await desk.press('Add the rig');
 	await desk.see(`${facts.name} is added`);
 	await desk.fill('Weekly hours', facts.hours);
@@ -93,7 +93,7 @@ export async function invite(desk: Desk, lab: string, member: { name: string; em
 /** Gives a role on the page Team, which must be open. */
 export async function giveRole(desk: Desk, name: string, role: string): Promise<void> {
 	await desk.choose('Member', name);
-	await desk.page.getByRole('radio', { name: new RegExp(`^${role}`) }).check();
+	await desk.tick('radio', new RegExp(`^${role}`));
 	await desk.press(`Make ${name} ${role.toLowerCase()}`);
 	await desk.see(new RegExp(`${name} is (to be )?${role.toLowerCase()}`));
 }

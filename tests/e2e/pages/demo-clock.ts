@@ -3,7 +3,7 @@ import type { Desk } from './desk';
 /** Moves the demo clock to a time of the lab's clock, such as `2027-03-08T08:00`, by its own page. */
 export async function moveClock(desk: Desk, local: string): Promise<void> {
 	await desk.open('/demo');
-	await desk.page.getByLabel(/Or to a time/).fill(local);
+	await desk.fill(/Or to a time/, local);
 	await desk.press('Move the clock there');
 	await desk.see(`${spoken(local.slice(0, 10))}, ${local.slice(11, 16)}`);
 }

@@ -26,29 +26,24 @@ export async function pasteRows(desk: Desk, people: readonly Newcomer[]): Promis
 /** Chooses everybody in the list and says what is to be done with them. */
 export async function chooseEverybody(desk: Desk): Promise<number> {
 	await desk.section('People');
-	await desk.page
-		.getByRole('link', { name: /^All \d/ })
-		.or(desk.link(/^All$/))
-		.first()
-		.click();
+	await desk.follow(/^All( \d|$)/);
+	await desk.page.waitForURL(/view=all/);
 	const boxes = desk.page.getByRole('checkbox', { name: /^Choose / });
-	for (const box of await boxes.all()) await box.check();
+	for (const box of await boxes.all()) await desk.hands.tick(box);
 	return boxes.count();
 }
 
 export async function openPerson(desk: Desk, code: string): Promise<void> {
 	await desk.section('People');
-	await desk.page.getByRole('searchbox', { name: 'Find a code' }).fill(code);
-	await desk.page.getByRole('link', { name: code, exact: true }).click();
+	await desk.hands.write(desk.page.getByRole('searchbox', { name: 'Find a code' }), code);
+	await desk.hands.press(desk.page.getByRole('link', { name: code, exact: true }));
 	await desk.page.getByRole('heading', { level: 1, name: code }).waitFor();
 }
 
 /** Opens one of the person's visits, by its row in their table. */
 export async function openVisit(desk: Desk, code: string, visit: string): Promise<void> {
 	await openPerson(desk, code);
-	await desk.page
-		.getByRole('row', { name: new RegExp(`^${visit}`) })
-		.getByRole('link')
-		.click();
+	const row = desk.page.getByRole('row', { name: new RegExp(`^${visit}`) });
+	await desk.hands.press(row.getByRole('link'));
 	await desk.page.getByRole('heading', { level: 1, name: `${code}, ${visit}` }).waitFor();
 }

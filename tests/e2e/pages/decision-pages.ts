@@ -20,9 +20,7 @@ export async function listDecisions(desk: Desk): Promise<ListedDecision[]> {
 
 export async function openDecision(desk: Desk, code: string): Promise<void> {
 	await desk.section('Decisions');
-	await desk.page
-		.getByRole('row', { name: new RegExp(`^${code} visit 2`) })
-		.getByRole('link')
-		.click();
+	const row = desk.page.getByRole('row', { name: new RegExp(`^${code} visit 2`) });
+	await desk.hands.press(row.getByRole('link'));
 	await desk.page.getByRole('heading', { level: 1, name: `Next block for ${code}` }).waitFor();
 }

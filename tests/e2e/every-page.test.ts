@@ -1,0 +1,125 @@
+import { afterAll, beforeAll, describe, expect, it } from 'vitest';
+import type { Page } from 'playwright-core';
+import { startApp, type AppServer } from '../support/app-server';
+import { findAxeFaults } from '../support/axe';
+import { openBrowser, type TestBrowser } from '../support/browser';
+import { keepScreenshot, waitForPaint } from '../support/screenshot';
+
+/**
+ * Every page of the demo that a role is offered, found by its links alone: it answers, complains of
+ * nothing, and reads well on a wide screen and a phone, in the light and in the dark.
+ */
+
+const roles = [
+	'steward',
+	'investigator',
+	'statistician',
+	'unblinded-statistician',
+	'coordinator',
+	'operator',
+	'approver',
+	'monitor'
+] as const;
+
+let app: AppServer;
+let browser: TestBrowser;
+/** Pages that some role before has looked at closely already, by their pattern. */
+const looked = new Set<string>();
+
+beforeAll(async () => {
+	[app, browser] = await Promise.all([startApp('demo'), openBrowser()]);
+});
+afterAll(async () => {
+	await browser?.close();
+	await app?.stop();
+});
+
+/** `/studies/3f…/people/9a…` and `/studies/77…/people/01…` are one page. */
+function patternOf(path: string): string {
+	return path.replace(/[0-9a-f]{8}-[0-9a-f-]{27}/g, 'one').replace(/\/\d+(?=\/|$)/g, '/n');
+}
+
+/** The application's own pages that this one leads to; files and other sites are none. */
+async function readLinks(page: Page): Promise<string[]> {
+	const hrefs = await page.evaluate(() =>
+		[...document.querySelectorAll<HTMLAnchorElement>('a[href]:not([download])')]
+			.filter((link) => link.checkVisibility())
+			.map((link) => link.getAttribute('href') ?? '')
+	);
+	return hrefs
+		.map((href) => new URL(href, page.url()))
+		.filter(({ origin }) => origin === app.origin)
+		.map(({ pathname }) => pathname);
+}
+
+async function visitEveryPage(page: Page, start: string, look: (pattern: string) => Promise<void>) {
+	const waiting = [start];
+	const seen = new Map<string, string>();
+	for (let path = waiting.shift(); path !== undefined; path = waiting.shift()) {
+		const pattern = patternOf(path);
+		if (seen.has(pattern)) continue;
+		seen.set(pattern, path);
+		const reply = await page.goto(app.origin + path);
+		expect(reply?.status(), `${path} answers`).toBe(200);
+		await look(pattern);
+		waiting.push(...(await readLinks(page)));
+	}
+	return [...seen.keys()];
+}
+
+/** Wide and narrow, light and dark, of one page as it stands. */
+async function lookClosely(page: Page, name: string): Promise<string[]> {
+	const faults: string[] = [];
+	await page.setViewportSize({ width: 390, height: 844 });
+	faults.push(...(await findAxeFaults(page)));
+	await keepScreenshot(page, `${name}-phone`);
+	await page.setViewportSize({ width: 360, height: 780 });
+	await waitForPaint(page);
+	const overflow = await page.evaluate(
+		() => document.documentElement.scrollWidth - document.documentElement.clientWidth
+	);
+	if (overflow > 0) faults.push(`${page.url()}: ${overflow} px too wide at 360 px`);
+	await page.setViewportSize({ width: 1440, height: 900 });
+	await keepScreenshot(page, name);
+	await page.emulateMedia({ colorScheme: 'dark' });
+	await waitForPaint(page);
+	faults.push(...(await findAxeFaults(page)));
+	await keepScreenshot(page, `${name}-dark`);
+	await page.emulateMedia({ colorScheme: 'light' });
+	return faults;
+}
+
+describe('every page that is offered', () => {
+	it.each(roles)('to the %s', async (role) => {
+		const person = app.people.find((one) => one.role === role);
+		expect(person, `the demo has a ${role}`).toBeDefined();
+		const { page, complaints, close } = await browser.openScreen();
+		await page.goto(`${app.origin}/demo`);
+		await page.getByRole('button', { name: `Enter as ${person?.name}` }).click();
+		await page.waitForURL((url) => url.pathname !== '/demo');
+		const faults: string[] = [];
+		const pages = await visitEveryPage(page, new URL(page.url()).pathname, async (pattern) => {
+			if (looked.has(pattern)) return;
+			looked.add(pattern);
+			await page.waitForLoadState('networkidle');
+			faults.push(...(await lookClosely(page, `page-${pattern.replaceAll('/', '-')}`)));
+		});
+		expect(faults).toEqual([]);
+		expect(complaints).toEqual([]);
+		expect(pages.length).toBeGreaterThan(3);
+		await close();
+	});
+
+	it('to somebody who is not signed in', async () => {
+		const { page, complaints, close } = await browser.openScreen();
+		const faults: string[] = [];
+		for (const path of ['/', '/signin', '/demo', '/nowhere']) {
+			await page.goto(app.origin + path);
+			faults.push(...(await findAxeFaults(page)));
+			faults.push(...(await lookClosely(page, `open${path.replaceAll('/', '-')}`)));
+		}
+		expect(faults).toEqual([]);
+		expect(complaints).toEqual([]);
+		await close();
+	});
+});

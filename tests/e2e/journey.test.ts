@@ -1,0 +1,4 @@
+import { goTheWholePath } from './journey/whole-path';
+
+/** From an empty lab to a block on its rig, as most people do it. */
+goTheWholePath('pointer');
