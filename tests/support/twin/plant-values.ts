@@ -35,7 +35,8 @@ export async function plantValues(sql: postgres.Sql, { world, studyId }: Played)
 	return [
 		plant('arm of a person', 'zq-arm', 'arm', whole),
 		plant('reason code of a decision', 'ZQ-CODE', 'decision', whole, true),
-		plant('kind of a decision', 'zq-kind', 'decision', whole, true),
+		// No kind has this name: whoever may see decisions reads what it stands for instead.
+		plant('kind of a decision', 'zq-kind', 'decision', whole),
 		plant('reason of a settlement', 'zq reason of the approver', 'decision', whole, true),
 		plant(
 			'size of a penalized region',

@@ -66,6 +66,7 @@ async function findDue(db: Database, clock: Clock): Promise<Due[]> {
 					inArray(booking.state, ['booked', 'attended'])
 				)
 			)
+			.innerJoin(participant, eq(participant.id, decision.participantId))
 			.innerJoin(rig, eq(rig.id, booking.rigId))
 			.where(
 				and(
@@ -78,7 +79,7 @@ async function findDue(db: Database, clock: Clock): Promise<Due[]> {
 				)
 			)
 			// The order shows in the record: it may depend on nothing that an arm changes.
-			.orderBy(asc(decision.readyAt), asc(decision.participantId), asc(decision.blockNumber))
+			.orderBy(asc(decision.readyAt), asc(participant.number), asc(decision.blockNumber))
 	);
 }
 

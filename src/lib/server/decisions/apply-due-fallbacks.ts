@@ -1,7 +1,7 @@
 import { and, asc, eq, lte } from 'drizzle-orm';
 import type { Clock } from '$lib/server/clock';
 import type { Database } from '$lib/server/db/client';
-import { decision } from '$lib/server/db/schema';
+import { decision, participant } from '$lib/server/db/schema';
 import { applyFallback } from './settle-decision';
 
 /** Gives every held decision whose ready hour has come the protocol's fallback. */
@@ -9,8 +9,9 @@ export async function applyDueFallbacks(db: Database, clock: Clock): Promise<num
 	const due = await db
 		.select({ decisionId: decision.id, studyId: decision.studyId })
 		.from(decision)
+		.innerJoin(participant, eq(participant.id, decision.participantId))
 		.where(and(eq(decision.state, 'held'), lte(decision.readyAt, new Date(clock.now()))))
-		.orderBy(asc(decision.readyAt), asc(decision.participantId));
+		.orderBy(asc(decision.readyAt), asc(participant.number));
 	let count = 0;
 	for (const { decisionId, studyId } of due) {
 		const reason = 'Nobody settled it by the ready hour.';

@@ -15,7 +15,7 @@ const readyAt = sql`lower(k.during) - make_interval(secs => (v.content->>'readyL
 
 async function findUndecided(db: Database, nowMs: number): Promise<string[]> {
 	const rows = await db.execute<{ participant_id: string }>(sql`
-		select distinct k.participant_id
+		select k.participant_id
 		from booking k
 		join participant p on p.id = k.participant_id and p.state <> 'withdrawn'
 		join protocol_version v on v.id = p.protocol_version_id
@@ -27,13 +27,13 @@ async function findUndecided(db: Database, nowMs: number): Promise<string[]> {
 				select 1 from decision d
 				where d.participant_id = k.participant_id and d.visit_number = k.visit_number
 					and d.block_number = ${firstBlock})
-		order by k.participant_id`);
+		group by k.participant_id, p.number order by p.number`);
 	return rows.map((row) => row.participant_id);
 }
 
 async function findMovedVisits(db: Database): Promise<string[]> {
 	const rows = await db.execute<{ participant_id: string }>(sql`
-		select distinct k.participant_id
+		select k.participant_id
 		from booking k
 		join participant p on p.id = k.participant_id
 		join protocol_version v on v.id = p.protocol_version_id
@@ -44,6 +44,6 @@ async function findMovedVisits(db: Database): Promise<string[]> {
 			and not exists (
 				select 1 from block b
 				where b.participant_id = k.participant_id and b.visit_number = k.visit_number)
-		order by k.participant_id`);
+		group by k.participant_id, p.number order by p.number`);
 	return rows.map((row) => row.participant_id);
 }
