@@ -23,9 +23,9 @@ export default defineConfig({
 				testTimeout: 60_000,
 				hookTimeout: 120_000
 			}),
-			project('blinding', ['tests/blinding/**/*.test.ts'], onServers),
 			project('e2e', ['tests/e2e/**/*.test.ts'], onServers),
-			// Long: `npm run test:start`
+			// Long: `npm run test:blinding`, `npm run test:start`
+			project('blinding', ['tests/blinding/**/*.test.ts'], onServers),
 			project('start', ['tests/start/**/*.test.ts'], {
 				testTimeout: 600_000,
 				hookTimeout: 300_000,

@@ -3,18 +3,10 @@ import { join, relative, resolve } from 'node:path';
 import { StartFailure } from '../start/failure.mjs';
 
 /** The quick tier, in the order in which it runs: cheap and telling things first. */
-export const tiers = [
-	'types',
-	'unit',
-	'reference',
-	'architecture',
-	'integration',
-	'blinding',
-	'e2e'
-];
+export const tiers = ['types', 'unit', 'reference', 'architecture', 'integration', 'e2e'];
 
 /** Tiers with commands of their own, which `npm test` leaves out. */
-export const longTiers = ['start'];
+export const longTiers = ['blinding', 'start'];
 
 const places = {
 	'tests/reference/': 'reference',
