@@ -59,7 +59,7 @@ def find_fault(block, wanted, now):
             return f"it is for {name} {block[name]}, not {wanted[name]}"
     if now >= parse_instant(block["expiresAt"]):
         return f"it expired at {block['expiresAt']}"
-    return find_plan_fault(block["plan"], block["limits"], block["variables"])
+    return find_plan_fault(block["plan"], block["limits"], block.get("variables", []))
 
 
 def find_plan_fault(plan, limits, variables):
