@@ -24,7 +24,8 @@ export default defineConfig({
 				hookTimeout: 120_000
 			}),
 			project('e2e', ['tests/e2e/**/*.test.ts'], onServers),
-			// Long: `npm run test:blinding`, `npm run test:start`
+			// Long: `npm run test:blinding`, `npm run test:pages`, `npm run test:start`
+			project('pages', ['tests/pages/**/*.test.ts'], onServers),
 			project('blinding', ['tests/blinding/**/*.test.ts'], onServers),
 			project('start', ['tests/start/**/*.test.ts'], {
 				testTimeout: 600_000,

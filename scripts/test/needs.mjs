@@ -2,17 +2,17 @@ import { existsSync } from 'node:fs';
 import { findProgram, requirePackages } from '../start/debian-packages.mjs';
 import { findPostgres } from '../start/find-postgres.mjs';
 
-const databaseTiers = ['integration', 'blinding', 'e2e', 'start'];
+const databaseTiers = ['integration', 'blinding', 'e2e', 'pages', 'start'];
 
 export const needsCluster = (tiers) =>
-	tiers.some((tier) => ['integration', 'blinding', 'e2e'].includes(tier));
+	tiers.some((tier) => ['integration', 'blinding', 'e2e', 'pages'].includes(tier));
 export const needsBuild = (tiers) => tiers.some((tier) => databaseTiers.includes(tier));
 
 /** Debian packages that the chosen tiers need. */
 export async function requireTestPackages(tiers, context) {
 	const wanted = [];
 	if (tiers.some((tier) => databaseTiers.includes(tier))) wanted.push(postgres);
-	if (tiers.includes('e2e')) wanted.push(chromium);
+	if (tiers.includes('e2e') || tiers.includes('pages')) wanted.push(chromium);
 	if (tiers.includes('e2e') || tiers.includes('integration')) wanted.push(jwcrypto);
 	await requirePackages(wanted, context);
 }

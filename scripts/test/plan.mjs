@@ -6,7 +6,7 @@ import { StartFailure } from '../start/failure.mjs';
 export const tiers = ['types', 'unit', 'reference', 'architecture', 'integration', 'e2e'];
 
 /** Tiers with commands of their own, which `npm test` leaves out. */
-export const longTiers = ['blinding', 'start'];
+export const longTiers = ['blinding', 'pages', 'start'];
 
 const places = {
 	'tests/reference/': 'reference',
@@ -14,6 +14,7 @@ const places = {
 	'tests/integration/': 'integration',
 	'tests/blinding/': 'blinding',
 	'tests/e2e/': 'e2e',
+	'tests/pages/': 'pages',
 	'tests/start/': 'start'
 };
 
