@@ -49,7 +49,7 @@ const SUM_NOISE = 1e-13;
  * Method:  Levenberg and Marquardt with the largest column norms as scale, each step by a Householder
  *          factorisation of the damped Jacobian (ml-matrix), never by normal equations; done when the
  *          tangent plane explains less than 1e-9 of the residuals, or no step changes a parameter.
- * Source:  J. J. Moré, Lecture Notes in Mathematics 630 (1978); stop rule of D. M. Bates and
+ * Source:  J. J. Moré, in: Numerical Analysis, Springer (1978); stop rule of D. M. Bates and
  *          D. G. Watts, Technometrics 23 (1981).
  * Accuracy: 6 significant digits of the certified values, 4 for Lanczos3 and MGH17;
  *          tests/reference/nist-curves.test.ts.
