@@ -113,6 +113,14 @@ describe('the engine', () => {
 			'learners',
 			'simulation'
 		],
+		protocol: [
+			...['random', 'linear-algebra', 'statistics', 'tasks', 'variability', 'perturbations'],
+			'policies'
+		],
+		design: [
+			...['random', 'linear-algebra', 'statistics', 'tasks', 'variability', 'perturbations'],
+			...['policies', 'learners', 'simulation', 'booking', 'power', 'protocol']
+		],
 		allocation: ['random'],
 		booking: ['random'],
 		calibration: [

@@ -7,7 +7,7 @@ import {
 	computeNextTrialFactor
 } from '$scheduler/variability/ellipsoid-factors';
 import { computeCovariance, computeMeanVector } from '$scheduler/variability/moments';
-import type { ProtocolContent } from '$lib/protocol/protocol-content';
+import type { ProtocolContent } from '$scheduler/protocol/protocol-content';
 import { openDatabase, type DatabaseHandle } from '$lib/server/db/client';
 import { block, participant, upload } from '$lib/server/db/schema';
 import { readStoredTrials } from '$lib/server/decisions/read-stored-trials';

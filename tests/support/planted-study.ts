@@ -23,7 +23,7 @@ import {
 	type StudyRole
 } from '$lib/server/db/schema';
 import { createPeopleKeys, type PeopleKeys } from '$lib/server/keys/people-keys';
-import { protocolContentSchema, type ProtocolContent } from '$lib/protocol/protocol-content';
+import { protocolContentSchema, type ProtocolContent } from '$scheduler/protocol/protocol-content';
 
 /** A Tuesday morning, before a lab that keeps Lisbon's time opens. */
 export const plantedNowMs = Date.UTC(2027, 2, 2, 6, 30);

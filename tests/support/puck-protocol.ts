@@ -1,5 +1,5 @@
 import { readFileSync } from 'node:fs';
-import type { ProtocolContent } from '$lib/protocol/protocol-content';
+import type { ProtocolContent } from '$scheduler/protocol/protocol-content';
 import { useEngineNames } from '../../scheduler/cli/verify/sheet-names';
 
 const folder = new URL('../data/puck_blocks/', import.meta.url);

@@ -1,6 +1,6 @@
 import { randomUUID } from 'node:crypto';
 import { exportJWK, generateKeyPair } from 'jose';
-import type { ProtocolContent } from '$lib/protocol/protocol-content';
+import type { ProtocolContent } from '$scheduler/protocol/protocol-content';
 import type { Grant } from '$lib/server/access/require-permission';
 import type { Permission } from '$lib/server/access/permissions';
 import type { Database } from '$lib/server/db/client';

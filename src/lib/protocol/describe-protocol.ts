@@ -2,7 +2,7 @@ import { describeAims, describeGuardRails } from './describe-rule';
 import { describeTask } from './describe-task';
 import { describeVisits } from './describe-visits';
 import { writeClockText } from './clock-text';
-import type { ProtocolContent } from './protocol-content';
+import type { ProtocolContent } from '$scheduler/protocol/protocol-content';
 
 /** One line of the readable protocol; `key` names the same line in every version. */
 export type ProtocolLine = { key: string; term: string; text: string };
@@ -34,12 +34,14 @@ export function describeProtocol(
 function describeArms({ arms }: ProtocolContent): ProtocolLine[] {
 	const words = {
 		adaptive: 'each block is chosen for the person from how they vary',
-		fixed: 'every block is the protocol’s own, the same for all: plain practice'
+		fixed: 'every block is the protocol’s own, the same for all',
+		yoked: 'each block of adaptive time repeats what a partner was given in'
 	};
-	return arms.map(({ key, name, rule }) => ({
+	const nameOf = (key: string) => arms.find((arm) => arm.key === key)?.name ?? key;
+	return arms.map(({ key, name, rule, master }) => ({
 		key: `arm-${key}`,
 		term: name,
-		text: words[rule]
+		text: master ? `${words[rule]} ${nameOf(master)}` : words[rule]
 	}));
 }
 

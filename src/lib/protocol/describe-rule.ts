@@ -1,7 +1,7 @@
 import { policySettingsSchema } from '$scheduler/policies/policy-settings';
 import type { ProtocolLine, ProtocolPart } from './describe-protocol';
 import { hasAdaptiveTime } from './has-adaptive-time';
-import type { ProtocolContent } from './protocol-content';
+import type { ProtocolContent } from '$scheduler/protocol/protocol-content';
 
 /** What practice aims at in the adaptive arm. */
 export function describeAims(content: ProtocolContent): ProtocolPart {

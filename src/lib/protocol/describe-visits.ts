@@ -1,5 +1,5 @@
 import type { ProtocolLine } from './describe-protocol';
-import type { VisitPlan } from './protocol-content';
+import type { VisitPlan } from '$scheduler/protocol/visit-plan';
 import { countTrials } from './visit-name';
 
 /** One line a visit: blocks, trials, minutes, and the hours since the visit before. */

@@ -1,4 +1,5 @@
 import { describe, expect, it } from 'vitest';
+import { plainBlock } from './empty-parts';
 import { findFaults } from './find-faults';
 import { createPatternDraft } from './patterns';
 import type { ProtocolDraft } from './protocol-draft';
@@ -47,7 +48,7 @@ describe('findFaults', () => {
 		['retention-too-soon', (draft) => setGap(draft, 7, { minHours: 2, targetHours: 30 })],
 		['gap-order', (draft) => setGap(draft, 2, { minHours: 25 })],
 		['adaptive-lengths', (draft) => setTrials(draft, 3, 1, 40)],
-		['over-trials', (draft) => draft.visits[2]?.blocks.push({ purpose: 'adaptive', trials: 100 })],
+		['over-trials', (draft) => draft.visits[2]?.blocks.push(plainBlock('adaptive', 100))],
 		['over-minutes', (draft) => (draft.limits.minutesPerVisit = 45)],
 		['over-every-rig', (draft) => Object.assign(draft.visits[1] ?? {}, { minutes: 95 })],
 		['no-block', (draft) => Object.assign(draft.visits[4] ?? {}, { blocks: [] })],
@@ -91,7 +92,7 @@ describe('a visit too long for every rig', () => {
 	it('is a caution where nothing is issued to a rig', () => {
 		const draft = createPatternDraft('single-visit');
 		draft.task.type = 'puck';
-		draft.visits[0]?.blocks.push({ purpose: 'baseline', trials: 980 });
+		draft.visits[0]?.blocks.push(plainBlock('baseline', 980));
 		const found = findFaults(draft, rigs).map(({ code, level }) => [code, level]);
 		expect(found).toEqual([['over-every-rig', 'caution']]);
 	});

@@ -3,7 +3,8 @@ import { checkNumber, type Fault } from './fault';
 import { findDayChain, type ChainGap, type ChainRules } from './find-day-chain';
 import { findBookingFaults } from './find-booking-faults';
 import { visitName } from './visit-name';
-import type { GapDraft, ProtocolDraft } from './protocol-draft';
+import type { GapDraft } from './draft-parts';
+import type { ProtocolDraft } from './protocol-draft';
 
 /** What is wrong with the hours between visits and with the rules of booking. */
 export function findGapFaults(draft: ProtocolDraft): Fault[] {

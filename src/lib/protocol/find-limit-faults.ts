@@ -1,5 +1,6 @@
 import { faultAt, type Fault, type RigLimit } from './fault';
-import type { ProtocolDraft, VisitDraft } from './protocol-draft';
+import type { VisitDraft } from './draft-parts';
+import type { ProtocolDraft } from './protocol-draft';
 import { countTrials, visitName } from './visit-name';
 
 /** A visit against the limits of the protocol itself. */

@@ -2,7 +2,8 @@ import { checkNumber, checkText, faultAt, type Fault, type RigLimit } from './fa
 import { findLimitFaults, findRigFaults } from './find-limit-faults';
 import { visitName } from './visit-name';
 import { hasAdaptiveTime } from './has-adaptive-time';
-import type { ProtocolDraft, VisitDraft } from './protocol-draft';
+import type { VisitDraft } from './draft-parts';
+import type { ProtocolDraft } from './protocol-draft';
 
 /** What is wrong with visits and their blocks: lengths, limits, order of kinds. */
 export function findVisitFaults(draft: ProtocolDraft, rigs: readonly RigLimit[]): Fault[] {

@@ -1,5 +1,5 @@
 import { describeProtocol } from './describe-protocol';
-import type { ProtocolContent } from './protocol-content';
+import type { ProtocolContent } from '$scheduler/protocol/protocol-content';
 import { canonicalText } from './canonical-text';
 
 export type Difference = {

@@ -1,4 +1,6 @@
-import type { GapDraft, ProtocolDraft, VariableDraft, VisitDraft } from './protocol-draft';
+import type { GapDraft, VisitDraft } from './draft-parts';
+import { emptyAnalysis, plainBlock, usualMissedDay, usualYoking } from './empty-parts';
+import type { ProtocolDraft, VariableDraft } from './protocol-draft';
 
 export const patternNames = ['two-arms', 'single-visit', 'blank'] as const;
 export type PatternName = (typeof patternNames)[number];
@@ -49,8 +51,8 @@ function createTwoArms(): ProtocolDraft {
 	return {
 		...createBlank(),
 		arms: [
-			{ key: 'adaptive', name: 'Adaptive', rule: 'adaptive' },
-			{ key: 'fixed', name: 'Fixed', rule: 'fixed' }
+			{ key: 'adaptive', name: 'Adaptive', rule: 'adaptive', master: null },
+			{ key: 'fixed', name: 'Fixed', rule: 'fixed', master: null }
 		],
 		visits: [baseline, ...days, retention],
 		comparison: {
@@ -67,9 +69,9 @@ function createSingleVisit(): ProtocolDraft {
 	return {
 		...blank,
 		task: { ...blank.task, type: 'formula' },
-		arms: [{ key: 'recorded', name: 'Recorded', rule: 'fixed' }],
+		arms: [{ key: 'recorded', name: 'Recorded', rule: 'fixed', master: null }],
 		visits: [visit('Recorded visit', 'baseline', [60], dailyGap)],
-		limits: { minutesPerVisit: 120, trialsPerVisit: 2000 }
+		limits: { ...blank.limits, minutesPerVisit: 120, trialsPerVisit: 2000 }
 	};
 }
 
@@ -81,14 +83,15 @@ function createBlank(): ProtocolDraft {
 			puck: { mu: 0.18, g: 9.81, D: 2, tolerance: 0.12, variables: puckVariables() },
 			formula: { formula: '', resultUnit: '', tolerance: null, variables: [emptyVariable()] }
 		},
-		arms: [{ key: 'arm-1', name: 'Arm 1', rule: 'fixed' }],
+		arms: [{ key: 'arm-1', name: 'Arm 1', rule: 'fixed', master: null }],
 		visits: [visit('Baseline', 'baseline', [60], dailyGap)],
 		booking: {
 			earliest: '08:00',
 			latest: '18:00',
 			sameTimeToleranceMinutes: 120,
 			weekdays: [1, 2, 3, 4, 5],
-			pauses: { count: 1, minHours: 68, maxHours: 100 }
+			pauses: { count: 1, minHours: 68, maxHours: 100 },
+			dayMeaning: 'elapsed-hours'
 		},
 		aims: {
 			region: { isOn: true, share: 0.5, escapes: 3 },
@@ -101,9 +104,19 @@ function createBlank(): ProtocolDraft {
 		invitationDelayHours: 24,
 		earliestStartHours: { min: 12, max: 36 },
 		comparison: emptyComparison(),
-		limits: { minutesPerVisit: 90, trialsPerVisit: 300 },
+		limits: {
+			...{ minutesPerVisit: 90, trialsPerVisit: 300 },
+			...{ variableMax: {}, shiftMax: null, penaltyShareMax: null }
+		},
 		consentTextVersion: '1',
-		variants: []
+		variants: [],
+		trialSeconds: 8,
+		yoking: { ...usualYoking },
+		missedDay: { ...usualMissedDay },
+		relaxation: [],
+		instructions: [],
+		analysis: emptyAnalysis(),
+		justifications: {}
 	};
 }
 
@@ -121,7 +134,8 @@ function visit(
 		setupMinutes: 15,
 		cleanupMinutes: 10,
 		gapBefore: { ...gapBefore },
-		blocks: trials.map((count) => ({ purpose, trials: count }))
+		blocks: trials.map((count) => plainBlock(purpose, count)),
+		armBlocks: {}
 	};
 }
 

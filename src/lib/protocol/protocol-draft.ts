@@ -1,12 +1,26 @@
 import { z } from 'zod';
+import {
+	analysisDraftSchema,
+	armDraftSchema,
+	bookingDraftSchema,
+	draftNumber,
+	draftText,
+	instructionDraftSchema,
+	limitsDraftSchema,
+	missedDayDraftSchema,
+	relaxationDraftSchema,
+	visitDraftSchema,
+	yokingDraftSchema
+} from './draft-parts';
+import { emptyAnalysis, usualYoking } from './empty-parts';
 
 /**
  * A version that is still being written: the shape of the protocol's forms. A number that is not
  * typed yet is null, texts may be empty; nothing is refused before freezing but what cannot be kept.
  */
 
-const number = z.number().nullable();
-const text = (max: number) => z.string().max(max, `Longer than ${max} characters`);
+const number = draftNumber;
+const text = draftText;
 
 const variableDraftSchema = z.object({
 	name: text(64),
@@ -36,42 +50,12 @@ const taskDraftSchema = z.object({
 	})
 });
 
-const gapDraftSchema = z.object({
-	minHours: number,
-	targetHours: number,
-	maxHours: number,
-	nightsBetween: number
-});
-
-const visitDraftSchema = z.object({
-	label: text(40),
-	kind: z.enum(['baseline', 'practice', 'retention']),
-	minutes: number,
-	setupMinutes: number,
-	cleanupMinutes: number,
-	/** Not used for the first visit; kept in case it moves down. */
-	gapBefore: gapDraftSchema,
-	blocks: z
-		.array(z.object({ purpose: z.enum(['baseline', 'adaptive', 'retention']), trials: number }))
-		.max(40, 'A visit has at most 40 blocks')
-});
-
 export const protocolDraftSchema = z.object({
 	format: z.literal(1),
 	task: taskDraftSchema,
-	arms: z
-		.array(z.object({ key: text(31), name: text(60), rule: z.enum(['adaptive', 'fixed']) }))
-		.min(1)
-		.max(6, 'A study has at most 6 arms'),
+	arms: z.array(armDraftSchema).min(1).max(6, 'A study has at most 6 arms'),
 	visits: z.array(visitDraftSchema).max(40, 'A protocol has at most 40 visits'),
-	booking: z.object({
-		/** Clock times, such as 08:30. */
-		earliest: text(5),
-		latest: text(5),
-		sameTimeToleranceMinutes: number,
-		weekdays: z.array(z.number().int().min(1).max(7)),
-		pauses: z.object({ count: number, minHours: number, maxHours: number })
-	}),
+	booking: bookingDraftSchema,
 	aims: z.object({
 		region: z.object({ isOn: z.boolean(), share: number, escapes: number }),
 		shift: z.object({ isOn: z.boolean(), share: number, goal: number })
@@ -98,16 +82,24 @@ export const protocolDraftSchema = z.object({
 		effectLostSource: text(500),
 		enteredBy: z.record(z.string(), z.string().max(200))
 	}),
-	limits: z.object({ minutesPerVisit: number, trialsPerVisit: number }),
+	limits: limitsDraftSchema,
 	consentTextVersion: text(40),
-	variants: z.array(z.string())
+	variants: z.array(z.string()),
+	/** Seconds of one trial with everything that belongs to it. */
+	trialSeconds: number.default(null),
+	yoking: yokingDraftSchema.default({ ...usualYoking }),
+	/** Null: nothing is declared. */
+	missedDay: missedDayDraftSchema.nullable().default(null),
+	relaxation: z.array(relaxationDraftSchema).max(12, 'At most 12 steps').default([]),
+	instructions: z.array(instructionDraftSchema).max(40, 'At most 40 texts').default([]),
+	analysis: analysisDraftSchema.default(emptyAnalysis()),
+	/** Why a finding of the checker stays as it is, by the finding's key. */
+	justifications: z.record(z.string(), text(1000)).default({})
 });
 
 export type ProtocolDraft = z.infer<typeof protocolDraftSchema>;
-export type VisitDraft = ProtocolDraft['visits'][number];
 export type TaskDraft = ProtocolDraft['task'];
 export type VariableDraft = TaskDraft['formula']['variables'][number];
-export type GapDraft = VisitDraft['gapBefore'];
 
 /** The assumptions of the comparison whose source and author the power page names. */
 export const assumptionFields = [

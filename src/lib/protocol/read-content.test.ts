@@ -1,7 +1,7 @@
 import { describe, expect, it } from 'vitest';
 import { listDifferences } from './list-differences';
 import { createPatternDraft } from './patterns';
-import type { ProtocolContent } from './protocol-content';
+import type { ProtocolContent } from '$scheduler/protocol/protocol-content';
 import type { ProtocolDraft } from './protocol-draft';
 import { readContent } from './read-content';
 import { writeDraft } from './write-draft';

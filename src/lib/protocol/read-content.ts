@@ -1,10 +1,10 @@
 import { equaliseBlockLengths, policySettingsSchema } from '$scheduler/policies/policy-settings';
 import { taskRecordSchema } from '$scheduler/tasks/task-record';
+import { buildContent } from './build-content';
 import { buildPolicy } from './build-policy';
-import { readClockText } from './clock-text';
 import type { Fault } from './fault';
 import { hasAdaptiveTime } from './has-adaptive-time';
-import { protocolContentSchema, type ProtocolContent } from './protocol-content';
+import { protocolContentSchema, type ProtocolContent } from '$scheduler/protocol/protocol-content';
 import type { ProtocolDraft } from './protocol-draft';
 import { buildTaskRecord } from './read-task';
 
@@ -41,37 +41,4 @@ function toFaults(
 		text: `${message}.`,
 		remedy: 'Correct this value.'
 	}));
-}
-
-function buildContent(draft: ProtocolDraft) {
-	const { booking, comparison, visits, guardRails } = draft;
-	return {
-		format: 1,
-		arms: draft.arms,
-		visits: visits.map((visit, index) => ({
-			...visit,
-			number: index + 1,
-			gapBefore: index === 0 ? null : visit.gapBefore,
-			blocks: visit.blocks.map((block, at) => ({ ...block, number: at + 1 }))
-		})),
-		booking: {
-			earliestMinute: readClockText(booking.earliest),
-			latestMinute: readClockText(booking.latest),
-			sameTimeToleranceMinutes: booking.sameTimeToleranceMinutes,
-			weekdays: [...booking.weekdays].sort((a, b) => a - b),
-			pauses: {
-				...booking.pauses,
-				minHours: booking.pauses.minHours ?? 0,
-				maxHours: booking.pauses.maxHours ?? 0
-			}
-		},
-		guardRails: { ...guardRails, fallback: 'practice' },
-		readyLeadHours: draft.readyLeadHours,
-		invitationDelayHours: draft.invitationDelayHours,
-		earliestStartHours: draft.earliestStartHours,
-		comparison: draft.arms.length > 1 ? comparison : null,
-		limits: draft.limits,
-		consentTextVersion: draft.consentTextVersion,
-		variants: draft.variants
-	};
 }

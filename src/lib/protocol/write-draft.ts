@@ -1,7 +1,11 @@
 import { policySettingsSchema } from '$scheduler/policies/policy-settings';
 import { taskRecordSchema } from '$scheduler/tasks/task-record';
+import type { BlockPlan } from '$scheduler/protocol/block-plan';
+import type { ProtocolContent } from '$scheduler/protocol/protocol-content';
+import type { VisitPlan } from '$scheduler/protocol/visit-plan';
 import { writeClockText } from './clock-text';
-import type { ProtocolContent } from './protocol-content';
+import { blockDraftSchema, limitsDraftSchema, type VisitDraft } from './draft-parts';
+import { emptyAnalysis, usualYoking } from './empty-parts';
 import type { ProtocolDraft } from './protocol-draft';
 
 const hasOwnField = new Set([
@@ -28,24 +32,15 @@ export function writeDraft(content: ProtocolContent, blank: ProtocolDraft): Prot
 	return {
 		format: 1,
 		task,
-		arms: content.arms,
-		visits: visits.map(
-			({ label, kind, minutes, setupMinutes, cleanupMinutes, gapBefore, blocks }) => ({
-				label,
-				kind,
-				minutes,
-				setupMinutes,
-				cleanupMinutes,
-				gapBefore: gapBefore ?? { minHours: 20, targetHours: 24, maxHours: 28, nightsBetween: 1 },
-				blocks: blocks.map(({ purpose, trials }) => ({ purpose, trials }))
-			})
-		),
+		arms: content.arms.map((arm) => ({ ...arm, master: arm.master ?? null })),
+		visits: visits.map(writeVisit),
 		booking: {
 			earliest: writeClockText(booking.earliestMinute),
 			latest: writeClockText(booking.latestMinute),
 			sameTimeToleranceMinutes: booking.sameTimeToleranceMinutes,
 			weekdays: booking.weekdays,
-			pauses: booking.pauses
+			pauses: booking.pauses,
+			dayMeaning: booking.dayMeaning ?? 'elapsed-hours'
 		},
 		aims: {
 			region: {
@@ -67,9 +62,29 @@ export function writeDraft(content: ProtocolContent, blank: ProtocolDraft): Prot
 		invitationDelayHours: content.invitationDelayHours,
 		earliestStartHours: content.earliestStartHours,
 		comparison: { ...blank.comparison, ...comparison },
-		limits: content.limits,
+		limits: limitsDraftSchema.parse(content.limits),
 		consentTextVersion: content.consentTextVersion,
-		variants: content.variants
+		variants: content.variants,
+		trialSeconds: content.trialSeconds ?? null,
+		yoking: content.yoking ?? { ...usualYoking },
+		missedDay: content.missedDay ?? null,
+		relaxation: content.relaxation ?? [],
+		instructions: content.instructions ?? [],
+		analysis: content.analysis ?? emptyAnalysis(),
+		justifications: content.justifications ?? {}
+	};
+}
+
+function writeVisit({ number: _number, armBlocks, gapBefore, ...visit }: VisitPlan): VisitDraft {
+	const write = (blocks: readonly BlockPlan[]) =>
+		blocks.map(({ number: _place, ...block }) => blockDraftSchema.parse(block));
+	return {
+		...visit,
+		gapBefore: gapBefore ?? { minHours: 20, targetHours: 24, maxHours: 28, nightsBetween: 1 },
+		blocks: write(visit.blocks),
+		armBlocks: Object.fromEntries(
+			Object.entries(armBlocks ?? {}).map(([arm, blocks]) => [arm, write(blocks)])
+		)
 	};
 }
 

@@ -4,7 +4,7 @@ import { createSeededStream } from '$scheduler/random/seeded-stream';
 import { createTask } from '$scheduler/tasks/create-task';
 import { createScaledTask } from '$scheduler/tasks/scaled-task';
 import { taskRecordSchema } from '$scheduler/tasks/task-record';
-import type { ProtocolContent } from '$lib/protocol/protocol-content';
+import type { ProtocolContent } from '$scheduler/protocol/protocol-content';
 
 type Place = { code: string; visitNumber: number; blockNumber: number };
 

@@ -1,5 +1,5 @@
 import { eq } from 'drizzle-orm';
-import type { ProtocolContent } from '$lib/protocol/protocol-content';
+import type { ProtocolContent } from '$scheduler/protocol/protocol-content';
 import type { Grant } from '$lib/server/access/require-permission';
 import type { Clock } from '$lib/server/clock';
 import type { Queryable } from '$lib/server/db/client';

@@ -3,7 +3,7 @@ import { createScaledTask } from '$scheduler/tasks/scaled-task';
 import type { BlockParameters } from '$scheduler/policies/policy-memory';
 import { taskRecordSchema, type TaskRecord } from '$scheduler/tasks/task-record';
 import { findResultRange } from '$lib/protocol/visit-results';
-import type { ProtocolContent } from '$lib/protocol/protocol-content';
+import type { ProtocolContent } from '$scheduler/protocol/protocol-content';
 import type { RigLimits } from '$lib/server/db/schema';
 import { readPlan, type BlockPlanToRun, type PlanFault } from './check-plan';
 

@@ -1,7 +1,7 @@
 import { and, asc, eq, inArray, isNull, lte, notExists, sql } from 'drizzle-orm';
 import type { JWK } from 'jose';
 import { taskRecordSchema } from '$scheduler/tasks/task-record';
-import type { ProtocolContent } from '$lib/protocol/protocol-content';
+import type { ProtocolContent } from '$scheduler/protocol/protocol-content';
 import type { Clock } from '$lib/server/clock';
 import type { Database, Transaction } from '$lib/server/db/client';
 import {

@@ -3,6 +3,9 @@ import {
 	policySettingsSchema,
 	type PolicySettings
 } from '$scheduler/policies/policy-settings';
+import { planListedBlock } from '$scheduler/protocol/plan-listed-block';
+import { createTask } from '$scheduler/tasks/create-task';
+import { createScaledTask } from '$scheduler/tasks/scaled-task';
 import { taskRecordSchema } from '$scheduler/tasks/task-record';
 import type { DecisionInputsInput } from '$scheduler/policies/decision-record';
 import type { DecisionKind, ExecutedKind } from '$scheduler/policies/policy-memory';
@@ -30,7 +33,7 @@ export async function buildInputs(
 	return {
 		task: taskRecordSchema.parse(content.task),
 		protocol: readSettings(person, slot),
-		rule: findRule(person, slot),
+		rule: findRule(person, { slot, before }),
 		state: {
 			...describeDay(person, slot),
 			release: before?.kind === 'hold' && before.state === 'settled',
@@ -47,11 +50,15 @@ export function readSettings(person: PersonOnRecord, slot: Slot): PolicySettings
 }
 
 /** Adaptive time of an adaptive arm is the policy's; everything else is the protocol's own block. */
-function findRule(person: PersonOnRecord, slot: Slot): DecisionInputsInput['rule'] {
+function findRule(
+	person: PersonOnRecord,
+	{ slot, before }: { slot: Slot; before: StoredDecision | null }
+): DecisionInputsInput['rule'] {
 	const arm = person.content.arms.find((found) => found.key === person.arm);
 	if (slot.purpose === 'adaptive' && arm?.rule === 'adaptive') return { kind: 'adaptive' };
-	const kind = slot.purpose === 'adaptive' ? 'practice' : slot.purpose;
-	return { kind: 'fixed', block: { kind, parameters: { trials: slot.trials } } };
+	const task = createScaledTask(createTask(taskRecordSchema.parse(person.content.task)));
+	const cloud = before ? (readMemory(before)?.cloud ?? null) : null;
+	return { kind: 'fixed', block: planListedBlock(slot.plan, { task, cloud }) };
 }
 
 function describeDay(person: PersonOnRecord, slot: Slot) {
@@ -125,10 +132,18 @@ function isComplete(execution: (number | null)[]): execution is number[] {
  * practice (the declared fallback), or the protocol's own baseline or retention block.
  */
 export function findBlockThatRan(place: Slot, decided: StoredDecision | null): BlockPlanned {
-	const plain = place.purpose === 'adaptive' ? 'practice' : place.purpose;
-	const fallback: BlockPlanned = { kind: plain, parameters: { trials: place.trials } };
+	const fallback: BlockPlanned = {
+		kind: findPlainKind(place.purpose),
+		parameters: { trials: place.trials }
+	};
 	if (!decided?.wasIssued) return fallback;
 	return findEffectiveBlock(decided) ?? fallback;
+}
+
+/** What a rig runs in a place without a file of its own: nothing that moves the target or penalizes. */
+function findPlainKind(purpose: Slot['purpose']): ExecutedKind {
+	const own = (['baseline', 'retention', 'probe'] as const).find((kind) => kind === purpose);
+	return own ?? 'practice';
 }
 
 function readKind(kind: DecisionKind): ExecutedKind {

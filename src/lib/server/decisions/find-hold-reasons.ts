@@ -1,6 +1,6 @@
 import type { DecisionKind } from '$scheduler/policies/policy-memory';
 import { hasBlockToRun } from '$lib/decisions/kind-words';
-import type { ProtocolContent } from '$lib/protocol/protocol-content';
+import type { ProtocolContent } from '$scheduler/protocol/protocol-content';
 
 export type HoldReason = { code: string; values: Record<string, number> };
 

@@ -1,5 +1,5 @@
 import { describe, expect, it } from 'vitest';
-import type { VisitPlan } from '$lib/protocol/protocol-content';
+import type { VisitPlan } from '$scheduler/protocol/visit-plan';
 import { findNextSlot, listSlots, slotKey, type Progress } from './find-next-slot';
 
 const visit = (
@@ -20,11 +20,10 @@ const visit = (
 		trials: 60
 	}))
 });
-const slots = listSlots([
-	visit(2, 'adaptive', 2),
-	visit(1, 'baseline', 1),
-	visit(3, 'adaptive', 1)
-]);
+const slots = listSlots(
+	[visit(2, 'adaptive', 2), visit(1, 'baseline', 1), visit(3, 'adaptive', 1)],
+	null
+);
 
 const progress = (more: Partial<Progress> = {}): Progress => ({
 	decided: new Set(),
@@ -42,6 +41,18 @@ const next = (more: Partial<Progress>) => {
 describe('findNextSlot', () => {
 	it('runs places in the order of visits and blocks', () => {
 		expect(slots.map(slotKey)).toEqual(['1.1', '2.1', '2.2', '3.1']);
+	});
+
+	it('takes the list of the person’s arm and passes over rests', () => {
+		const own = visit(1, 'adaptive', 3);
+		const rest = { number: 2, purpose: 'rest', trials: 0, restMinutes: 5 } as const;
+		const [first, , last] = own.blocks;
+		if (!first || !last) throw new Error('three blocks');
+		const plan = { ...own, armBlocks: { fixed: [first, rest, last] } };
+		expect(listSlots([plan], 'fixed').map(slotKey)).toEqual(['1.1', '1.3']);
+		expect(listSlots([plan], 'fixed').map(({ indexInVisit }) => indexInVisit)).toEqual([0, 1]);
+		expect(listSlots([plan], 'adaptive').map(slotKey)).toEqual(['1.1', '1.2', '1.3']);
+		expect(listSlots([plan], null)).toHaveLength(3);
 	});
 
 	it('waits for the ready hour of the first visit', () => {

@@ -1,30 +1,35 @@
-import type { VisitPlan } from '$lib/protocol/protocol-content';
+import type { BlockPlan } from '$scheduler/protocol/block-plan';
+import { blocksOfArm, type VisitPlan } from '$scheduler/protocol/visit-plan';
 
 export type Slot = {
 	visitNumber: number;
 	blockNumber: number;
-	purpose: VisitPlan['blocks'][number]['purpose'];
+	purpose: BlockPlan['purpose'];
 	trials: number;
+	/** The block as the protocol lists it for the person's arm. */
+	plan: BlockPlan;
 	/** 0 for the first block of the visit. */
 	indexInVisit: number;
 	blocksInVisit: number;
 };
 
-/** Every block place of a protocol in the order in which it is run. */
-export function listSlots(visits: readonly VisitPlan[]): Slot[] {
+/** Every block place of an arm in the order in which it is run; rests have nothing to decide. */
+export function listSlots(visits: readonly VisitPlan[], arm: string | null): Slot[] {
 	const inOrder = [...visits].sort((a, b) => a.number - b.number);
-	return inOrder.flatMap((visit) =>
-		[...visit.blocks]
+	return inOrder.flatMap((visit) => {
+		const blocks = blocksOfArm(visit, arm).filter(({ purpose }) => purpose !== 'rest');
+		return blocks
 			.sort((a, b) => a.number - b.number)
-			.map((block, indexInVisit) => ({
+			.map((plan, indexInVisit) => ({
 				visitNumber: visit.number,
-				blockNumber: block.number,
-				purpose: block.purpose,
-				trials: block.trials,
+				blockNumber: plan.number,
+				purpose: plan.purpose,
+				trials: plan.trials,
+				plan,
 				indexInVisit,
-				blocksInVisit: visit.blocks.length
-			}))
-	);
+				blocksInVisit: blocks.length
+			}));
+	});
 }
 
 export const slotKey = (slot: { visitNumber: number; blockNumber: number }) =>

@@ -1,5 +1,5 @@
 import { and, asc, eq, inArray } from 'drizzle-orm';
-import type { ProtocolContent } from '$lib/protocol/protocol-content';
+import type { ProtocolContent } from '$scheduler/protocol/protocol-content';
 import { findArm } from '$lib/server/allocation/find-arm';
 import type { Queryable } from '$lib/server/db/client';
 import {
@@ -58,11 +58,12 @@ export async function loadPerson(
 	const [row] = lock ? await query.for('update', { of: participant }) : await query;
 	if (!row?.hash) return null;
 	const { hash, ...own } = row;
+	const arm = await findArm(tx, participantId);
 	return {
 		...own,
 		protocolHash: hash,
-		arm: await findArm(tx, participantId),
-		slots: listSlots(own.content.visits),
+		arm,
+		slots: listSlots(own.content.visits, arm),
 		decisions: await loadDecisions(tx, participantId),
 		blocks: await loadBlocks(tx, participantId),
 		visits: await loadVisits(tx, participantId)

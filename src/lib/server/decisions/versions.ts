@@ -1,5 +1,5 @@
 import { ENGINE_VERSION } from '$scheduler/engine-version';
-import type { ProtocolContent } from '$lib/protocol/protocol-content';
+import type { ProtocolContent } from '$scheduler/protocol/protocol-content';
 import { canonicalJson, sha256Hex } from '$lib/server/record/canonical-json';
 
 /** By what this process decides: stored with each decision. */

@@ -2,7 +2,7 @@ import { and, asc, eq, isNull } from 'drizzle-orm';
 import type { Clock } from '$lib/server/clock';
 import type { Transaction } from '$lib/server/db/client';
 import { booking, participant, protocolVersion } from '$lib/server/db/schema';
-import type { ProtocolContent } from '$lib/protocol/protocol-content';
+import type { ProtocolContent } from '$scheduler/protocol/protocol-content';
 import { loadVisit } from './load-visit';
 import type { MailSetting } from './mail-setting';
 import { loadThread, nextStampMs } from './visit-thread';

@@ -1,5 +1,5 @@
 import { inArray } from 'drizzle-orm';
-import type { ProtocolContent } from '$lib/protocol/protocol-content';
+import type { ProtocolContent } from '$scheduler/protocol/protocol-content';
 import { placeOnTimeline, type TimelinePlace } from '$lib/people/timeline';
 import type { Grant } from '$lib/server/access/require-permission';
 import { loadVisits, type StudyVisit } from '$lib/server/bookings/load-visits';

@@ -1,5 +1,5 @@
 import { desc, eq, and } from 'drizzle-orm';
-import type { ProtocolContent } from '$lib/protocol/protocol-content';
+import type { ProtocolContent } from '$scheduler/protocol/protocol-content';
 import type { Grant } from '$lib/server/access/require-permission';
 import type { Queryable } from '$lib/server/db/client';
 import { person, signOff } from '$lib/server/db/schema';

@@ -1,4 +1,4 @@
-import type { ProtocolContent } from '$lib/protocol/protocol-content';
+import type { ProtocolContent } from '$scheduler/protocol/protocol-content';
 import { protocolDraftSchema, type ProtocolDraft } from '$lib/protocol/protocol-draft';
 
 /**

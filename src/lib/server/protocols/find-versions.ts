@@ -1,5 +1,5 @@
 import { and, desc, eq, isNotNull, isNull } from 'drizzle-orm';
-import type { ProtocolContent } from '$lib/protocol/protocol-content';
+import type { ProtocolContent } from '$scheduler/protocol/protocol-content';
 import type { Queryable } from '$lib/server/db/client';
 import { person, protocolVersion } from '$lib/server/db/schema';
 

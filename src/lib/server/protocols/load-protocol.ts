@@ -1,7 +1,7 @@
 import { taskRecordSchema, type TaskRecord } from '$scheduler/tasks/task-record';
 import { describeProtocol, type ProtocolPart } from '$lib/protocol/describe-protocol';
 import { listDifferences, type Difference } from '$lib/protocol/list-differences';
-import type { ProtocolContent } from '$lib/protocol/protocol-content';
+import type { ProtocolContent } from '$scheduler/protocol/protocol-content';
 import type { Grant } from '$lib/server/access/require-permission';
 import type { Queryable } from '$lib/server/db/client';
 import { findDraftRow, findFrozenVersions, type FrozenVersion } from './find-versions';

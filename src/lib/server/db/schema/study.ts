@@ -1,6 +1,6 @@
 import { sql } from 'drizzle-orm';
 import { index, integer, jsonb, pgTable, text, uniqueIndex, uuid, date } from 'drizzle-orm/pg-core';
-import type { ProtocolContent } from '$lib/protocol/protocol-content';
+import type { ProtocolContent } from '$scheduler/protocol/protocol-content';
 import { person } from './account';
 import { instant, randomId } from './columns';
 import { lab } from './lab';

@@ -12,7 +12,7 @@ import {
 } from '$scheduler/learners/simulated-person';
 import { createSeededStream, type SeededStream } from '$scheduler/random/seeded-stream';
 import { hasBlockToRun } from '$lib/decisions/kind-words';
-import type { ProtocolContent } from '$lib/protocol/protocol-content';
+import type { ProtocolContent } from '$scheduler/protocol/protocol-content';
 import { allocateParticipant } from '$lib/server/allocation/allocate-participant';
 import { recordAttendance } from '$lib/server/attendance/record-attendance';
 import { issueDueBundles } from '$lib/server/bundles/issue-due-bundles';
