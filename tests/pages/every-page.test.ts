@@ -3,7 +3,7 @@ import type { Page } from 'playwright-core';
 import { startApp, type AppServer } from '../support/app-server';
 import { findAxeFaults } from '../support/axe';
 import { openBrowser, type TestBrowser } from '../support/browser';
-import { keepScreenshot, waitForPaint } from '../support/screenshot';
+import { lookClosely } from '../support/look-closely';
 
 /**
  * Every page of the demo that a role is offered, found by its links alone: it answers, complains of
@@ -65,28 +65,6 @@ async function visitEveryPage(page: Page, start: string, look: (pattern: string)
 		waiting.push(...(await readLinks(page)));
 	}
 	return [...seen.keys()];
-}
-
-/** Wide and narrow, light and dark, of one page as it stands. */
-async function lookClosely(page: Page, name: string): Promise<string[]> {
-	const faults: string[] = [];
-	await page.setViewportSize({ width: 390, height: 844 });
-	faults.push(...(await findAxeFaults(page)));
-	await keepScreenshot(page, `${name}-phone`);
-	await page.setViewportSize({ width: 360, height: 780 });
-	await waitForPaint(page);
-	const overflow = await page.evaluate(
-		() => document.documentElement.scrollWidth - document.documentElement.clientWidth
-	);
-	if (overflow > 0) faults.push(`${page.url()}: ${overflow} px too wide at 360 px`);
-	await page.setViewportSize({ width: 1440, height: 900 });
-	await keepScreenshot(page, name);
-	await page.emulateMedia({ colorScheme: 'dark' });
-	await waitForPaint(page);
-	faults.push(...(await findAxeFaults(page)));
-	await keepScreenshot(page, `${name}-dark`);
-	await page.emulateMedia({ colorScheme: 'light' });
-	return faults;
 }
 
 describe('every page that is offered', () => {

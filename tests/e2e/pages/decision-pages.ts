@@ -12,7 +12,8 @@ export async function listDecisions(desk: Desk): Promise<ListedDecision[]> {
 		rows.map(async (row) => {
 			const cells = await row.getByRole('cell').allInnerTexts();
 			const code = (await row.getByRole('rowheader').innerText()).trim();
-			const [place = '', kind = '', reason = ''] = cells.map((text) => text.trim());
+			const [place = '', kind = ''] = cells.map((text) => text.trim());
+			const reason = (await row.locator('data').getAttribute('value')) ?? '';
 			return { code, place, kind, reason };
 		})
 	);

@@ -1,9 +1,13 @@
-import { and, asc, desc, eq, inArray } from 'drizzle-orm';
+import { and, asc, desc, eq, inArray, isNotNull, sql } from 'drizzle-orm';
+import type { Reason } from '$scheduler/policies/decision';
+import { explainReason } from '$scheduler/policies/explain';
 import type { DecisionKind } from '$scheduler/policies/policy-memory';
+import type { WordContext } from '$scheduler/policies/words/read-values';
 import { describeKind } from '$lib/decisions/kind-words';
 import type { Grant } from '$lib/server/access/require-permission';
 import type { Database } from '$lib/server/db/client';
-import { decision, lab, participant } from '$lib/server/db/schema';
+import { decision, lab, participant, protocolVersion } from '$lib/server/db/schema';
+import { createWordContext } from './word-context';
 
 export type DecisionRow = {
 	id: string;
@@ -12,7 +16,9 @@ export type DecisionRow = {
 	blockNumber: number;
 	kind: DecisionKind;
 	kindWords: string;
+	/** Code of the deciding reason, and the same as a sentence. */
 	reason: string;
+	reasonWords: string;
 	state: 'automatic' | 'held' | 'settled' | 'fallback';
 	decidedAtMs: number;
 	readyAtMs: number | null;
@@ -38,7 +44,26 @@ export async function listDecisions(
 		)
 		.orderBy(desc(decision.decidedAt), asc(participant.code))
 		.limit(pageSize);
-	return { zone: place?.zone ?? 'UTC', held: held.map(toRow), others: others.map(toRow) };
+	const contextOf = await loadContexts(db, grant.studyId);
+	const write = (row: Selected) => toRow(row, contextOf(row.versionId));
+	return { zone: place?.zone ?? 'UTC', held: held.map(write), others: others.map(write) };
+}
+
+/** What the words of a reason depend on, by the version that a person is on. */
+async function loadContexts(db: Database, studyId: string) {
+	const rows = await db
+		.select({ id: protocolVersion.id, content: protocolVersion.content })
+		.from(protocolVersion)
+		.where(and(eq(protocolVersion.studyId, studyId), isNotNull(protocolVersion.hash)));
+	const contents = new Map(rows.map(({ id, content }) => [id, content]));
+	const contexts = new Map<string, WordContext>();
+	return (versionId: string): WordContext => {
+		const content = contents.get(versionId);
+		if (!content) throw new RangeError('a participant is on a version that is not frozen');
+		const known = contexts.get(versionId) ?? createWordContext(content);
+		contexts.set(versionId, known);
+		return known;
+	};
 }
 
 function select(db: Database) {
@@ -50,6 +75,8 @@ function select(db: Database) {
 			blockNumber: decision.blockNumber,
 			kind: decision.kind,
 			reason: decision.code,
+			deciding: sql<Reason | null>`${decision.output}::jsonb -> 'reasons' -> 0`,
+			versionId: participant.protocolVersionId,
 			state: decision.state,
 			decidedAt: decision.decidedAt,
 			readyAt: decision.readyAt
@@ -61,9 +88,11 @@ function select(db: Database) {
 
 type Selected = Awaited<ReturnType<typeof select>>[number];
 
-function toRow({ decidedAt, readyAt, ...row }: Selected): DecisionRow {
+function toRow(selected: Selected, context: WordContext): DecisionRow {
+	const { decidedAt, readyAt, deciding, versionId: _version, ...row } = selected;
 	return {
 		...row,
+		reasonWords: deciding ? explainReason(deciding, context).text : '',
 		kindWords: describeKind(row.kind),
 		decidedAtMs: decidedAt.getTime(),
 		readyAtMs: readyAt?.getTime() ?? null

@@ -1,10 +1,8 @@
 import { eq } from 'drizzle-orm';
 import type { DecisionRecord } from '$scheduler/policies/decision-record';
 import { explainReason } from '$scheduler/policies/explain';
-import { policySettingsSchema } from '$scheduler/policies/policy-settings';
 import type { WordContext } from '$scheduler/policies/words/read-values';
 import { computeWilsonInterval } from '$scheduler/statistics/wilson-interval';
-import { taskRecordSchema } from '$scheduler/tasks/task-record';
 import { describeKind } from '$lib/decisions/kind-words';
 import type { Grant } from '$lib/server/access/require-permission';
 import type { Clock } from '$lib/server/clock';
@@ -12,6 +10,7 @@ import type { Database } from '$lib/server/db/client';
 import { decision, lab, person as personTable } from '$lib/server/db/schema';
 import { describeRecord, readRecord } from './describe-record';
 import { findEffectiveBlock } from './effective-block';
+import { createWordContext } from './word-context';
 import { loadPerson, type PersonOnRecord, type StoredDecision } from './load-person';
 
 /** One decision with everything an approver needs to settle it, as plain data. */
@@ -87,8 +86,7 @@ function listEarlierRegions(person: PersonOnRecord, stored: StoredDecision) {
 
 /** The person's way so far: one piece a block, with what was decided and what runs. */
 function listWay(person: PersonOnRecord) {
-	const { resultUnit } = taskRecordSchema.parse(person.content.task);
-	const context = { resultUnit, settings: policySettingsSchema.parse(person.content.policy) };
+	const context = createWordContext(person.content);
 	return person.decisions.map((found) => ({
 		id: found.id,
 		visitNumber: found.visitNumber,
