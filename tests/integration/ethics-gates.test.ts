@@ -91,7 +91,7 @@ describe('the gates', () => {
 			'no-approval investigator',
 			'not-sealed unblinded-statistician'
 		]);
-		expect(await loadRunningVersion(handle.db, studyId)).toBeNull();
+		expect(await loadRunningVersion(handle.db, clock, studyId)).toBeNull();
 	});
 
 	it('open when sign-off, approval and seal name one hash, in any order', async () => {
@@ -101,7 +101,7 @@ describe('the gates', () => {
 		expect(await missing()).toEqual(['not-signed statistician']);
 		await sign(hash);
 		expect(await missing()).toEqual([]);
-		expect(await loadRunningVersion(handle.db, studyId)).toMatchObject({ number: 1, hash });
+		expect(await loadRunningVersion(handle.db, clock, studyId)).toMatchObject({ number: 1, hash });
 	});
 
 	it('keep the earlier version running while the next one waits', async () => {
@@ -113,12 +113,12 @@ describe('the gates', () => {
 		const draft = finishedDraft();
 		draft.comparison.peoplePerArm = 40;
 		const next = await freeze(draft);
-		expect(await loadRunningVersion(handle.db, studyId)).toMatchObject({ number: 1 });
+		expect(await loadRunningVersion(handle.db, clock, studyId)).toMatchObject({ number: 1 });
 		expect(await missing()).toEqual([]);
 		await sign(next.hash);
 		await approve(next.hash);
 		await seal(next.hash);
-		expect(await loadRunningVersion(handle.db, studyId)).toMatchObject({ number: 2 });
+		expect(await loadRunningVersion(handle.db, clock, studyId)).toMatchObject({ number: 2 });
 	});
 
 	it('close when the statistician takes the sign-off back', async () => {

@@ -129,7 +129,11 @@ describe('saving a draft', () => {
 describe('freezing', () => {
 	it('is refused with every fault named', async () => {
 		const grant = await investigator.grantFor('protocol:freeze');
-		const refused = await freezeVersion(handle.db, clock, grant, { number: 1, revision: 0 });
+		const refused = await freezeVersion(handle.db, clock, grant, {
+			number: 1,
+			revision: 0,
+			reason: 'As agreed'
+		});
 		const fields = !refused.ok && refused.reason === 'faults' ? refused.faults : [];
 		expect(fields.map(({ field }) => field)).toEqual([
 			'comparison.effectD',
@@ -143,7 +147,11 @@ describe('freezing', () => {
 		const draft = { ...finishedDraft(), otherPolicy };
 		await saveDraft(handle.db, edit, { number: 1, revision: 0, draft });
 		const grant = await investigator.grantFor('protocol:freeze');
-		const refused = await freezeVersion(handle.db, clock, grant, { number: 1, revision: 1 });
+		const refused = await freezeVersion(handle.db, clock, grant, {
+			number: 1,
+			revision: 1,
+			reason: 'As agreed'
+		});
 		const faults = !refused.ok && refused.reason === 'faults' ? refused.faults : [];
 		expect(faults.map(({ place, text }) => [place, text.split(':')[0]])).toEqual([
 			['Aims, target shift', 'The first step is 0.5 SD']
@@ -154,8 +162,35 @@ describe('freezing', () => {
 		const edit = await investigator.grantFor('protocol:edit');
 		await saveDraft(handle.db, edit, { number: 1, revision: 0, draft: finishedDraft() });
 		const grant = await investigator.grantFor('protocol:freeze');
-		const refused = await freezeVersion(handle.db, clock, grant, { number: 1, revision: 0 });
+		const refused = await freezeVersion(handle.db, clock, grant, {
+			number: 1,
+			revision: 0,
+			reason: 'As agreed'
+		});
 		expect(refused).toEqual({ ok: false, reason: 'stale' });
+	});
+
+	it('keeps the reason with who froze it and when', async () => {
+		await freezeDraft(handle.db, clock, investigator, finishedDraft());
+		const [version] = await findFrozenVersions(handle.db, studyId);
+		expect(version).toMatchObject({ frozenBy: 'Ilse Varga', reason: 'As the team agreed' });
+		expect(version?.frozenAtMs).toBe(clock.now());
+	});
+
+	it('names the person whose roles the declared exceptions forbid', async () => {
+		const colleague = await plantColleague(handle.db, labId, 'Dora Both');
+		const giving = { studyId, personId: investigator.personId, givenBy: colleague.personId };
+		await plantRole(handle.db, { ...giving, role: 'coordinator' });
+		const edit = await investigator.grantFor('protocol:edit');
+		const draft = { ...finishedDraft(), variants: ['open-investigator'] };
+		await saveDraft(handle.db, edit, { number: 1, revision: 0, draft });
+		const grant = await investigator.grantFor('protocol:freeze');
+		const input = { number: 1, revision: 1, reason: 'As agreed' };
+		const refused = await freezeVersion(handle.db, clock, grant, input);
+		if (refused.ok || refused.reason !== 'team') throw new Error('the version was not refused');
+		const told = refused.clashes.map(({ name, role, other }) => [name, ...[role, other].sort()]);
+		expect(told).toEqual([['Ilse Varga', 'coordinator', 'investigator']]);
+		expect(await findFrozenVersions(handle.db, studyId)).toEqual([]);
 	});
 
 	it('gives a hash over the canonical JSON of what the database gives back', async () => {
@@ -193,7 +228,11 @@ describe('the next version', () => {
 		const grant = await investigator.grantFor('protocol:edit');
 		expect(await startDraft(handle.db, clock, grant)).toEqual({ ok: true, number: 2 });
 		const freeze = await investigator.grantFor('protocol:freeze');
-		const outcome = await freezeVersion(handle.db, clock, freeze, { number: 2, revision: 0 });
+		const outcome = await freezeVersion(handle.db, clock, freeze, {
+			number: 2,
+			revision: 0,
+			reason: 'As agreed'
+		});
 		expect(outcome).toEqual({ ok: false, reason: 'unchanged' });
 	});
 
@@ -222,7 +261,7 @@ describe('the next version', () => {
 		await freezeDraft(handle.db, clock, investigator, draft);
 		const grant = await investigator.grantFor('protocol:read');
 		const { compared } = await loadProtocol(handle.db, grant);
-		expect(compared).toEqual({
+		expect(compared).toMatchObject({
 			number: 1,
 			differences: [
 				{

@@ -86,7 +86,8 @@ export async function freezeDraft(
 	if (!saved.ok) throw new Error(saved.reason);
 	const frozen = await freezeVersion(db, clock, await investigator.grantFor('protocol:freeze'), {
 		number,
-		revision: saved.revision
+		revision: saved.revision,
+		reason: 'As the team agreed'
 	});
 	if (!frozen.ok) throw new Error(frozen.reason);
 	return frozen;

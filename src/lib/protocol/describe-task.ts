@@ -1,22 +1,39 @@
 import { taskRecordSchema, type TaskRecord } from '$scheduler/tasks/task-record';
-import type { ProtocolLine } from './describe-protocol';
+import type { ProtocolLine } from './protocol-line';
+
+const variableSteps = ['name', 'unit', 'min', 'max', 'origin', 'scale', 'resolution'];
 
 /** The task in plain words, with every number and its unit. */
 export function describeTask(task: unknown): ProtocolLine[] {
-	const record = taskRecordSchema.parse(task);
+	const parsed = taskRecordSchema.safeParse(task);
+	// Told value by value, by the part that lists what has no words.
+	if (!parsed.success) return [];
+	const record = parsed.data;
 	return [
-		{ key: 'model', term: 'Model', text: describeModel(record) },
+		{ key: 'model', term: 'Model', text: describeModel(record), tells: listModelPaths(record) },
 		{
 			key: 'tolerance',
 			term: 'Hit',
-			text: `a miss of at most ${record.tolerance} ${record.resultUnit}`.trim()
+			text: `a miss of at most ${record.tolerance} ${record.resultUnit}`.trim(),
+			tells: ['task.tolerance', 'task.resultUnit']
 		},
-		...record.variables.map(({ name, unit, min, max, origin, scale, resolution }) => ({
+		...record.variables.map(({ name, unit, min, max, origin, scale, resolution }, index) => ({
 			key: `variable-${name}`,
 			term: name,
+			tells: variableSteps.map((step) => `task.variables.${index + 1}.${step}`),
 			text: `${min} to ${max} ${unit}, origin ${origin}, scale ${scale} (one SD of a practised person), resolution ${resolution === 0 ? 'not known' : resolution}`
 		}))
 	];
+}
+
+/** The values of a task that its model's line tells of; what is not a single value has none. */
+function listModelPaths(record: TaskRecord): string[] {
+	const named = record.type === 'linear' ? record.coef.map((_, index) => `coef.${index + 1}`) : [];
+	const single = Object.entries(record)
+		.filter(([name]) => name === 'type' || !HAS_LINE_OF_ITS_OWN.has(name))
+		.filter(([, value]) => value === null || typeof value !== 'object')
+		.map(([name]) => name);
+	return [...single, ...named].map((path) => `task.${path}`);
 }
 
 function describeModel(record: TaskRecord): string {

@@ -1,56 +1,101 @@
 import { describeProtocol } from './describe-protocol';
+import type { ProtocolLine, Reader } from './protocol-line';
 import type { ProtocolContent } from '$scheduler/protocol/protocol-content';
-import { canonicalText } from './canonical-text';
+import { isReadable } from './readable-leaves';
+import { nameLeaf, readLeaves } from './read-leaves';
 
 export type Difference = {
+	/** Part and line of the readable protocol, or the path of a value that has no line. */
+	key: string;
 	/** Part and line, such as 'Visits, Day 3'. */
 	place: string;
 	/** Null where the line is new. */
 	before: string | null;
 	/** Null where the line is gone. */
 	after: string | null;
+	/** Paths of the values that changed and that this entry tells of. */
+	paths: string[];
 };
 
-/** What changed from one version to another, in the words of the readable protocol. */
+/**
+ * What changed from one version to another, in the words of the readable protocol. A value whose
+ * change no line tells is listed by its path with both values: nothing that may be read is silent.
+ */
 export function listDifferences(
 	before: ProtocolContent,
 	after: ProtocolContent,
-	{ withRule }: { withRule: boolean }
+	reader: Reader
 ): Difference[] {
-	const [old, fresh] = [before, after].map((content) => readLines(content, withRule));
-	if (!old || !fresh) return [];
-	const keys = [...new Set([...fresh.keys(), ...old.keys()])];
-	const told = keys.flatMap((key): Difference[] => {
-		const [was, is] = [old.get(key), fresh.get(key)];
-		if (was?.text === is?.text && was?.place === is?.place) return [];
-		const place = is?.place ?? was?.place ?? key;
-		return [{ place, before: was?.text ?? null, after: is?.text ?? null }];
-	});
-	return [...told, ...(withRule ? listPolicyDifferences(before, after) : [])];
+	const changed = listChangedLeaves(before, after);
+	const lines = listChangedLines(before, after, reader);
+	const told = lines.map((line) => ({ ...line.difference, paths: changed.filter(line.tells) }));
+	const all = new Set(told.flatMap(({ paths }) => paths));
+	const [old, fresh] = [readLeaves(before), readLeaves(after)];
+	const rest = changed
+		.filter((path) => !all.has(path) && isReadable(path, reader))
+		.map((path) => ({
+			key: path,
+			place: nameLeaf(path),
+			before: old.get(path) ?? null,
+			after: fresh.get(path) ?? null,
+			paths: [path]
+		}));
+	return [...told, ...rest];
 }
 
-function readLines(content: ProtocolContent, withRule: boolean) {
-	const parts = describeProtocol(content, { withRule });
+/** Paths of the values in which two documents differ. */
+export function listChangedLeaves(before: unknown, after: unknown): string[] {
+	const [old, fresh] = [readLeaves(before), readLeaves(after)];
+	const paths = [...new Set([...fresh.keys(), ...old.keys()])];
+	return paths.filter((path) => old.get(path) !== fresh.get(path));
+}
+
+type ChangedLine = {
+	difference: Omit<Difference, 'paths'>;
+	/** Whether this line tells of a value in every version that has it. */
+	tells(path: string): boolean;
+};
+
+function listChangedLines(
+	before: ProtocolContent,
+	after: ProtocolContent,
+	reader: Reader
+): ChangedLine[] {
+	const [old, fresh] = [readLines(before, reader), readLines(after, reader)];
+	const [oldLeaves, freshLeaves] = [readLeaves(before), readLeaves(after)];
+	const keys = [...new Set([...fresh.keys(), ...old.keys()])];
+	return keys.flatMap((key): ChangedLine[] => {
+		const [was, is] = [old.get(key), fresh.get(key)];
+		const place = is?.place ?? was?.place ?? key;
+		const isRenamed = was !== undefined && is !== undefined && was.place !== is.place;
+		if (was?.text === is?.text && !isRenamed) return [];
+		const show = (line: NamedLine | undefined) =>
+			line ? (isRenamed ? `${line.term}: ${line.text}` : line.text) : null;
+		return [
+			{
+				difference: { key, place, before: show(was), after: show(is) },
+				tells: (path) =>
+					(was?.tells.has(path) || is?.tells.has(path)) === true &&
+					(!was || !oldLeaves.has(path) || was.tells.has(path)) &&
+					(!is || !freshLeaves.has(path) || is.tells.has(path))
+			}
+		];
+	});
+}
+
+type NamedLine = { term: string; text: string; place: string; tells: Set<string> };
+
+/** Lines in words, by part and line; values without words are compared one by one instead. */
+function readLines(content: ProtocolContent, reader: Reader): Map<string, NamedLine> {
+	const parts = describeProtocol(content, reader);
+	const inWords = parts.filter(({ key }) => key !== 'settings' && key !== 'further');
 	return new Map(
-		parts.flatMap((part) =>
-			part.lines.map(({ key, term, text }) => [
-				`${part.key}/${key}`,
-				{ place: `${part.title}, ${term}`, text }
-			])
+		inWords.flatMap((part) =>
+			part.lines.map((line) => [`${part.key}/${line.key}`, nameLine(part.title, line)])
 		)
 	);
 }
 
-const toldElsewhere = new Set(['aims', 'settle', 'blockTrials']);
-
-/** Settings of the policy that no line of the readable protocol tells. */
-function listPolicyDifferences(before: ProtocolContent, after: ProtocolContent): Difference[] {
-	const names = new Set([...Object.keys(before.policy), ...Object.keys(after.policy)]);
-	return [...names].sort().flatMap((name): Difference[] => {
-		const [was, is] = [before, after].map(({ policy }) =>
-			name in policy ? canonicalText(policy[name]) : null
-		);
-		if (was === is || toldElsewhere.has(name)) return [];
-		return [{ place: `Policy, ${name}`, before: was ?? null, after: is ?? null }];
-	});
+function nameLine(title: string, { term, text, tells }: ProtocolLine): NamedLine {
+	return { term, text, place: `${title}, ${term}`, tells: new Set(tells) };
 }

@@ -70,6 +70,8 @@ export async function setComparison(desk: Desk): Promise<void> {
 }
 
 export async function freeze(desk: Desk): Promise<void> {
+	await desk.follow('Say why, and freeze version 1');
+	await desk.see('From then on this text has a number and a hash, and never changes.');
 	await desk.press('Freeze version 1');
 	await desk.see('Version 1 is frozen and can no longer change.');
 }

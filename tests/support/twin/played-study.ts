@@ -117,7 +117,7 @@ async function runUntilLastMoment(play: Play, played: Played): Promise<void> {
 		world.clock.set(untilMs);
 		await catchUp(world);
 	};
-	const version = await loadRunningVersion(world.db, played.studyId);
+	const version = await loadRunningVersion(world.db, world.clock, played.studyId);
 	if (!version) throw new Error('no version runs');
 	const thrower = createThrower(version.content);
 	while (moments.length > 0) {

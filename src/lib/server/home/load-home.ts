@@ -88,7 +88,7 @@ async function loadStudies(
 		found.push({
 			id: row.id,
 			workingTitle: row.workingTitle,
-			...(await loadState(db, row)),
+			...(await loadState(db, clock, row)),
 			...held,
 			href: first.href,
 			waiting: await loadStudyWaiting(db, clock, grantFor, { studyId: row.id, ...held })
@@ -116,9 +116,10 @@ async function loadStudyWaiting(
 /** How a study stands: the version that runs, whether it is paused or closed. */
 async function loadState(
 	db: Queryable,
+	clock: Clock,
 	row: typeof study.$inferSelect
 ): Promise<{ state: StudyState; versionNumber: number | null }> {
-	const running = await loadRunningVersion(db, row.id);
+	const running = await loadRunningVersion(db, clock, row.id);
 	const versionNumber = running?.number ?? null;
 	if (row.closedAt) return { state: 'closed', versionNumber };
 	if (await isPaused(db, row.id)) return { state: 'paused', versionNumber };

@@ -31,7 +31,7 @@ export async function enrolPeople(
 ): Promise<EnrolOutcome> {
 	return db.transaction(async (tx) => {
 		const gates = await findMissingGates(tx, clock, grant.studyId);
-		const version = await loadRunningVersion(tx, grant.studyId);
+		const version = await loadRunningVersion(tx, clock, grant.studyId);
 		if (gates.length > 0 || !version) return { ok: false, reason: 'gates-missing', gates };
 		const { prefix, lastNumber } = await lockCodes(tx, grant.studyId);
 		const checked = await checkRows(tx, grant, { keys, rows });

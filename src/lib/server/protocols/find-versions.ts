@@ -10,7 +10,19 @@ export type FrozenVersion = {
 	content: ProtocolContent;
 	frozenAtMs: number;
 	frozenBy: string;
+	/** Why, in the words of who froze it; empty for versions from before this was asked. */
+	reason: string;
 };
+
+export type VersionHead = Pick<
+	FrozenVersion,
+	'number' | 'hash' | 'frozenAtMs' | 'frozenBy' | 'reason'
+>;
+
+/** What a list of versions says of one. */
+export function headOf({ number, hash, frozenAtMs, frozenBy, reason }: FrozenVersion): VersionHead {
+	return { number, hash, frozenAtMs, frozenBy, reason };
+}
 
 /** Frozen versions of a study, newest first. */
 export async function findFrozenVersions(db: Queryable, studyId: string): Promise<FrozenVersion[]> {
@@ -20,19 +32,21 @@ export async function findFrozenVersions(db: Queryable, studyId: string): Promis
 		.leftJoin(person, eq(person.id, protocolVersion.frozenBy))
 		.where(and(eq(protocolVersion.studyId, studyId), isNotNull(protocolVersion.hash)))
 		.orderBy(desc(protocolVersion.number));
-	return rows.flatMap(({ version: { id, number, hash, content, frozenAt }, name, email }) =>
-		hash && frozenAt
-			? [
-					{
-						id,
-						number,
-						hash,
-						content,
-						frozenAtMs: frozenAt.getTime(),
-						frozenBy: name ?? email ?? ''
-					}
-				]
-			: []
+	return rows.flatMap(
+		({ version: { id, number, hash, content, frozenAt, reason }, name, email }) =>
+			hash && frozenAt
+				? [
+						{
+							id,
+							number,
+							hash,
+							content,
+							frozenAtMs: frozenAt.getTime(),
+							frozenBy: name ?? email ?? '',
+							reason
+						}
+					]
+				: []
 	);
 }
 

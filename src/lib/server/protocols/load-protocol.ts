@@ -1,12 +1,12 @@
 import { taskRecordSchema, type TaskRecord } from '$scheduler/tasks/task-record';
 import { describeProtocol, type ProtocolPart } from '$lib/protocol/describe-protocol';
 import { listDifferences, type Difference } from '$lib/protocol/list-differences';
+import type { VisitPlan } from '$scheduler/protocol/visit-plan';
 import type { ProtocolContent } from '$scheduler/protocol/protocol-content';
 import type { Grant } from '$lib/server/access/require-permission';
 import type { Queryable } from '$lib/server/db/client';
-import { findDraftRow, findFrozenVersions, type FrozenVersion } from './find-versions';
-
-export type VersionHead = Pick<FrozenVersion, 'number' | 'hash' | 'frozenAtMs' | 'frozenBy'>;
+import { findDraftRow, findFrozenVersions, headOf, type VersionHead } from './find-versions';
+import { mayReadRule } from './may-read-rule';
 
 export type LoadedProtocol = {
 	versions: VersionHead[];
@@ -15,7 +15,8 @@ export type LoadedProtocol = {
 		| (VersionHead &
 				Pick<ProtocolContent, 'arms' | 'visits'> & {
 					parts: ProtocolPart[];
-					task: TaskRecord;
+					/** Null for a task that no picture is known for. */
+					task: TaskRecord | null;
 				})
 		| null;
 	/** The version it is compared with, and what changed since. */
@@ -42,8 +43,8 @@ export async function loadProtocol(
 					...headOf(version),
 					parts: describeProtocol(version.content, { withRule }),
 					arms: version.content.arms,
-					visits: version.content.visits,
-					task: taskRecordSchema.parse(version.content.task)
+					visits: withRule ? version.content.visits : version.content.visits.map(withoutRule),
+					task: taskRecordSchema.safeParse(version.content.task).data ?? null
 				}
 			: null,
 		compared:
@@ -57,12 +58,10 @@ export async function loadProtocol(
 	};
 }
 
-/** How blocks are chosen is told to those who may know block parameters at least by design. */
-function mayReadRule(grant: Grant): boolean {
-	const levels = grant.sees('block-parameters');
-	return levels.has('design') || levels.has('yes');
-}
-
-function headOf({ number, hash, frozenAtMs, frozenBy }: FrozenVersion): VersionHead {
-	return { number, hash, frozenAtMs, frozenBy };
+/** A visit as everybody may read it: neither what single arms run, nor how a block is set. */
+function withoutRule({ armBlocks: _, blocks, ...visit }: VisitPlan): VisitPlan {
+	return {
+		...visit,
+		blocks: blocks.map(({ number, purpose, trials }) => ({ number, purpose, trials }))
+	};
 }

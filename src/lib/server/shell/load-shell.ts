@@ -2,6 +2,7 @@ import { and, eq, isNull } from 'drizzle-orm';
 import { roleInSentence } from '$lib/members/role-names';
 import { loadHeldRoles } from '$lib/server/access/require-permission';
 import { findLabPages, findSections, type Section } from '$lib/server/access/sections';
+import type { Clock } from '$lib/server/clock';
 import { config } from '$lib/server/config';
 import type { Database } from '$lib/server/db/client';
 import { lab, membership, study, studyPause, type StudyRole } from '$lib/server/db/schema';
@@ -30,7 +31,7 @@ export async function loadShell(
 	locals: App.Locals,
 	params: { studyId?: string; labId?: string }
 ): Promise<Shell> {
-	const found = locals.person ? await findPlace(locals.db, locals.person.id, params) : null;
+	const found = locals.person ? await findPlace(locals, locals.person.id, params) : null;
 	const zone = found?.lab.zone ?? 'UTC';
 	const [nowText = '', zoneText = ''] = splitZone(formatWithZone(locals.clock.now(), zone));
 	return {
@@ -65,7 +66,7 @@ type Place = Pick<Shell, 'study' | 'sections'> & {
 };
 
 async function findPlace(
-	db: Database,
+	{ db, clock }: Pick<App.Locals, 'db' | 'clock'>,
 	personId: string,
 	params: { studyId?: string; labId?: string }
 ): Promise<Place | null> {
@@ -74,7 +75,7 @@ async function findPlace(
 		.from(membership)
 		.innerJoin(lab, eq(lab.id, membership.labId))
 		.where(and(eq(membership.personId, personId), isNull(membership.endedAt)));
-	const own = params.studyId ? await findStudy(db, params.studyId) : null;
+	const own = params.studyId ? await findStudy(db, clock, params.studyId) : null;
 	const labId = own?.labId ?? params.labId;
 	const home = memberships.find((row) => row.id === labId) ?? memberships[0];
 	if (!home) return null;
@@ -98,11 +99,11 @@ function describe(isSteward: boolean, roles: readonly StudyRole[]): string {
 	return names.join(', ') || 'no part in this study yet';
 }
 
-async function findStudy(db: Database, studyId: string) {
+async function findStudy(db: Database, clock: Clock, studyId: string) {
 	if (!/^[0-9a-f-]{36}$/i.test(studyId)) return null;
 	const [row] = await db.select().from(study).where(eq(study.id, studyId));
 	if (!row) return null;
-	const running = await loadRunningVersion(db, studyId);
+	const running = await loadRunningVersion(db, clock, studyId);
 	const [pause] = await db
 		.select({ id: studyPause.id })
 		.from(studyPause)

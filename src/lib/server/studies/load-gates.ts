@@ -4,6 +4,7 @@ import type { Clock } from '$lib/server/clock';
 import type { Queryable } from '$lib/server/db/client';
 import {
 	allocationSeal,
+	amendment,
 	ethicsApproval,
 	lab,
 	protocolVersion,
@@ -27,6 +28,7 @@ export type GateCode =
 	| 'no-approval'
 	| 'approval-expired'
 	| 'not-sealed'
+	| 'not-yet-effective'
 	| 'paused'
 	| 'closed';
 
@@ -43,20 +45,28 @@ type Standing = RunningVersion & {
 	isSealed: boolean;
 	/** Last day of the longest approval that names the hash; null without one. */
 	approvedUntil: string | null;
+	/** First day on which an amendment may act; null where nothing is declared. */
+	effectiveOn: string | null;
 };
 
 /**
  * The version the study runs by: the newest frozen one whose hash the statistician's latest word on
- * it signs, an ethics approval names and a seal holds. Null while there is none.
+ * it signs, an ethics approval names and a seal holds, once its effective date has come. Null while
+ * there is none.
  *
  * An approval that has expired, a pause or the end of the study close gates (`findMissingGates`),
  * but do not change which version runs.
  */
 export async function loadRunningVersion(
 	db: Queryable,
+	clock: Clock,
 	studyId: string
 ): Promise<RunningVersion | null> {
-	const running = (await loadStandings(db, studyId)).find(isComplete);
+	const today = localDateOf(clock.now(), (await loadHome(db, studyId)).zone);
+	const standings = await loadStandings(db, studyId);
+	const running = standings.find(
+		(standing) => isComplete(standing) && isEffective(standing, today)
+	);
 	if (!running) return null;
 	const { id, number, hash, content } = running;
 	return { id, number, hash, content };
@@ -71,18 +81,29 @@ export async function findMissingGates(
 	clock: Clock,
 	studyId: string
 ): Promise<MissingGate[]> {
+	const found = await loadHome(db, studyId);
+	const standings = await loadStandings(db, studyId);
+	const today = localDateOf(clock.now(), found.zone);
+	const complete = standings.filter(isComplete);
+	const running = complete.find((standing) => isEffective(standing, today));
+	const missing = findMissingSteps(running ?? complete[0] ?? standings[0], today);
+	if (await isPaused(db, studyId)) missing.push(gateOf('paused'));
+	if (found.closedAt) missing.push(gateOf('closed'));
+	return missing;
+}
+
+async function loadHome(db: Queryable, studyId: string) {
 	const [found] = await db
 		.select({ closedAt: study.closedAt, zone: lab.zone })
 		.from(study)
 		.innerJoin(lab, eq(lab.id, study.labId))
 		.where(eq(study.id, studyId));
-	if (!found) throw new RangeError('findMissingGates requires a study that exists');
-	const standings = await loadStandings(db, studyId);
-	const today = localDateOf(clock.now(), found.zone);
-	const missing = findMissingSteps(standings.find(isComplete) ?? standings[0], today);
-	if (await isPaused(db, studyId)) missing.push(gateOf('paused'));
-	if (found.closedAt) missing.push(gateOf('closed'));
-	return missing;
+	if (!found) throw new RangeError('a study that exists is required');
+	return found;
+}
+
+function isEffective({ effectiveOn }: Standing, today: string): boolean {
+	return effectiveOn === null || effectiveOn <= today;
 }
 
 function isComplete(standing: Standing): boolean {
@@ -97,6 +118,9 @@ function findMissingSteps(standing: Standing | undefined, today: string): Missin
 	if (approvedUntil === null) missing.push(gateOf('no-approval', { number }));
 	else if (approvedUntil < today) missing.push(gateOf('approval-expired', { day: approvedUntil }));
 	if (!standing.isSealed) missing.push(gateOf('not-sealed', { number }));
+	if (!isEffective(standing, today)) {
+		missing.push(gateOf('not-yet-effective', { number, day: standing.effectiveOn ?? '' }));
+	}
 	return missing;
 }
 
@@ -113,6 +137,7 @@ function gateOf(code: GateCode, { number = 0, day = '' } = {}): MissingGate {
 			`The allocation of version ${number} is not sealed yet.`,
 			'unblinded-statistician'
 		],
+		'not-yet-effective': [`Version ${number} takes effect on ${day}.`, 'investigator'],
 		paused: ['The study is paused; two different people lift the pause.', 'investigator'],
 		closed: ['The study is closed.', 'investigator']
 	};
@@ -123,8 +148,9 @@ function gateOf(code: GateCode, { number = 0, day = '' } = {}): MissingGate {
 /** Every frozen version with what has been given for its hash, newest first. */
 async function loadStandings(db: Queryable, studyId: string): Promise<Standing[]> {
 	const versions = await db
-		.select()
+		.select({ version: protocolVersion, effectiveOn: amendment.effectiveOn })
 		.from(protocolVersion)
+		.leftJoin(amendment, eq(amendment.protocolVersionId, protocolVersion.id))
 		.where(and(eq(protocolVersion.studyId, studyId), isNotNull(protocolVersion.hash)))
 		.orderBy(desc(protocolVersion.number));
 	const verdicts = await loadVerdicts(db, studyId);
@@ -134,11 +160,12 @@ async function loadStandings(db: Queryable, studyId: string): Promise<Standing[]
 		.from(allocationSeal)
 		.where(eq(allocationSeal.studyId, studyId));
 	const sealed = new Set(seals.map((seal) => seal.hash));
-	return versions.flatMap(({ id, number, hash, content }) => {
+	return versions.flatMap(({ version: { id, number, hash, content }, effectiveOn }) => {
 		if (hash === null) return [];
 		const isSigned = verdicts.get(hash) === 'signed';
 		const approvedUntil = approvals.get(hash) ?? null;
-		return [{ id, number, hash, content, isSigned, isSealed: sealed.has(hash), approvedUntil }];
+		const isSealed = sealed.has(hash);
+		return [{ id, number, hash, content, isSigned, isSealed, approvedUntil, effectiveOn }];
 	});
 }
 

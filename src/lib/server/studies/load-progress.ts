@@ -15,7 +15,7 @@ export async function loadProgress(
 	clock: Clock,
 	grant: Grant<'protocol:read' | 'power:read' | 'allocation:read'>
 ): Promise<StudyProgress> {
-	const running = await loadRunningVersion(db, grant.studyId);
+	const running = await loadRunningVersion(db, clock, grant.studyId);
 	return {
 		runningNumber: running?.number ?? null,
 		missing: await findMissingGates(db, clock, grant.studyId)

@@ -14,7 +14,7 @@ export async function loadMessageList(
 	grant: Grant<'message:read'>
 ): Promise<z.input<typeof messageListSchema>> {
 	const messages = await loadMessages(db, grant);
-	const version = await loadRunningVersion(db, grant.studyId);
+	const version = await loadRunningVersion(db, clock, grant.studyId);
 	const labels = new Map(version?.content.visits.map(({ number, label }) => [number, label]));
 	return {
 		zone: await loadLabZone(db, grant.labId),

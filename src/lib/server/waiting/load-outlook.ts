@@ -31,7 +31,7 @@ export async function loadOutlook(
 ): Promise<Outlook> {
 	const zone = await loadLabZone(db, grant.labId);
 	const today = localDateOf(clock.now(), zone);
-	const version = await loadRunningVersion(db, grant.studyId);
+	const version = await loadRunningVersion(db, clock, grant.studyId);
 	const isCoordinator = grant.roles.includes('coordinator');
 	const records = isCoordinator ? await loadPersonRecords(db, grant) : [];
 	return {

@@ -6,6 +6,7 @@ export * from './instance';
 export * from './lab';
 export * from './participant';
 export * from './record-event';
+export * from './review';
 export * from './study';
 export * from './trial';
 export type { InstantRange } from './columns';

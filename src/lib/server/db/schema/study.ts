@@ -118,6 +118,8 @@ export const protocolVersion = pgTable(
 		hash: text('hash'),
 		frozenAt: instant('frozen_at'),
 		frozenBy: uuid('frozen_by').references(() => person.id),
+		/** Why it was frozen, in the words of who froze it. */
+		reason: text('reason').notNull().default(''),
 		createdAt: instant('created_at').notNull().defaultNow()
 	},
 	(table) => [uniqueIndex('protocol_version_number').on(table.studyId, table.number)]

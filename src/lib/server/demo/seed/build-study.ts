@@ -11,7 +11,7 @@ import { createStudy } from '$lib/server/studies/create-study';
 import type { DemoWorld } from './demo-world';
 import { team } from './cast';
 
-type Change = (draft: ProtocolDraft) => ProtocolDraft;
+type Freezing = { change: (draft: ProtocolDraft) => ProtocolDraft; reason: string };
 
 /** Puck release under a moving target, designed and frozen four times; version 4 is the one that runs. */
 export async function buildStudy(world: DemoWorld, labId: string, seed: number): Promise<string> {
@@ -31,15 +31,24 @@ export async function buildStudy(world: DemoWorld, labId: string, seed: number):
 	if (!made.ok) throw new Error(`the study was not created: ${made.reason}`);
 	const { studyId } = made;
 	await giveRoles(world, studyId);
-	let hash = await freezeWith(world, studyId, designStudy);
-	const later: Change[] = [
-		(draft) => ({ ...draft, readyLeadHours: 3, consentTextVersion: '2' }),
-		(draft) => ({ ...draft, limits: { ...draft.limits, minutesPerVisit: 60 } }),
-		(draft) => ({ ...draft, consentTextVersion: '3' })
+	let hash = await freezeWith(world, studyId, { change: designStudy, reason: 'First version.' });
+	const later: Freezing[] = [
+		{
+			change: (draft) => ({ ...draft, readyLeadHours: 3, consentTextVersion: '2' }),
+			reason: 'Twelve hours are too early for decisions here; the consent text says what is stored.'
+		},
+		{
+			change: (draft) => ({ ...draft, limits: { ...draft.limits, minutesPerVisit: 60 } }),
+			reason: 'The board asked for no more than an hour a visit.'
+		},
+		{
+			change: (draft) => ({ ...draft, consentTextVersion: '3' }),
+			reason: 'The board asked for the phone number in the consent text.'
+		}
 	];
-	for (const change of later) {
+	for (const freezing of later) {
 		await startDraft(db, clock, await world.grant('investigator', 'protocol:edit', { studyId }));
-		hash = await freezeWith(world, studyId, change);
+		hash = await freezeWith(world, studyId, freezing);
 	}
 	await openGates(world, studyId, { hash, seed });
 	return studyId;
@@ -82,13 +91,17 @@ export async function freezeLargerVersion(world: DemoWorld, studyId: string): Pr
 		world.clock,
 		await world.grant('investigator', 'protocol:edit', { studyId })
 	);
-	await freezeWith(world, studyId, (draft) => ({
-		...draft,
-		comparison: { ...draft.comparison, peoplePerArm: 30 }
-	}));
+	await freezeWith(world, studyId, {
+		change: (draft) => ({ ...draft, comparison: { ...draft.comparison, peoplePerArm: 30 } }),
+		reason: 'Eight people an arm find too little: 30 an arm, so that an effect of .8 would be seen.'
+	});
 }
 
-async function freezeWith(world: DemoWorld, studyId: string, change: Change): Promise<string> {
+async function freezeWith(
+	world: DemoWorld,
+	studyId: string,
+	{ change, reason }: Freezing
+): Promise<string> {
 	const { db, clock } = world;
 	const edit = await world.grant('investigator', 'protocol:edit', { studyId });
 	const loaded = await loadDraft(db, edit);
@@ -97,7 +110,11 @@ async function freezeWith(world: DemoWorld, studyId: string, change: Change): Pr
 	const saved = await saveDraft(db, edit, { number, revision, draft: change(draft) });
 	if (!saved.ok) throw new Error(`the draft was not saved: ${saved.reason}`);
 	const freeze = await world.grant('investigator', 'protocol:freeze', { studyId });
-	const frozen = await freezeVersion(db, clock, freeze, { number, revision: saved.revision });
+	const frozen = await freezeVersion(db, clock, freeze, {
+		number,
+		revision: saved.revision,
+		reason
+	});
 	if (!frozen.ok) throw new Error(`version ${number} was not frozen: ${JSON.stringify(frozen)}`);
 	return frozen.hash;
 }

@@ -42,7 +42,7 @@ export async function seedDemo(options: {
 	const { labId } = await buildLab(world);
 	clock.set(at('2027-02-22', '10:00'));
 	const studyId = await buildStudy(world, labId, options.seed);
-	const running = await loadRunningVersion(options.db, studyId);
+	const running = await loadRunningVersion(options.db, clock, studyId);
 	if (!running) throw new Error('the demo study has no running version');
 	const { content } = running;
 	const study: DemoStudy = { studyId, content, seed: options.seed, actors: new Map() };

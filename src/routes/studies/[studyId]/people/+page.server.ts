@@ -18,7 +18,7 @@ export const load: PageServerLoad = async ({ locals, params, url }) => {
 	const grant = await requirePermission(locals, 'participant:list', params);
 	const { db, clock } = locals;
 	const list = await loadPeopleList(db, clock, grant);
-	const version = await loadRunningVersion(db, grant.studyId);
+	const version = await loadRunningVersion(db, clock, grant.studyId);
 	return {
 		studyId: grant.studyId,
 		list,

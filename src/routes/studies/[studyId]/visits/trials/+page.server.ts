@@ -7,7 +7,7 @@ import type { Actions, PageServerLoad } from './$types';
 
 export const load: PageServerLoad = async ({ locals, params }) => {
 	const grant = await requirePermission(locals, 'trials:upload', params);
-	return { variables: await loadVariables(locals.db, grant.studyId) };
+	return { variables: await loadVariables(locals.db, locals.clock, grant.studyId) };
 };
 
 export const actions: Actions = {
