@@ -1,5 +1,11 @@
+import { untrack } from 'svelte';
+import { EditHistory } from '../ui/edit-history';
+import { findChangedPlaces } from './find-changed-places';
+import { writeDraftText, type DraftKeeper } from './kept-draft';
+import { mergeDrafts } from './merge-drafts';
+import { createLiveDraft, putSnapshot, takeSnapshot } from './live-draft.svelte';
 import type { ProtocolDraft } from './protocol-draft';
-import { requestSave } from './save-draft-request';
+import { requestSave, type SaveDraftReply } from './save-draft-request';
 
 type Start = { address: string; number: number; revision: number; draft: ProtocolDraft };
 
@@ -8,83 +14,132 @@ type SaveState = 'saved' | 'waiting' | 'saving' | 'offline' | 'stale' | 'gone' |
 
 const quietMs = 900;
 const retryMs = [2_000, 4_000, 8_000, 15_000];
-const historyLimit = 50;
 
 /**
- * The draft in the page: what is typed, whether the server has it, and the way back. Changes are
- * saved once typing rests; what cannot be saved stays here and is said.
+ * The draft in the page: what is typed, whether the server has it, and the way back and forth. Changes
+ * are kept in the browser at once and saved once typing rests; what cannot be saved stays and is said.
  */
 export class DraftEditor {
-	draft: ProtocolDraft = $state() as ProtocolDraft;
+	/** Fields are bound to it; visits and arms change by `apply` alone. */
+	readonly draft: ProtocolDraft;
+	readonly number: number;
 	state: SaveState = $state('saved');
 	faults: string[] = $state([]);
 	/** What somebody else saved, while `state` is stale. */
-	theirs: ProtocolDraft | null = $state(null);
-	canUndo = $state(false);
-
-	readonly number: number;
+	theirs: ProtocolDraft | null = $state.raw(null);
+	/** What undo takes back and redo brings again, in words; null when there is nothing. */
+	undoLabel: string | null = $state(null);
+	redoLabel: string | null = $state(null);
+	/** Whether something was brought back that an earlier page had not saved. */
+	isRestored = $state(false);
 	revision = $state(0);
+
 	readonly #address: string;
-	#savedText: string;
+	readonly #history: EditHistory<ProtocolDraft>;
+	#keeper: DraftKeeper | null = null;
+	#saved: ProtocolDraft;
 	#theirRevision = 0;
-	#history: string[] = [];
 	#timer: ReturnType<typeof setTimeout> | undefined;
 	#failures = 0;
 	#running: Promise<void> | null = null;
 
 	constructor({ address, number, revision, draft }: Start) {
-		this.draft = draft;
+		this.draft = createLiveDraft(draft);
 		this.number = number;
 		this.revision = revision;
 		this.#address = address;
-		this.#savedText = JSON.stringify(draft);
+		this.#saved = draft;
+		this.#history = new EditHistory(draft);
 	}
 
-	/** Called with the draft's text after each change. */
-	notice(text: string): void {
-		if (this.#isStuck()) return;
-		if (text === this.#savedText) {
-			if (!this.#running) this.state = 'saved';
-			return;
-		}
-		this.state = 'waiting';
-		this.#schedule(quietMs);
+	/** The draft as it was last noticed; it never changes. */
+	get snapshot(): ProtocolDraft {
+		return this.#history.state;
+	}
+
+	/** Called after each change of a field: what was typed becomes a step of the history. */
+	notice(label = 'what was typed'): void {
+		const before = this.#history.state;
+		const now = takeSnapshot(this.draft, before);
+		if (now === before) return;
+		const places = findChangedPlaces(before, now);
+		const place = places && `${label}: ${places.join(' ')}`;
+		this.#history.record(now, { label, place, atMs: performance.now() });
+		untrack(() => this.#react());
+	}
+
+	/** Does one act on the draft; `label` says what, for undo. False when nothing changed. */
+	apply(edit: (draft: ProtocolDraft) => ProtocolDraft, label?: string): boolean {
+		this.notice();
+		const before = this.#history.state;
+		const next = edit(before);
+		if (next === before) return false;
+		putSnapshot(this.draft, before, next);
+		this.notice(label);
+		return true;
+	}
+
+	undo(): void {
+		this.notice();
+		this.#goTo((history) => history.undo());
+	}
+
+	redo(): void {
+		this.notice();
+		this.#goTo((history) => history.redo());
+	}
+
+	/** From now on what is not saved is kept in this browser, and what an earlier page kept comes back. */
+	keepWith(keeper: DraftKeeper): void {
+		this.#keeper = keeper;
+		const kept = keeper.read();
+		if (!kept) return;
+		if (writeDraftText(kept.draft) === writeDraftText(this.#saved)) return keeper.forget();
+		const current = this.#history.state;
+		this.isRestored = this.apply(() => kept.draft, 'what was brought back');
+		if (kept.revision === this.revision) return;
+		this.#theirRevision = this.revision;
+		this.theirs = current;
+		this.state = 'stale';
 	}
 
 	/** Saves now; resolves when the server has answered. */
 	async flush({ keepalive = false } = {}): Promise<void> {
 		clearTimeout(this.#timer);
 		while (this.#running) await this.#running;
-		if (this.#isStuck() || JSON.stringify(this.draft) === this.#savedText) return;
-		this.#running = this.#save(keepalive).finally(() => (this.#running = null));
+		this.notice();
+		if (this.#isStuck() || this.#history.state === this.#saved) return;
+		this.#running = this.#save(keepalive).finally(() => {
+			this.#running = null;
+			if (this.state === 'saved') this.#react();
+		});
 		await this.#running;
 	}
 
-	/** Goes back to what was saved before the last change. */
-	undo(): void {
-		const current = JSON.stringify(this.draft);
-		let text = this.#history.pop();
-		while (text === current) text = this.#history.pop();
-		if (text !== undefined) this.draft = JSON.parse(text) as ProtocolDraft;
-		this.canUndo = this.#history.length > 0;
+	/** What I and whoever saved meanwhile made of the draft, together; null while nobody did. */
+	merge(): { draft: ProtocolDraft; clashes: number } | null {
+		if (!this.theirs) return null;
+		return mergeDrafts({ base: this.#saved, theirs: this.theirs, mine: this.#history.state });
 	}
 
-	/** Ends a stale state: theirs replaces mine (undo brings mine back), or mine is saved over theirs. */
-	settle(choice: 'mine' | 'theirs'): void {
+	/** Ends a stale state: theirs replaces mine (undo brings mine back), mine is saved over theirs, or both. */
+	settle(choice: 'mine' | 'theirs' | 'both'): void {
 		const theirs = this.theirs;
-		if (!theirs) return;
-		this.#savedText = JSON.stringify(theirs);
+		const merged = this.merge();
+		if (!theirs || !merged) return;
+		this.#saved = theirs;
 		this.theirs = null;
 		this.revision = this.#theirRevision;
-		if (choice === 'theirs') {
-			this.#remember(JSON.stringify(this.draft));
-			this.draft = theirs;
-			this.state = 'saved';
-		} else {
-			this.#remember(this.#savedText);
-			this.state = 'waiting';
-			this.#schedule(0);
-		}
+		this.state = 'waiting';
+		if (choice === 'theirs') this.apply(() => theirs, 'taking what somebody else saved');
+		if (choice === 'both') this.apply(() => merged.draft, 'putting both together');
+		this.#react();
+	}
+
+	/** Takes back what was brought back; redo brings it again. */
+	dropRestored(): void {
+		this.isRestored = false;
+		this.undo();
 	}
 
 	stop(): void {
@@ -92,9 +147,30 @@ export class DraftEditor {
 		void this.flush({ keepalive: true });
 	}
 
+	#goTo(step: (history: EditHistory<ProtocolDraft>) => ProtocolDraft | null): void {
+		const before = this.#history.state;
+		const next = step(this.#history);
+		if (!next) return;
+		putSnapshot(this.draft, before, next);
+		this.#react();
+	}
+
 	/** Nothing is sent before the person has chosen what to do. */
 	#isStuck(): boolean {
 		return this.state === 'stale' || this.state === 'gone';
+	}
+
+	#react(): void {
+		this.undoLabel = this.#history.undoLabel;
+		this.redoLabel = this.#history.redoLabel;
+		const isSaved = this.#history.state === this.#saved;
+		if (isSaved) this.#keeper?.forget();
+		else this.#keeper?.keep(this.revision, writeDraftText(this.#history.state));
+		if (this.#isStuck()) return;
+		if (isSaved) clearTimeout(this.#timer);
+		if (this.#running) return;
+		this.state = isSaved ? 'saved' : 'waiting';
+		if (!isSaved) this.#schedule(quietMs);
 	}
 
 	#schedule(ms: number): void {
@@ -102,43 +178,43 @@ export class DraftEditor {
 		this.#timer = setTimeout(() => void this.flush(), ms);
 	}
 
-	#remember(text: string): void {
-		if (this.#history.at(-1) !== text) this.#history.push(text);
-		if (this.#history.length > historyLimit) this.#history.shift();
-		this.canUndo = true;
-	}
-
 	async #save(keepalive: boolean): Promise<void> {
-		const draft = $state.snapshot(this.draft) as ProtocolDraft;
-		const text = JSON.stringify(draft);
+		const draft = this.#history.state;
 		this.state = 'saving';
 		const { number, revision } = this;
 		const reply = await requestSave(this.#address, { number, revision, draft }, { keepalive });
-		if (!reply) {
-			this.state = 'offline';
-			this.#schedule(retryMs[Math.min(this.#failures++, retryMs.length - 1)] ?? quietMs);
-			return;
-		}
-		this.#failures = 0;
-		if (reply.state === 'saved') this.#accept(text, reply);
-		else if (reply.state === 'stale') {
-			this.#theirRevision = reply.revision;
-			this.theirs = reply.draft;
-			this.state = 'stale';
-		} else {
-			this.faults = reply.state === 'refused' ? reply.faults : [];
-			this.state = reply.state;
-		}
+		if (reply) return this.#hear(draft, reply);
+		this.state = 'offline';
+		this.#schedule(retryMs[Math.min(this.#failures++, retryMs.length - 1)] ?? quietMs);
 	}
 
-	#accept(text: string, reply: { revision: number; enteredBy: Record<string, string> }): void {
-		this.#remember(this.#savedText);
+	#hear(sent: ProtocolDraft, reply: SaveDraftReply): void {
+		this.#failures = 0;
+		if (reply.state === 'saved') return this.#accept(sent, reply);
+		if (reply.state === 'stale') {
+			this.#theirRevision = reply.revision;
+			this.theirs = reply.draft;
+		}
+		this.faults = reply.state === 'refused' ? reply.faults : [];
+		this.state = reply.state;
+	}
+
+	/** The server fills in who entered an assumption; that is no step of its own. */
+	#accept(sent: ProtocolDraft, reply: { revision: number; enteredBy: Record<string, string> }) {
+		this.notice();
 		this.revision = reply.revision;
-		const saved = JSON.parse(text) as ProtocolDraft;
-		saved.comparison.enteredBy = reply.enteredBy;
-		this.draft.comparison.enteredBy = reply.enteredBy;
-		this.#savedText = JSON.stringify(saved);
+		const isStill = this.#history.state === sent;
+		this.#saved = this.#nameAuthors(sent, reply.enteredBy);
+		const before = this.#history.state;
+		const now = isStill ? this.#saved : this.#nameAuthors(before, reply.enteredBy);
+		putSnapshot(this.draft, before, now);
+		this.#history.amend(now);
 		this.state = 'saved';
-		this.notice(JSON.stringify(this.draft));
+	}
+
+	#nameAuthors(draft: ProtocolDraft, enteredBy: Record<string, string>): ProtocolDraft {
+		const { comparison } = draft;
+		if (JSON.stringify(comparison.enteredBy) === JSON.stringify(enteredBy)) return draft;
+		return { ...draft, comparison: { ...comparison, enteredBy } };
 	}
 }
