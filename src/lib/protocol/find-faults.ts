@@ -3,6 +3,8 @@ import { findComparisonFaults } from './find-comparison-faults';
 import { findGapFaults } from './find-gap-faults';
 import { findPolicyFaults } from './find-policy-faults';
 import { findRuleFaults } from './find-rule-faults';
+import { findDueBlockFaults } from './policy/find-due-block-faults';
+import { findSettingFaults } from './policy/find-setting-faults';
 import { findTaskFaults } from './find-task-faults';
 import { findVisitFaults } from './find-visit-faults';
 import type { ProtocolDraft } from './protocol-draft';
@@ -14,6 +16,8 @@ export function findFaults(draft: ProtocolDraft, rigs: readonly RigLimit[]): Fau
 		...findVisitFaults(draft, rigs),
 		...findGapFaults(draft),
 		...findRuleFaults(draft),
+		...findSettingFaults(draft),
+		...findDueBlockFaults(draft),
 		...findPolicyFaults(draft),
 		...findComparisonFaults(draft)
 	];

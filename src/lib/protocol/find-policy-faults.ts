@@ -8,31 +8,32 @@ import type { ProtocolDraft } from './protocol-draft';
 type Place = Pick<Fault, 'code' | 'place' | 'field' | 'remedy'>;
 
 const shift = { place: 'Aims, target shift', field: 'aims.shift.isOn' };
-const region = { place: 'Aims, penalized regions', field: 'aims.region.isOn' };
-const kept =
-	'The setting came with the version that this draft goes on from and has no field: mend it there, or';
-
 /** Where each of the engine's concerns lies, and how to mend it. */
 const places: Readonly<Record<PolicyConcern, Place>> = {
 	'FIRST-STEP-SMALL': {
 		code: 'policy-first-step',
-		...shift,
-		remedy: `${kept} take the aim off.`
+		place: 'Policy, Target shift',
+		field: 'policy.shift.rule.firstStepSd',
+		remedy: 'Let the first step and the largest be 1 SD or more, or take the aim off.'
 	},
 	'FEW-PLAIN-TRIALS': {
 		code: 'policy-few-plain',
-		...shift,
-		remedy: `${kept} know that steps may be too large or too small for a person.`
+		place: 'Policy, Target shift',
+		field: 'policy.shift.minPlain',
+		remedy:
+			'Ask for 100 plain trials or more, or know that steps may be too large or too small for a person.'
 	},
 	'LITTLE-LEAKS': {
 		code: 'policy-little-leaks',
-		...region,
-		remedy: `${kept} know that regions may end without anybody having moved.`
+		place: 'Policy, Placing a region',
+		field: 'policy.place.leakMin',
+		remedy: 'Let 0.1 or more remain, or know that regions may end without anybody having moved.'
 	},
 	'FIRST-SHARE-HARD': {
 		code: 'policy-share-hard',
-		...region,
-		remedy: `${kept} know that regions may end without anybody having moved.`
+		place: 'Policy, Placing a region',
+		field: 'policy.place.shares',
+		remedy: 'Begin with 0.8 or less, or know that regions may end without anybody having moved.'
 	},
 	'WASHOUT-SHORT': {
 		code: 'policy-washout-short',
@@ -47,9 +48,9 @@ const places: Readonly<Record<PolicyConcern, Place>> = {
 	},
 	'LENGTHS-DIFFER': {
 		code: 'policy-lengths-differ',
-		place: 'Aims, blocks that are due',
-		field: 'aims.region.isOn',
-		remedy: `${kept} give adaptive blocks the length of the blocks that are due.`
+		place: 'Policy, Probes, gaps and washout',
+		field: 'policy.washoutHolds',
+		remedy: 'Leave washout and due blocks as long as adaptive blocks.'
 	},
 	'HOLD-WITHOUT-FALLBACK': {
 		code: 'policy-hold-fallback',
