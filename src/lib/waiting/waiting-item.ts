@@ -28,6 +28,9 @@ export type WaitingKind =
 	| 'book'
 	| 'mail-failed'
 	| 'gate'
+	| 'approval-ends'
+	| 'renew-consent'
+	| 'breach'
 	| 'role'
 	| 'sign-off'
 	| 'seal'
@@ -45,6 +48,9 @@ export const waitingWords: Record<WaitingKind, string> = {
 	book: 'find places',
 	'mail-failed': 'mend the address',
 	gate: 'a gate is shut',
+	'approval-ends': 'renew the approval',
+	'renew-consent': 'renew consent',
+	breach: 'look at a breach',
 	role: 'confirm a role',
 	'sign-off': 'sign off or comment',
 	seal: 'seal the allocation',

@@ -37,6 +37,9 @@ export async function loadFillings(sql: postgres.Sql, studyId: string, links: Li
 		select name, id as "rigId" from rig where lab_id = ${base.labId} order by name`;
 	const staff = await sql<{ name: string; staffId: string }[]>`
 		select name, id as "staffId" from staff where lab_id = ${base.labId} order by name`;
+	const letters = await sql<Record<string, string>[]>`
+		select file_name as says, id as "letterId" from ethics_letter
+		where study_id = ${studyId} order by file_name, id`;
 	const named = (rows: readonly Record<string, string>[], key: string): Filling[] =>
 		rows.map(({ [key]: says = '', ...values }) => ({ says, values: { ...base, ...values } }));
 	const sets: [string[], Filling[]][] = [
@@ -48,6 +51,7 @@ export async function loadFillings(sql: postgres.Sql, studyId: string, links: Li
 		[['decisionId'], named(decisions, 'says')],
 		[['rigId'], named(rigs, 'name')],
 		[['staffId'], named(staff, 'name')],
+		[['letterId'], named(letters, 'says')],
 		[['token'], links.map(({ says, values }) => ({ says, values: { ...base, ...values } }))]
 	];
 	return (entry: Entry): readonly Filling[] => {

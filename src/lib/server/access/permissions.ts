@@ -41,6 +41,14 @@ export const permissions = {
 	'protocol:edit': study('investigator'),
 	'protocol:freeze': study('investigator'),
 	'ethics:record': study('investigator'),
+	// A letter may say what is done to the task: not for roles that must not know it.
+	'ethics:read': study(
+		'investigator',
+		'statistician',
+		'unblinded-statistician',
+		'approver',
+		'monitor'
+	),
 
 	'power:read': study('investigator', 'statistician', 'unblinded-statistician'),
 	'power:sign': study('statistician'),

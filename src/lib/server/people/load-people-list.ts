@@ -1,4 +1,5 @@
 import type { PeopleList, PersonRow } from '$lib/people/people-list';
+import { daysBetween } from '$lib/time/days-between';
 import { localDateOf } from '$lib/time/wall-clock';
 import { sortByUrgency, waitingWords, type WaitingItem } from '$lib/waiting/waiting-item';
 import type { Grant } from '$lib/server/access/require-permission';
@@ -68,9 +69,4 @@ export function countDaysToVisit({ person, visits }: PersonRecord, zone: string)
 	const first = visits.find(isLive);
 	if (!first || person.consentedAtMs === null) return null;
 	return daysBetween(localDateOf(person.consentedAtMs, zone), localDateOf(first.startMs, zone));
-}
-
-function daysBetween(from: string, to: string): number {
-	const days = Math.round((Date.parse(to) - Date.parse(from)) / 86_400_000);
-	return days;
 }

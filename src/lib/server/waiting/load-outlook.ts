@@ -1,4 +1,3 @@
-import { and, eq, isNull, max } from 'drizzle-orm';
 import { addDaysToDate } from '$lib/time/add-local-days';
 import { startOfLocalDate } from '$lib/time/start-of-local-day';
 import { localDateOf, utcOffsetMinutes } from '$lib/time/wall-clock';
@@ -6,7 +5,7 @@ import type { Grant } from '$lib/server/access/require-permission';
 import { isLive } from '$lib/server/bookings/load-visits';
 import type { Clock } from '$lib/server/clock';
 import type { Queryable } from '$lib/server/db/client';
-import { ethicsApproval } from '$lib/server/db/schema';
+import { findApprovalEnd, type ApprovalEnd } from '$lib/server/ethics/find-approval-end';
 import { countDaysToVisit } from '$lib/server/people/load-people-list';
 import { loadPersonRecords, type PersonRecord } from '$lib/server/people/load-person-records';
 import { loadRunningVersion } from '$lib/server/studies/load-gates';
@@ -15,7 +14,7 @@ import { loadLabZone } from './chain-items';
 /** What a careful colleague would say of the days to come. */
 export type Outlook = {
 	/** When the ethics approval ends, within sixty days. */
-	approvalEnds: { date: string; days: number } | null;
+	approvalEnds: ApprovalEnd | null;
 	/** The next change of the lab's clocks, within thirty days. */
 	clockChange: { date: string; days: number; fromMinutes: number; toMinutes: number } | null;
 	tomorrow: { visitCount: number; firstMs: number | null; readyLeadHours: number } | null;
@@ -35,7 +34,9 @@ export async function loadOutlook(
 	const isCoordinator = grant.roles.includes('coordinator');
 	const records = isCoordinator ? await loadPersonRecords(db, grant) : [];
 	return {
-		approvalEnds: version ? await findApprovalEnd(db, grant.studyId, version.hash, today) : null,
+		approvalEnds: version
+			? await findApprovalEnd(db, { studyId: grant.studyId, hash: version.hash, today })
+			: null,
 		clockChange: findClockChange(today, zone),
 		tomorrow: isCoordinator
 			? pictureTomorrow(records, {
@@ -48,22 +49,6 @@ export async function loadOutlook(
 			.sort((a, b) => (a.person.consentedAtMs ?? 0) - (b.person.consentedAtMs ?? 0))
 			.flatMap((record) => countDaysToVisit(record, zone) ?? [])
 	};
-}
-
-async function findApprovalEnd(db: Queryable, studyId: string, hash: string, today: string) {
-	const [row] = await db
-		.select({ expiresOn: max(ethicsApproval.expiresOn) })
-		.from(ethicsApproval)
-		.where(
-			and(
-				eq(ethicsApproval.studyId, studyId),
-				eq(ethicsApproval.protocolHash, hash),
-				isNull(ethicsApproval.revokedAt)
-			)
-		);
-	if (!row?.expiresOn) return null;
-	const days = Math.round((Date.parse(row.expiresOn) - Date.parse(today)) / 86_400_000);
-	return days >= 0 && days <= 60 ? { date: row.expiresOn, days } : null;
 }
 
 /** The first day of the next thirty whose start has another offset than the day after it. */

@@ -2,10 +2,13 @@ import { error, fail, redirect } from '@sveltejs/kit';
 import { setError, superValidate } from 'sveltekit-superforms';
 import { zod4 } from 'sveltekit-superforms/adapters';
 import { z } from 'zod';
+import { letterMaxBytes } from '$lib/protocol/letter-type';
 import { ethicsApprovalSchema } from '$lib/protocol/ethics-approval';
 import { requirePermission } from '$lib/server/access/require-permission';
 import { listApprovals } from '$lib/server/ethics/list-approvals';
 import { recordApproval } from '$lib/server/ethics/record-approval';
+import { loadApprovalEnd } from '$lib/server/ethics/find-approval-end';
+import { storeLetter } from '$lib/server/ethics/store-letter';
 import { revokeApproval } from '$lib/server/ethics/revoke-approval';
 import { loadProtocol } from '$lib/server/protocols/load-protocol';
 import { startDraft } from '$lib/server/protocols/start-draft';
@@ -32,6 +35,7 @@ export const load: PageServerLoad = async ({ locals, params, url }) => {
 		frozenText: protocol.shown ? formatWithZone(protocol.shown.frozenAtMs, zone) : '',
 		justFrozen: url.searchParams.get('frozen') === String(protocol.shown?.number),
 		approvals: await listApprovals(db, clock, grant),
+		approvalEnd: await loadApprovalEnd(db, clock, grant),
 		progress: await loadProgress(db, clock, grant),
 		mayEdit,
 		ethicsForm: mayEdit
@@ -46,7 +50,31 @@ const draftRefusals = {
 	'task-not-editable': 'The forms cannot hold the task of the frozen version.'
 };
 
+const letterRefusals = {
+	empty: 'The file is empty. Choose the scanned letter.',
+	'too-large': 'The file is over 10 MB. Scan it in grey at 150 dots an inch, or split it.',
+	'unknown-kind':
+		'This is neither PDF, PNG nor JPEG, whatever its name says. Save the letter as PDF.',
+	'no-such-approval': 'This study has no such approval. Load the page again.',
+	'kept-already': 'This very file is kept for that approval already.'
+};
+
 export const actions: Actions = {
+	letter: async ({ locals, params, request }) => {
+		const grant = await requirePermission(locals, 'ethics:record', params);
+		const data = await request.formData();
+		const file = data.get('letter');
+		const approvalId = z.uuid().safeParse(data.get('approvalId')).data;
+		if (!(file instanceof File) || file.name === '' || !approvalId) {
+			return fail(400, { refused: 'Choose the approval and the file of its letter.' });
+		}
+		if (file.size > letterMaxBytes) return fail(400, { refused: letterRefusals['too-large'] });
+		const content = new Uint8Array(await file.arrayBuffer());
+		const input = { approvalId, fileName: file.name, content };
+		const kept = await storeLetter(locals.db, locals.clock, grant, input);
+		if (!kept.ok) return fail(409, { refused: letterRefusals[kept.reason] });
+		return { letterKept: kept.sha256.slice(0, 12) };
+	},
 	draft: async ({ locals, params }) => {
 		const grant = await requirePermission(locals, 'protocol:edit', params);
 		const started = await startDraft(locals.db, locals.clock, grant);
