@@ -1,4 +1,5 @@
 import type { Grant } from '$lib/server/access/require-permission';
+import { findHeldForConsent } from '$lib/server/amendments/held-for-consent';
 import type { Clock } from '$lib/server/clock';
 import type { Database, Transaction } from '$lib/server/db/client';
 import { isPaused } from '$lib/server/pauses/is-paused';
@@ -98,6 +99,11 @@ async function requireOpen(
 	if (gates.length === 0 && (await isPaused(tx, grant.studyId, participantId))) {
 		const text = 'This person’s part in the study is paused; two different people lift the pause.';
 		gates.push({ code: 'paused', text, whose: 'investigator' });
+	}
+	const [held] = await findHeldForConsent(tx, clock, { studyId: grant.studyId, participantId });
+	if (held) {
+		const text = `${held.code} signs consent text ${held.textVersion} first: the amendment stops people until they do.`;
+		gates.push({ code: 'consent-renewal', text, whose: 'coordinator' });
 	}
 	if (gates.length > 0) throw new Refused({ ok: false, reason: 'gates-missing', gates });
 }

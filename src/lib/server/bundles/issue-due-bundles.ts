@@ -2,6 +2,7 @@ import { and, asc, eq, inArray, isNull, lte, notExists, sql } from 'drizzle-orm'
 import type { JWK } from 'jose';
 import { taskRecordSchema } from '$scheduler/tasks/task-record';
 import type { ProtocolContent } from '$scheduler/protocol/protocol-content';
+import { findHeldForConsent } from '$lib/server/amendments/held-for-consent';
 import type { Clock } from '$lib/server/clock';
 import type { Database, Transaction } from '$lib/server/db/client';
 import {
@@ -28,7 +29,7 @@ export type Services = { clock: Clock; signingKey: () => Promise<SigningKey> };
 /**
  * Makes the file of every block whose ready hour has come, the same way in every arm: signed by the
  * server, encrypted to the booked rig, one size. Nothing is issued while the study or the person is
- * paused, a gate is shut, or the block exceeds a limit.
+ * paused, a gate is shut, an amendment stops the person, or the block exceeds a limit.
  */
 export async function issueDueBundles(db: Database, services: Services): Promise<number> {
 	const due = await findDue(db, services.clock);
@@ -91,6 +92,8 @@ async function issueBundle(tx: Transaction, services: Services, { decisionId, st
 	if (!decided || !place || !plan) return false;
 	if (await isPaused(tx, studyId, decided.participantId)) return false;
 	if ((await findMissingGates(tx, clock, studyId)).length > 0) return false;
+	const who = { studyId, participantId: decided.participantId };
+	if ((await findHeldForConsent(tx, clock, who)).length > 0) return false;
 	const limits = {
 		protocol: place.content,
 		rig: place.rig.limits,

@@ -1,6 +1,7 @@
 import { eq } from 'drizzle-orm';
 import { decideNextBlock } from '$scheduler/policies/decide';
 import type { DecisionRecord } from '$scheduler/policies/decision-record';
+import { moveIfDue } from '$lib/server/amendments/move-followers';
 import type { Clock } from '$lib/server/clock';
 import type { Database, Transaction } from '$lib/server/db/client';
 import { decision } from '$lib/server/db/schema';
@@ -51,12 +52,26 @@ async function decideOne(
 	const locked = await loadPerson(tx, participantId, { lock: true });
 	if (!locked || locked.state === 'withdrawn') return false;
 	const passed = await passBaseline(tx, services, locked);
-	const person = passed ? await loadPerson(tx, participantId, { lock: false }) : locked;
+	const loaded = passed ? await loadPerson(tx, participantId, { lock: false }) : locked;
+	const person = loaded && (await followAmendment(tx, clock, loaded));
 	if (!person) return false;
 	const slot = findNextSlot(person.slots, describeProgress(person, clock));
 	if (!slot) return false;
 	await decideSlot(tx, services, { person, slot });
 	return true;
+}
+
+/** Before a visit's first block is decided, the person is moved over to an amendment that is due. */
+async function followAmendment(
+	tx: Transaction,
+	clock: Clock,
+	person: PersonOnRecord
+): Promise<PersonOnRecord | null> {
+	const slot = findNextSlot(person.slots, describeProgress(person, clock));
+	if (slot?.indexInVisit !== 0) return person;
+	const { id: participantId, studyId } = person;
+	const isMoved = await moveIfDue(tx, clock, { studyId, participantId });
+	return isMoved ? loadPerson(tx, participantId, { lock: false }) : person;
 }
 
 function describeProgress(person: PersonOnRecord, clock: Clock) {

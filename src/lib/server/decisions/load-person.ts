@@ -37,11 +37,14 @@ export type PersonOnRecord = {
 	visits: Map<number, { bookingId: string; during: InstantRange; rigId: string; state: string }>;
 };
 
-/** Loads one participant; with `lock`, no other transaction decides for them meanwhile. */
+/**
+ * Loads one participant; with `lock`, no other transaction decides for them meanwhile. With
+ * `protocolHash` as by that version of the protocol: somebody moved over since had an earlier one.
+ */
 export async function loadPerson(
 	tx: Queryable,
 	participantId: string,
-	{ lock }: { lock: boolean }
+	{ lock, protocolHash }: { lock: boolean; protocolHash?: string }
 ): Promise<PersonOnRecord | null> {
 	const query = tx
 		.select({
@@ -57,7 +60,11 @@ export async function loadPerson(
 		.where(eq(participant.id, participantId));
 	const [row] = lock ? await query.for('update', { of: participant }) : await query;
 	if (!row?.hash) return null;
-	const { hash, ...own } = row;
+	const { hash: ownHash, ...person } = row;
+	const hash = protocolHash ?? ownHash;
+	const content =
+		hash === ownHash ? person.content : await loadContentOf(tx, { studyId: person.studyId, hash });
+	const own = { ...person, content };
 	const arm = await findArm(tx, participantId);
 	return {
 		...own,
@@ -68,6 +75,18 @@ export async function loadPerson(
 		blocks: await loadBlocks(tx, participantId),
 		visits: await loadVisits(tx, participantId)
 	};
+}
+
+async function loadContentOf(
+	tx: Queryable,
+	{ studyId, hash }: { studyId: string; hash: string }
+): Promise<ProtocolContent> {
+	const [row] = await tx
+		.select({ content: protocolVersion.content })
+		.from(protocolVersion)
+		.where(and(eq(protocolVersion.studyId, studyId), eq(protocolVersion.hash, hash)));
+	if (!row) throw new RangeError('the study has no version with this hash');
+	return row.content;
 }
 
 async function loadDecisions(tx: Queryable, participantId: string): Promise<StoredDecision[]> {

@@ -30,10 +30,10 @@ export async function replayStoredDecision(
 	decisionId: string
 ): Promise<ReplayVerdict> {
 	const [row] = await db
-		.select({ participantId: decision.participantId })
+		.select({ participantId: decision.participantId, protocolHash: decision.protocolHash })
 		.from(decision)
 		.where(eq(decision.id, decisionId));
-	const person = row && (await loadPerson(db, row.participantId, { lock: false }));
+	const person = row && (await loadAsThen(db, row));
 	const stored = person?.decisions.find((found) => found.id === decisionId);
 	if (!person || !stored) throw new RangeError('there is no such decision');
 	const slot = person.slots.find((found) => slotKey(found) === slotKey(stored));
@@ -41,6 +41,12 @@ export async function replayStoredDecision(
 	const asThen = rewindPerson(person, stored);
 	const inputs = await buildInputs(asThen, slot, (blockId) => readRawTrials(db, person, blockId));
 	return describeReplay(person, stored, withRecordedPlace(inputs, stored));
+}
+
+/** By the version that the decision was made by, whatever the person follows now. */
+function loadAsThen(db: Queryable, row: { participantId: string; protocolHash: string }) {
+	const { participantId, protocolHash } = row;
+	return loadPerson(db, participantId, { lock: false, protocolHash });
 }
 
 /** The person as they were when the decision was made: later decisions and settlements do not count. */

@@ -13,6 +13,7 @@ import {
 	sql
 } from 'drizzle-orm';
 import { alias } from 'drizzle-orm/pg-core';
+import { findHeldForConsent } from '$lib/server/amendments/held-for-consent';
 import type { Clock } from '$lib/server/clock';
 import type { Database, Transaction } from '$lib/server/db/client';
 import { booking, outbox, studyPause } from '$lib/server/db/schema';
@@ -36,13 +37,13 @@ export type ClaimedMail = typeof outbox.$inferSelect & {
  */
 export async function claimNextMail(db: Database, clock: Clock): Promise<ClaimedMail | null> {
 	return db.transaction(async (tx) => {
-		const shut = await findShutStudies(tx, clock);
+		const { shut, held } = await findShut(tx, clock);
 		const now = new Date(clock.now());
 		const [row] = await tx
 			.select({ mail: outbox, during: booking.during })
 			.from(outbox)
 			.leftJoin(booking, eq(booking.id, outbox.bookingId))
-			.where(isDue(tx, now, shut))
+			.where(isDue(tx, now, { shut, held }))
 			.orderBy(desc(outbox.isUrgent), asc(outbox.dueAt), asc(outbox.sequence))
 			.limit(1)
 			.for('update', { of: outbox, skipLocked: true });
@@ -60,22 +61,27 @@ export async function claimNextMail(db: Database, clock: Clock): Promise<Claimed
 	});
 }
 
-/** Studies with a due request whose gates are not all open. */
-async function findShutStudies(tx: Transaction, clock: Clock): Promise<string[]> {
+type Shut = { shut: string[]; held: string[] };
+
+/** Studies with a due request whose gates are not all open, and people whom an amendment stops. */
+async function findShut(tx: Transaction, clock: Clock): Promise<Shut> {
 	const due = await tx
 		.selectDistinct({ studyId: outbox.studyId })
 		.from(outbox)
 		.where(
 			and(inArray(outbox.state, ['waiting', 'unknown']), lte(outbox.dueAt, new Date(clock.now())))
 		);
-	const shut: string[] = [];
+	const [shut, held]: [string[], string[]] = [[], []];
 	for (const { studyId } of due) {
-		if (studyId && (await findMissingGates(tx, clock, studyId)).length > 0) shut.push(studyId);
+		if (!studyId) continue;
+		if ((await findMissingGates(tx, clock, studyId)).length > 0) shut.push(studyId);
+		const people = await findHeldForConsent(tx, clock, { studyId });
+		held.push(...people.map(({ participantId }) => participantId));
 	}
-	return shut;
+	return { shut, held };
 }
 
-function isDue(tx: Transaction, now: Date, shut: string[]) {
+function isDue(tx: Transaction, now: Date, closed: Shut) {
 	return and(
 		or(
 			eq(outbox.state, 'waiting'),
@@ -91,7 +97,7 @@ function isDue(tx: Transaction, now: Date, shut: string[]) {
 		notExists(
 			otherMail(tx, sql`other.sequence > ${outbox.sequence} and other.state <> 'superseded'`)
 		),
-		or(inArray(outbox.kind, ['cancelled', 'withdrawn']), mayRequest(tx, now, shut))
+		or(inArray(outbox.kind, ['cancelled', 'withdrawn']), mayRequest(tx, now, closed))
 	);
 }
 
@@ -104,7 +110,7 @@ function otherMail(tx: Transaction, condition: ReturnType<typeof sql>) {
 		.where(and(eq(other.bookingId, outbox.bookingId), condition));
 }
 
-function mayRequest(tx: Transaction, now: Date, shut: string[]) {
+function mayRequest(tx: Transaction, now: Date, { shut, held }: Shut) {
 	const pause = tx
 		.select({ one: sql`1` })
 		.from(studyPause)
@@ -117,5 +123,6 @@ function mayRequest(tx: Transaction, now: Date, shut: string[]) {
 		);
 	const studyId = outbox.studyId;
 	const isShut = shut.length === 0 ? sql`false` : inArray(studyId, shut);
-	return and(sql`not (${isShut})`, notExists(pause), exists(coming));
+	const isHeld = held.length === 0 ? sql`false` : inArray(outbox.participantId, held);
+	return and(sql`not (${isShut})`, sql`not (${isHeld})`, notExists(pause), exists(coming));
 }

@@ -1,3 +1,4 @@
+import { workAmendments } from '$lib/server/amendments/amendment-work';
 import { workDecide, workDueDecisions } from '$lib/server/decisions/decision-work';
 import { workMail } from '$lib/server/invitations/mail-work';
 import type { QueueName } from './queues';
@@ -14,6 +15,7 @@ export const queueWork: QueueWork[] = [{ queue: 'decide', work: workDecide }];
 
 /** What falls due by the clock, looked at every second. */
 export const dueWork: DueWork[] = [
+	{ name: 'amendments', work: workAmendments },
 	{ name: 'decisions', work: workDueDecisions },
 	{ name: 'send-mail', work: workMail }
 ];

@@ -1,10 +1,13 @@
 import { taskRecordSchema, type TaskRecord } from '$scheduler/tasks/task-record';
+import { eq } from 'drizzle-orm';
+import { describeTerms } from '$lib/protocol/amendment';
 import { describeProtocol, type ProtocolPart } from '$lib/protocol/describe-protocol';
 import { listDifferences, type Difference } from '$lib/protocol/list-differences';
 import type { VisitPlan } from '$scheduler/protocol/visit-plan';
 import type { ProtocolContent } from '$scheduler/protocol/protocol-content';
 import type { Grant } from '$lib/server/access/require-permission';
 import type { Queryable } from '$lib/server/db/client';
+import { amendment } from '$lib/server/db/schema';
 import { findDraftRow, findFrozenVersions, headOf, type VersionHead } from './find-versions';
 import { mayReadRule } from './may-read-rule';
 
@@ -19,6 +22,8 @@ export type LoadedProtocol = {
 					task: TaskRecord | null;
 				})
 		| null;
+	/** What the version declares of people in flight; null where it amends nothing. */
+	amendment: { term: string; text: string }[] | null;
 	/** The version it is compared with, and what changed since. */
 	compared: { number: number; differences: Difference[] } | null;
 	/** Number of the version being written; null when there is none or it is not theirs to see. */
@@ -47,6 +52,7 @@ export async function loadProtocol(
 					task: taskRecordSchema.safeParse(version.content.task).data ?? null
 				}
 			: null,
+		amendment: version ? await loadTerms(db, version.id) : null,
 		compared:
 			version && earlier
 				? {
@@ -56,6 +62,11 @@ export async function loadProtocol(
 				: null,
 		draftNumber: draft?.number ?? null
 	};
+}
+
+async function loadTerms(db: Queryable, versionId: string) {
+	const [row] = await db.select().from(amendment).where(eq(amendment.protocolVersionId, versionId));
+	return row ? describeTerms(row) : null;
 }
 
 /** A visit as everybody may read it: neither what single arms run, nor how a block is set. */

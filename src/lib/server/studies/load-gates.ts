@@ -29,6 +29,7 @@ export type GateCode =
 	| 'approval-expired'
 	| 'not-sealed'
 	| 'not-yet-effective'
+	| 'consent-renewal'
 	| 'paused'
 	| 'closed';
 
@@ -137,6 +138,7 @@ function gateOf(code: GateCode, { number = 0, day = '' } = {}): MissingGate {
 			`The allocation of version ${number} is not sealed yet.`,
 			'unblinded-statistician'
 		],
+		'consent-renewal': ['The amendment stops people until they consent anew.', 'coordinator'],
 		'not-yet-effective': [`Version ${number} takes effect on ${day}.`, 'investigator'],
 		paused: ['The study is paused; two different people lift the pause.', 'investigator'],
 		closed: ['The study is closed.', 'investigator']

@@ -11,6 +11,7 @@ import { listApprovalItems } from './approval-items';
 import { listChainItems, loadLabZone } from './chain-items';
 import { loadMessages } from './load-messages';
 import { listPersonItems, type ItemContext } from './person-items';
+import { listRenewalItems, loadComingTexts } from './renewal-items';
 import { findVersionSteps } from './version-steps';
 
 /**
@@ -43,7 +44,15 @@ export async function loadCoordinatorItems(
 	const zone = await loadLabZone(db, grant.labId);
 	const context: ItemContext = { studyId: grant.studyId, zone, nowMs: clock.now() };
 	const failedMails = await loadMessages(db, grant, { states: ['failed', 'unknown'] });
-	const items = records.flatMap((record) => listPersonItems(record, { failedMails }, context));
+	const renewals = await listRenewalItems(db, clock, grant, zone);
+	const newTexts = await loadComingTexts(db, grant.studyId);
+	const items = records
+		.flatMap((record) =>
+			listPersonItems(record, { failedMails }, context).filter(
+				({ kind }) => kind !== 'consent' || !newTexts.has(record.person.consent?.textVersion ?? '')
+			)
+		)
+		.concat(renewals);
 	const chains = await listChainItems(db, grant, records, context);
 	// A missed visit is why its chain breaks: one item says both.
 	const missed = new Set(
