@@ -154,7 +154,7 @@ describe('freezing', () => {
 		});
 		const faults = !refused.ok && refused.reason === 'faults' ? refused.faults : [];
 		expect(faults.map(({ place, text }) => [place, text.split(':')[0]])).toEqual([
-			['Aims, target shift', 'The first step is 0.5 SD']
+			['Policy, Target shift', 'The first step is 0.5 SD']
 		]);
 	});
 
