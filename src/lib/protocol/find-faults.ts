@@ -1,4 +1,5 @@
 import type { Fault, RigLimit } from './fault';
+import { findBlindingFaults } from './find-blinding-faults';
 import { findComparisonFaults } from './find-comparison-faults';
 import { findGapFaults } from './find-gap-faults';
 import { findPolicyFaults } from './find-policy-faults';
@@ -14,6 +15,7 @@ export function findFaults(draft: ProtocolDraft, rigs: readonly RigLimit[]): Fau
 	return [
 		...findTaskFaults(draft),
 		...findVisitFaults(draft, rigs),
+		...findBlindingFaults(draft),
 		...findGapFaults(draft),
 		...findRuleFaults(draft),
 		...findSettingFaults(draft),

@@ -1,7 +1,7 @@
 import { and, eq, isNull } from 'drizzle-orm';
 import type { AmendmentTerms } from '$lib/protocol/amendment';
 import type { Fault } from '$lib/protocol/fault';
-import { findFaults } from '$lib/protocol/find-faults';
+import { findFreezeFaults } from '$lib/protocol/findings';
 import { readContent } from '$lib/protocol/read-content';
 import type { Grant } from '$lib/server/access/require-permission';
 import type { Clock } from '$lib/server/clock';
@@ -109,8 +109,7 @@ async function readFinished(
 	stored: Parameters<typeof loadDraftContent>[0]
 ) {
 	const draft = loadDraftContent(stored);
-	const faults = findFaults(draft, await loadRigLimits(tx, grant.labId));
-	const blocking = faults.filter(({ level }) => level === 'fault');
+	const blocking = findFreezeFaults(draft, await loadRigLimits(tx, grant.labId));
 	if (blocking.length > 0) throw new Refused({ ok: false, reason: 'faults', faults: blocking });
 	const read = readContent(draft);
 	if (!read.ok) throw new Refused({ ok: false, reason: 'faults', faults: read.faults });

@@ -1,5 +1,5 @@
 import { findChainChanges } from '$lib/protocol/find-chain-changes';
-import { findFaults } from '$lib/protocol/find-faults';
+import { findFreezeFaults } from '$lib/protocol/findings';
 import { listDifferences, type Difference } from '$lib/protocol/list-differences';
 import { readContent } from '$lib/protocol/read-content';
 import type { Grant } from '$lib/server/access/require-permission';
@@ -40,8 +40,7 @@ export async function loadFreezing(
 	if (!row) return null;
 	const { number, revision } = row;
 	const draft = loadDraftContent(row.content);
-	const faults = findFaults(draft, await loadRigLimits(db, grant.labId));
-	const faultCount = faults.filter(({ level }) => level === 'fault').length;
+	const faultCount = findFreezeFaults(draft, await loadRigLimits(db, grant.labId)).length;
 	const read = readContent(draft);
 	if (!read.ok) {
 		const count = Math.max(1, faultCount, read.faults.length);
