@@ -1,5 +1,6 @@
 import type { CommandGroup } from './command.ts';
 import { ALLOCATION_COMMANDS } from './groups/allocation.ts';
+import { DESIGN_COMMANDS } from './groups/designs.ts';
 import { LEARNING_COMMANDS } from './groups/learning.ts';
 import { POLICY_COMMANDS } from './groups/policies.ts';
 import { STATISTICS_COMMANDS } from './groups/statistics.ts';
@@ -12,6 +13,7 @@ export const COMMANDS: CommandGroup = {
 	...TASK_COMMANDS,
 	...VARIABILITY_COMMANDS,
 	...POLICY_COMMANDS,
+	...DESIGN_COMMANDS,
 	...LEARNING_COMMANDS,
 	...STATISTICS_COMMANDS,
 	...ALLOCATION_COMMANDS,

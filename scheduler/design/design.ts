@@ -62,7 +62,7 @@ const bookingSchema = z.looseObject({
 });
 
 export const designSchema = z.looseObject({
-	task: z.unknown(),
+	task: z.unknown().optional(),
 	arms: z.array(armSchema).default([]),
 	visits: z.array(visitSchema).default([]),
 	booking: bookingSchema.prefault({}),

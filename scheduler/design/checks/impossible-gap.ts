@@ -21,7 +21,7 @@ export const checkGaps: Check = (design) => {
 };
 
 /** The chain of the design by days; null: a number is missing, or there is no chain. */
-function judge(design: Design): ChainVerdict | null {
+function judge(design: Design, asksClocks = true): ChainVerdict | null {
 	const { booking } = design;
 	const { earliestMinute, latestMinute, sameTimeToleranceMinutes: tolerance } = booking;
 	const gaps = design.visits.slice(1).map((visit, index): ChainGap | null => {
@@ -41,7 +41,7 @@ function judge(design: Design): ChainVerdict | null {
 		toleranceMinutes: tolerance,
 		weekdays: booking.weekdays,
 		pauses: readPauses(design),
-		countsElapsed: booking.dayMeaning === 'elapsed-hours'
+		countsElapsed: asksClocks && booking.dayMeaning === 'elapsed-hours'
 	});
 }
 
@@ -124,7 +124,7 @@ function describeWindow({ booking }: Design): string {
 /** The first of the usual remedies that lets the chain go on past this gap. */
 function findRepair(design: Design, index: number): Repair | null {
 	const helps = (repair: Repair): boolean => {
-		const verdict = judge(repairDesign(design, repair));
+		const verdict = judge(repairDesign(design, repair), false);
 		return verdict !== null && (verdict.ok || verdict.gap + 1 > index);
 	};
 	for (const repair of listRemedies(design, index)) if (helps(repair)) return repair;

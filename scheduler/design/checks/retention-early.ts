@@ -1,8 +1,9 @@
 import { DESIGN_LIMITS, ROUNDING } from '../design-limits.ts';
 import { nameVisit, type Design, type DesignBlock, type DesignVisit } from '../design.ts';
 import type { Check, Finding } from '../finding.ts';
-import type { DesignOperation } from '../repair.ts';
-import { listBlockLists, writeNumber } from '../walk-design.ts';
+import type { JsonObject } from '../../policies/json-value.ts';
+import type { DesignOperation, Repair } from '../repair.ts';
+import { listBlockLists, sum, writeNumber } from '../walk-design.ts';
 
 /** Purposes after which a test is one of performance, not of retention, until a day has passed. */
 const PRACTICE = ['practice', 'region', 'shift', 'washout', 'adaptive'];
@@ -12,33 +13,52 @@ const CLOCK_CHANGE_HOURS = 1;
 /** Retention tests that may come less than a day after the last practice. */
 export const checkRetentionTime: Check = (design) =>
 	design.visits.flatMap((visit, index): Finding[] => {
-		const hours = Math.min(...findShortest(design, index));
-		if (!(hours < DESIGN_LIMITS.retentionHours - ROUNDING)) return [];
-		const lost = findLostHours(design);
-		const isSameVisit = hours === 0;
-		return [
-			{
-				key: `retention-early:v${index + 1}`,
-				code: 'retention-early',
-				place: { visit: index + 1 },
-				field: isSameVisit ? `visits.${index}.blocks` : `visits.${index}.gapBefore.minHours`,
-				numbers: { hours, limit: DESIGN_LIMITS.retentionHours, ...lost },
-				severity: 'serious',
-				text: `${nameVisit(visit, index)}: retention may come ${writeNumber(hours)} h after the last practice${describeLost(lost)}; it needs ${DESIGN_LIMITS.retentionHours} h, or it tests performance.`,
-				repair: isSameVisit ? moveOut(design, index) : lengthenGap(visit, index, hours)
-			}
-		];
+		const shortest = findShortest(design, index).sort((a, b) => a.hours - b.hours);
+		const kinds = [true, false].flatMap(
+			(isSame) => shortest.find(({ isSameVisit }) => isSameVisit === isSame) ?? []
+		);
+		return kinds.flatMap((one) => describe(design, { visit, index }, one));
 	});
 
+function describe(
+	design: Design,
+	{ visit, index }: { visit: DesignVisit; index: number },
+	{ hours, isSameVisit }: Shortest
+): Finding[] {
+	if (hours >= DESIGN_LIMITS.retentionHours - ROUNDING) return [];
+	const lost = findLostHours(design);
+	return [
+		{
+			key: `retention-early:v${index + 1}${isSameVisit ? ':same-visit' : ''}`,
+			code: 'retention-early',
+			place: { visit: index + 1 },
+			field: isSameVisit ? `visits.${index}.blocks` : `visits.${index}.gapBefore.minHours`,
+			numbers: { hours, limit: DESIGN_LIMITS.retentionHours, ...lost },
+			severity: 'serious',
+			text: `${nameVisit(visit, index)}: retention may come ${writeNumber(hours)} h after the last practice${describeLost(lost)}; it needs ${DESIGN_LIMITS.retentionHours} h, or it tests performance.`,
+			...withRepair(isSameVisit ? moveOut(design, index) : lengthenGap(design, index, hours))
+		}
+	];
+}
+
+interface Shortest {
+	readonly hours: number;
+	readonly isSameVisit: boolean;
+}
+
+function withRepair(repair: Repair | undefined): { repair?: Repair } {
+	return repair ? { repair } : {};
+}
+
 /** For each arm with a retention test in the visit, the shortest real hours since it last practised. */
-function findShortest(design: Design, index: number): number[] {
-	return design.arms.flatMap(({ key }) => {
+function findShortest(design: Design, index: number): Shortest[] {
+	return design.arms.flatMap(({ key }): Shortest[] => {
 		const blocksOf = (visit: DesignVisit) => visit.armBlocks[key] ?? visit.blocks;
 		const own = design.visits.slice(0, index + 1).map(blocksOf);
 		const last = own.at(-1) ?? [];
 		const test = last.findIndex(isRetention);
 		if (test < 0) return [];
-		if (last.slice(0, test).some(isPractice)) return [0];
+		if (last.slice(0, test).some(isPractice)) return [{ hours: 0, isSameVisit: true }];
 		const before = own.slice(0, -1).findLastIndex((blocks) => blocks.some(isPractice));
 		if (before < 0) return [];
 		const gaps = design.visits
@@ -46,7 +66,7 @@ function findShortest(design: Design, index: number): number[] {
 			.map((visit) => findShortestGap(design, visit));
 		return gaps.some((gap) => gap === null)
 			? []
-			: [gaps.reduce<number>((sum, gap) => sum + (gap ?? 0), 0)];
+			: [{ hours: sum(gaps.map((gap) => gap ?? 0)), isSameVisit: false }];
 	});
 }
 
@@ -77,17 +97,45 @@ function describeLost({ byClockChange, byRelaxation }: ReturnType<typeof findLos
 	return parts.length > 0 ? ` (with ${parts.join(' and ')})` : '';
 }
 
-function lengthenGap(visit: DesignVisit, index: number, hours: number) {
-	const gap = visit.gapBefore;
-	const minHours = (gap?.minHours ?? 0) + DESIGN_LIMITS.retentionHours - hours;
-	const targetHours = Math.max(minHours, gap?.targetHours ?? 0);
-	const value = {
-		...{ ...gap, nightsBetween: gap?.nightsBetween ?? null, minHours, targetHours },
-		maxHours: Math.max(targetHours, gap?.maxHours ?? 0)
-	};
+function lengthenGap(design: Design, index: number, hours: number): Repair | undefined {
+	const visit = design.visits[index];
+	const own = visit && findShortestGap(design, visit);
+	if (!visit?.gapBefore || own === null || own === undefined) return undefined;
+	const { byClockChange, byRelaxation } = findLostHours(design);
+	const elsewhere = hours - own;
+	const minHours = DESIGN_LIMITS.retentionHours - elsewhere + byClockChange + byRelaxation;
+	const rising = (...values: (number | null)[]) => Math.max(...values.map((value) => value ?? 0));
+	const { pauses } = design.booking;
+	const mayPause = (pauses.count ?? 0) > 0 && (pauses.minHours ?? minHours) < minHours;
 	return {
 		label: `Let at least ${writeNumber(minHours)} h pass`,
-		operations: [{ kind: 'set-value', path: ['visits', index, 'gapBefore'], value } as const]
+		operations: [
+			{
+				kind: 'set-value',
+				path: ['visits', index, 'gapBefore'],
+				value: {
+					...{ ...visit.gapBefore, minHours: rising(minHours, visit.gapBefore.minHours) },
+					targetHours: rising(minHours, visit.gapBefore.minHours, visit.gapBefore.targetHours),
+					maxHours: rising(
+						minHours,
+						visit.gapBefore.minHours,
+						visit.gapBefore.targetHours,
+						visit.gapBefore.maxHours
+					)
+				} as JsonObject
+			},
+			...(mayPause
+				? [
+						{
+							...{ kind: 'set-value' as const, path: ['booking', 'pauses'] },
+							value: {
+								...{ count: pauses.count, minHours },
+								maxHours: rising(minHours, pauses.maxHours)
+							}
+						}
+					]
+				: [])
+		]
 	};
 }
 

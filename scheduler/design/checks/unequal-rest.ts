@@ -6,8 +6,8 @@ import { describeByArm, listArmVisits, listBlockLists, sum, writeNumber } from '
 
 /** Rest of one arm in a visit. */
 interface Rest {
-	/** Mean seconds after a trial. */
-	readonly afterTrialSeconds: number;
+	/** Mean seconds after a trial; null: there is none. */
+	readonly afterTrialSeconds: number | null;
 	readonly betweenBlocksMinutes: number;
 	readonly restBlocksMinutes: number;
 }
@@ -28,7 +28,7 @@ export const checkRest: Check = (design) =>
 		const differing = KINDS.filter(([kind]) => isApart(rows.map(({ rest }) => rest[kind])));
 		if (differing.length === 0) return [];
 		const said = differing.map(([kind, unit]) => {
-			const values = rows.map(({ arm, rest }) => ({ arm, value: writeNumber(rest[kind]) }));
+			const values = rows.map(({ arm, rest }) => ({ arm, value: writeNumber(rest[kind] ?? 0) }));
 			return `${describeByArm(values)} ${unit}`;
 		});
 		return [
@@ -51,7 +51,8 @@ export const checkRest: Check = (design) =>
 		];
 	});
 
-function isApart(values: readonly number[]): boolean {
+function isApart(given: readonly (number | null)[]): boolean {
+	const values = given.flatMap((value) => value ?? []);
 	return Math.max(...values) - Math.min(...values) > DESIGN_LIMITS.restApart + ROUNDING;
 }
 
@@ -61,7 +62,7 @@ function measureRest(blocks: readonly DesignBlock[]): Rest {
 		blocks.map((block) => (block.trials ?? 0) * (block.restBetweenTrialsSeconds ?? 0))
 	);
 	return {
-		afterTrialSeconds: trials > 0 ? seconds / trials : 0,
+		afterTrialSeconds: trials > 0 ? seconds / trials : null,
 		betweenBlocksMinutes: sum(blocks.slice(0, -1).map((block) => block.restAfterMinutes ?? 0)),
 		restBlocksMinutes: sum(
 			blocks.map((block) => (block.purpose === 'rest' ? (block.restMinutes ?? 0) : 0))
@@ -108,5 +109,6 @@ function withRestBlocks(
 	model.forEach((block, at) => {
 		if (block.purpose === 'rest') list.splice(at, 0, { ...block });
 	});
-	return list;
+	// Nothing but rest: there is nothing to keep.
+	return list.length > 0 ? list : model.map((block) => ({ ...block }));
 }

@@ -1,4 +1,5 @@
 import { checkNumber, checkText, faultAt, type Fault, type RigLimit } from './fault';
+import { findBlockFaults } from './find-block-faults';
 import { findLimitFaults, findRigFaults } from './find-limit-faults';
 import { visitName } from './visit-name';
 import { hasAdaptiveTime } from './has-adaptive-time';
@@ -90,48 +91,6 @@ function findFieldFaults(visit: VisitDraft, index: number): Fault[] {
 		...minutes('setupMinutes', 'Set-up', 0, 240),
 		...minutes('cleanupMinutes', 'Clean-up', 0, 240)
 	];
-}
-
-function findBlockFaults(visit: VisitDraft, index: number): Fault[] {
-	const name = visitName(visit, index);
-	const field = `visits.${index}.blocks`;
-	const purposes = { baseline: 'baseline', practice: 'adaptive', retention: 'retention' } as const;
-	const faults = visit.blocks.flatMap(({ trials }, at) =>
-		checkNumber({
-			value: trials,
-			place: `${name}, block ${at + 1}`,
-			field: `${field}.${at}.trials`,
-			name: 'Trials',
-			min: 1,
-			max: 2000,
-			isWhole: true
-		})
-	);
-	if (visit.blocks.length === 0) {
-		return [faultAt('no-block', { place: name, field }, 'The visit has no block.', 'Add a block.')];
-	}
-	if (!visit.blocks.some(({ purpose }) => purpose === purposes[visit.kind])) {
-		const wanted = purposes[visit.kind];
-		faults.push(
-			faultAt(
-				`no-${wanted}-block`,
-				{ place: name, field },
-				`A ${visit.kind} visit without ${wanted === 'adaptive' ? 'adaptive time' : `a ${wanted} block`}.`,
-				`Make one of its blocks ${wanted}, or change the kind of visit.`
-			)
-		);
-	}
-	if (visit.kind !== 'practice' && visit.blocks.some(({ purpose }) => purpose === 'adaptive')) {
-		faults.push(
-			faultAt(
-				'adaptive-misplaced',
-				{ place: name, field },
-				`Adaptive time in a ${visit.kind} visit.`,
-				'Adaptive time belongs to practice visits, after allocation.'
-			)
-		);
-	}
-	return faults;
 }
 
 /** Blinding needs one length: a block's length must not tell of which kind it is. */

@@ -1,8 +1,24 @@
-import type { GapDraft, VisitDraft } from './draft-parts';
-import { emptyAnalysis, plainBlock, usualMissedDay, usualYoking } from './empty-parts';
-import type { ProtocolDraft, VariableDraft } from './protocol-draft';
+import type { ProtocolDraft } from './protocol-draft';
+import {
+	createBlank,
+	dailyGap,
+	emptyComparison,
+	firstPracticeGap,
+	retentionGap,
+	visit
+} from './pattern-parts';
+import { createGradualAbrupt } from './worked-patterns/gradual-abrupt';
+import { createKeepTransfer } from './worked-patterns/keep-transfer';
+import { createYokedRegion } from './worked-patterns/yoked-region';
 
-export const patternNames = ['two-arms', 'single-visit', 'blank'] as const;
+export const patternNames = [
+	'two-arms',
+	'yoked-region',
+	'gradual-abrupt',
+	'keep-transfer',
+	'single-visit',
+	'blank'
+] as const;
 export type PatternName = (typeof patternNames)[number];
 
 /** What each pattern brings, in the words of the page that offers them. */
@@ -10,7 +26,22 @@ export const patternLabels: Record<PatternName, { label: string; detail: string 
 	'two-arms': {
 		label: 'Two arms over eight visits',
 		detail:
-			'Adaptive against fixed practice: a baseline visit, six practice days about 24 h apart, retention a week later. Sliding puck.'
+			'Adaptive against fixed practice: a baseline visit, six practice days about 24 h apart, retention a week later. Effect and people are yours to enter. Sliding puck.'
+	},
+	'yoked-region': {
+		label: 'Adaptive penalized region with yoked and fixed controls',
+		detail:
+			'Three arms: regions chosen for each person, the same regions given to a yoked partner, plain practice. Baseline, six practice days, retention and transfer a week later. Sliding puck.'
+	},
+	'gradual-abrupt': {
+		label: 'Gradual against abrupt target shift',
+		detail:
+			'Two fixed arms: the target moves by 0.3 m in small steps or at once. Baseline, two practice days with a washout, retention a week later. Sliding puck.'
+	},
+	'keep-transfer': {
+		label: 'Baseline, practice, retention, transfer',
+		detail:
+			'One arm: three days of plain practice, what is kept a day later, and what carries over to another target. Sliding puck.'
 	},
 	'single-visit': {
 		label: 'One visit with recorded blocks',
@@ -22,25 +53,19 @@ export const patternLabels: Record<PatternName, { label: string; detail: string 
 	}
 };
 
+const creators: Readonly<Record<PatternName, () => ProtocolDraft>> = {
+	'two-arms': createTwoArms,
+	'yoked-region': createYokedRegion,
+	'gradual-abrupt': createGradualAbrupt,
+	'keep-transfer': createKeepTransfer,
+	'single-visit': createSingleVisit,
+	blank: createBlank
+};
+
 /** The first draft of a study. Every value is a default that the investigator may change. */
 export function createPatternDraft(pattern: PatternName): ProtocolDraft {
-	if (pattern === 'two-arms') return createTwoArms();
-	return pattern === 'single-visit' ? createSingleVisit() : createBlank();
+	return creators[pattern]();
 }
-
-const dailyGap: GapDraft = { minHours: 20, targetHours: 24, maxHours: 28, nightsBetween: 1 };
-const firstPracticeGap: GapDraft = {
-	minHours: 48,
-	targetHours: 72,
-	maxHours: 336,
-	nightsBetween: 2
-};
-const retentionGap: GapDraft = {
-	minHours: 144,
-	targetHours: 168,
-	maxHours: 192,
-	nightsBetween: 6
-};
 
 function createTwoArms(): ProtocolDraft {
 	const baseline = visit('Baseline', 'baseline', [60, 60], dailyGap);
@@ -72,123 +97,5 @@ function createSingleVisit(): ProtocolDraft {
 		arms: [{ key: 'recorded', name: 'Recorded', rule: 'fixed', master: null }],
 		visits: [visit('Recorded visit', 'baseline', [60], dailyGap)],
 		limits: { ...blank.limits, minutesPerVisit: 120, trialsPerVisit: 2000 }
-	};
-}
-
-function createBlank(): ProtocolDraft {
-	return {
-		format: 1,
-		task: {
-			type: 'puck',
-			puck: { mu: 0.18, g: 9.81, D: 2, tolerance: 0.12, variables: puckVariables() },
-			formula: { formula: '', resultUnit: '', tolerance: null, variables: [emptyVariable()] }
-		},
-		arms: [{ key: 'arm-1', name: 'Arm 1', rule: 'fixed', master: null }],
-		visits: [visit('Baseline', 'baseline', [60], dailyGap)],
-		booking: {
-			earliest: '08:00',
-			latest: '18:00',
-			sameTimeToleranceMinutes: 120,
-			weekdays: [1, 2, 3, 4, 5],
-			pauses: { count: 1, minHours: 68, maxHours: 100 },
-			dayMeaning: 'elapsed-hours'
-		},
-		aims: {
-			region: { isOn: true, share: 0.5, escapes: 3 },
-			shift: { isOn: true, share: 0.5, goal: 3 }
-		},
-		settle: { minBlocks: 3, maxBlocks: 6 },
-		otherPolicy: {},
-		guardRails: { automaticCoverMax: 0.5, automaticReachSdMax: 4 },
-		readyLeadHours: 12,
-		invitationDelayHours: 24,
-		earliestStartHours: { min: 12, max: 36 },
-		comparison: emptyComparison(),
-		limits: {
-			...{ minutesPerVisit: 90, trialsPerVisit: 300 },
-			...{ variableMax: {}, shiftMax: null, penaltyShareMax: null }
-		},
-		consentTextVersion: '1',
-		variants: [],
-		trialSeconds: 8,
-		yoking: { ...usualYoking },
-		missedDay: { ...usualMissedDay },
-		relaxation: [],
-		instructions: [],
-		analysis: emptyAnalysis(),
-		justifications: {}
-	};
-}
-
-function visit(
-	label: string,
-	kind: VisitDraft['kind'],
-	trials: number[],
-	gapBefore: GapDraft
-): VisitDraft {
-	const purpose = kind === 'practice' ? 'adaptive' : kind;
-	return {
-		label,
-		kind,
-		minutes: kind === 'practice' ? 60 : 45,
-		setupMinutes: 15,
-		cleanupMinutes: 10,
-		gapBefore: { ...gapBefore },
-		blocks: trials.map((count) => plainBlock(purpose, count)),
-		armBlocks: {}
-	};
-}
-
-function puckVariables(): VariableDraft[] {
-	return [
-		{
-			name: 'release_speed',
-			unit: 'm/s',
-			min: 0.5,
-			max: 4,
-			origin: 2.486,
-			scale: 0.09,
-			resolution: 0.002
-		},
-		{
-			name: 'release_position',
-			unit: 'm',
-			min: -0.4,
-			max: 1.1,
-			origin: 0.25,
-			scale: 0.07,
-			resolution: 0.001
-		}
-	];
-}
-
-/** A variable of which nothing has been said yet. */
-export function emptyVariable(): VariableDraft {
-	return {
-		name: '',
-		unit: '',
-		min: null,
-		max: null,
-		origin: null,
-		scale: null,
-		resolution: null
-	};
-}
-
-function emptyComparison(): ProtocolDraft['comparison'] {
-	return {
-		outcome: '',
-		armA: '',
-		armB: '',
-		effectD: null,
-		effectSource: '',
-		alpha: 0.05,
-		sides: 2,
-		peoplePerArm: null,
-		peopleLostShare: 0.1,
-		peopleLostSource: '',
-		effectLostShare: 0,
-		effectLostSource: '',
-		enteredBy: {}
 	};
 }
