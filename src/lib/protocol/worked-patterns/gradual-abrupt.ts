@@ -2,7 +2,7 @@ import { plainBlock } from '../empty-parts';
 import type { BlockDraft } from '../draft-parts';
 import { createBlank, dailyGap, firstPracticeGap, retentionGap, visitOf } from '../pattern-parts';
 import type { ProtocolDraft } from '../protocol-draft';
-import { assumeComparison, oneInstruction, treatmentPolicy } from './shared-parts';
+import { assumeComparison, oneInstruction, treatmentPolicy } from './assumed-parts';
 
 /** How far the target moves in the end, m: two and a half tolerances of the puck. */
 const SHIFT = 0.3;

@@ -2,7 +2,7 @@ import { plainBlock } from '../empty-parts';
 import type { BlockDraft } from '../draft-parts';
 import { createBlank, dailyGap, firstPracticeGap, visitOf } from '../pattern-parts';
 import type { ProtocolDraft } from '../protocol-draft';
-import { oneInstruction, treatmentPolicy } from './shared-parts';
+import { oneInstruction, treatmentPolicy } from './assumed-parts';
 
 /** One arm: what practice changes, what is kept a day later, what carries over to another target. */
 export function createKeepTransfer(): ProtocolDraft {

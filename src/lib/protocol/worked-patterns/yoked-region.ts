@@ -2,7 +2,7 @@ import { plainBlock, usualMissedDay } from '../empty-parts';
 import { createBlank, dailyGap, firstPracticeGap, retentionGap, visitOf } from '../pattern-parts';
 import type { BlockDraft } from '../draft-parts';
 import type { ProtocolDraft } from '../protocol-draft';
-import { assumeComparison, oneInstruction, treatmentPolicy } from './shared-parts';
+import { assumeComparison, oneInstruction, treatmentPolicy } from './assumed-parts';
 
 const days = [1, 2, 3, 4, 5, 6];
 const told = { instruction: '1' };
