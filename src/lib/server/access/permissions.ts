@@ -39,6 +39,7 @@ export const permissions = {
 	'task:read': study('investigator', 'statistician'),
 	'protocol:read': { scope: 'study', roles: 'any' },
 	'protocol:edit': study('investigator'),
+	'comment:write': study('investigator', 'statistician', 'coordinator', 'monitor', 'approver'),
 	'protocol:freeze': study('investigator'),
 	'ethics:record': study('investigator'),
 	// A letter may say what is done to the task: not for roles that must not know it.

@@ -17,6 +17,7 @@ export type LoadedProtocol = {
 	shown:
 		| (VersionHead &
 				Pick<ProtocolContent, 'arms' | 'visits'> & {
+					id: string;
 					parts: ProtocolPart[];
 					/** Null for a task that no picture is known for. */
 					task: TaskRecord | null;
@@ -46,6 +47,7 @@ export async function loadProtocol(
 		shown: version
 			? {
 					...headOf(version),
+					id: version.id,
 					parts: describeProtocol(version.content, { withRule }),
 					arms: version.content.arms,
 					visits: withRule ? version.content.visits : version.content.visits.map(withoutRule),

@@ -79,6 +79,8 @@ export const protocolComment = pgTable(
 		partKey: text('part_key').notNull(),
 		/** Null for a comment on the whole part. */
 		lineKey: text('line_key'),
+		/** Everybody who reads the protocol, or only who may know how blocks are chosen. */
+		scope: text('scope', { enum: ['rule', 'all'] }).notNull(),
 		answersId: uuid('answers_id'),
 		body: text('body').notNull(),
 		writtenBy: uuid('written_by')

@@ -3,10 +3,14 @@ import { setError, superValidate } from 'sveltekit-superforms';
 import { zod4 } from 'sveltekit-superforms/adapters';
 import { z } from 'zod';
 import { letterMaxBytes } from '$lib/protocol/letter-type';
+import { answerSchema, commentSchema, resolveSchema } from '$lib/protocol/comment';
 import { ethicsApprovalSchema } from '$lib/protocol/ethics-approval';
+import { permissions } from '$lib/server/access/permissions';
 import { requirePermission } from '$lib/server/access/require-permission';
 import { listApprovals } from '$lib/server/ethics/list-approvals';
 import { recordApproval } from '$lib/server/ethics/record-approval';
+import { loadComments } from '$lib/server/comments/load-comments';
+import { answerComment, resolveComment, writeComment } from '$lib/server/comments/write-comment';
 import { loadApprovalEnd } from '$lib/server/ethics/find-approval-end';
 import { storeLetter } from '$lib/server/ethics/store-letter';
 import { revokeApproval } from '$lib/server/ethics/revoke-approval';
@@ -17,6 +21,7 @@ import { loadStudyZone } from '$lib/server/studies/load-study-zone';
 import { formatWithZone } from '$lib/time/format-instant';
 import type { Actions, PageServerLoad } from './$types';
 
+const commenters = permissions['comment:write'].roles;
 const numberSchema = z.coerce.number().int().positive();
 
 export const load: PageServerLoad = async ({ locals, params, url }) => {
@@ -28,12 +33,22 @@ export const load: PageServerLoad = async ({ locals, params, url }) => {
 	const protocol = await loadProtocol(db, grant, { number });
 	if (number !== undefined && !protocol.shown) error(404, 'Not found');
 	const zone = await loadStudyZone(db, grant.studyId);
+	const threads = protocol.shown
+		? await loadComments(db, grant, {
+				versionId: protocol.shown.id,
+				parts: protocol.shown.parts
+			})
+		: [];
 	const mayEdit = grant.roles.includes('investigator');
 	const defaults = { protocolHash: protocol.shown?.hash ?? '' };
 	return {
 		...protocol,
 		frozenText: protocol.shown ? formatWithZone(protocol.shown.frozenAtMs, zone) : '',
 		justFrozen: url.searchParams.get('frozen') === String(protocol.shown?.number),
+		zone,
+		threads,
+		mayComment: commenters.some((role) => grant.roles.includes(role)),
+		commentOn: url.searchParams.get('on') ?? '',
 		approvals: await listApprovals(db, clock, grant),
 		approvalEnd: await loadApprovalEnd(db, clock, grant),
 		progress: await loadProgress(db, clock, grant),
@@ -60,6 +75,38 @@ const letterRefusals = {
 };
 
 export const actions: Actions = {
+	comment: async ({ locals, params, request }) => {
+		const grant = await requirePermission(locals, 'comment:write', params);
+		const data = Object.fromEntries(await request.formData());
+		const input = commentSchema.safeParse(data);
+		const typed = String(data.body ?? '');
+		if (!input.success) {
+			const [issue] = input.error.issues;
+			return fail(400, { commentRefused: `${issue?.message ?? 'Write a comment'}.`, typed });
+		}
+		const written = await writeComment(locals.db, locals.clock, grant, input.data);
+		if (written.ok) return { commentId: written.id };
+		const text = 'This version has no such place. Choose another and leave the comment again.';
+		return fail(409, { commentRefused: text, typed });
+	},
+	answer: async ({ locals, params, request }) => {
+		const grant = await requirePermission(locals, 'comment:write', params);
+		const input = answerSchema.safeParse(Object.fromEntries(await request.formData()));
+		const written = input.success
+			? await answerComment(locals.db, locals.clock, grant, input.data)
+			: { ok: false as const };
+		if (written.ok) return { commentId: written.id };
+		return fail(409, { refused: 'The answer is empty, too long, or its comment is gone.' });
+	},
+	resolve: async ({ locals, params, request }) => {
+		const grant = await requirePermission(locals, 'comment:write', params);
+		const input = resolveSchema.safeParse(Object.fromEntries(await request.formData()));
+		if (!input.success) return fail(400, { refused: 'Load the page again.' });
+		const { commentId, resolved } = input.data;
+		const change = { commentId, resolved: resolved === 'yes' };
+		const done = await resolveComment(locals.db, locals.clock, grant, change);
+		return done.ok ? { resolved: true } : fail(409, { refused: 'There is no such comment.' });
+	},
 	letter: async ({ locals, params, request }) => {
 		const grant = await requirePermission(locals, 'ethics:record', params);
 		const data = await request.formData();
