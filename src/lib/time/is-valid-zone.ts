@@ -1,4 +1,5 @@
 import { zoneCity } from './zone-label';
+import { editDistance } from '../ui/edit-distance';
 
 const NAME_PATTERN = /^[A-Z][A-Za-z_]+(\/[A-Za-z0-9_+-]+)+$/;
 
@@ -55,19 +56,6 @@ function plain(text: string): string {
 		.replace(/[_\s-]+/g, ' ')
 		.trim()
 		.toLowerCase();
-}
-
-function editDistance(a: string, b: string): number {
-	let row = Array.from({ length: b.length + 1 }, (_, j) => j);
-	for (let i = 1; i <= a.length; i++) {
-		const next = [i];
-		for (let j = 1; j <= b.length; j++) {
-			const change = (row[j - 1] ?? 0) + (a[i - 1] === b[j - 1] ? 0 : 1);
-			next.push(Math.min(change, (row[j] ?? 0) + 1, (next[j - 1] ?? 0) + 1));
-		}
-		row = next;
-	}
-	return row[b.length] ?? 0;
 }
 
 const MODERN_SPELLINGS = [

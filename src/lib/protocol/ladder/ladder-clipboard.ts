@@ -1,4 +1,5 @@
 import { clipType, readClip, writeClip } from './clip';
+import { writeBlocks } from '../table/write-block-rows';
 import { paste, remove, takeCopy } from './ladder-acts';
 import type { LadderState } from './ladder-state.svelte';
 
@@ -10,13 +11,16 @@ export function createLadderClipboard(ladder: LadderState) {
 			if (!clip) return;
 			event.preventDefault();
 			event.clipboardData?.setData(clipType, writeClip(clip));
-			event.clipboardData?.setData('text/plain', writeClip(clip));
+			const { draft, refs } = ladder;
+			event.clipboardData?.setData('text/plain', refs.length > 0 ? writeBlocks(draft, refs) : '');
 			if (event.type === 'cut') remove(ladder);
 		},
 		paste(event: ClipboardEvent): void {
 			event.preventDefault();
-			const read = (type: string) => readClip(event.clipboardData?.getData(type) ?? '');
-			paste(ladder, read(clipType) ?? read('text/plain') ?? ladder.clip);
+			const clip = readClip(event.clipboardData?.getData(clipType) ?? '');
+			const text = event.clipboardData?.getData('text/plain') ?? '';
+			if (!clip && /[\t\n]/.test(text.trim())) ladder.pasted = text;
+			else paste(ladder, clip ?? ladder.clip);
 		}
 	};
 }

@@ -72,6 +72,11 @@ export const ladderCommands: readonly LadderCommand[] = [
 	{ id: 'copy-day', label: 'Copy the day', keys: 'Shift+D', run: copyDay, fits: onVisit },
 	{ id: 'new-visit', label: 'New visit', keys: 'Shift+N', run: addVisitBehind },
 	{ id: 'new-arm', label: 'New arm', keys: 'Shift+A', run: addArmBelow },
+	{ id: 'table', label: 'Show as table', keys: 'T', run: (ladder) => (ladder.isTable = true) },
+	{
+		...{ id: 'rows', label: 'Paste rows of a spreadsheet', keys: '' },
+		run: (ladder) => (ladder.pasted = '')
+	},
 	{ id: 'scope', label: 'Edit one arm or every arm', keys: 'A', run: turnScope },
 	{ id: 'share', label: 'Same for all arms again', keys: '=', run: shareAgain, fits: hasArms },
 	{

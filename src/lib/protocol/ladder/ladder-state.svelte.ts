@@ -32,6 +32,9 @@ export class LadderState {
 	/** Grows whenever that form should get the focus. */
 	editCount = $state(0);
 	clip: Clip | null = $state.raw(null);
+	/** Rows of a spreadsheet that wait to be looked at; empty: they are asked for. */
+	pasted: string | null = $state(null);
+	isTable = $state(false);
 	/** Where a picked-up piece would be put down. */
 	drop: Spot | null = $state.raw(null);
 	/** Where the pointer is that holds a piece. */
