@@ -154,7 +154,10 @@ describe('freezing', () => {
 		});
 		const faults = !refused.ok && refused.reason === 'faults' ? refused.faults : [];
 		expect(faults.map(({ place, text }) => [place, text.split(':')[0]])).toEqual([
-			['Policy, Target shift', 'The first step is 0.5 SD']
+			[
+				'The rule may answer noise',
+				'The first step of the target is 0.5 SD of the person’s own result'
+			]
 		]);
 	});
 
