@@ -38,6 +38,8 @@ const rigFacts = {
 	minutesPerVisit: 90,
 	trialsPerVisit: 400,
 	variableMax: 'release_speed_m_s 1.8',
+	shiftMax: 0.4,
+	penaltyShareMax: null,
 	limitsChecked: true
 };
 
@@ -109,7 +111,8 @@ describe('rigs', () => {
 				isPowered: true,
 				minutesPerVisit: 90,
 				trialsPerVisit: 400,
-				variableMax: { release_speed_m_s: 1.8 }
+				variableMax: { release_speed_m_s: 1.8 },
+				shiftMax: 0.4
 			},
 			publicKey: { ...key, use: 'enc' }
 		});

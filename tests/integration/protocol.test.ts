@@ -6,6 +6,7 @@ import { findFrozenVersions } from '$lib/server/protocols/find-versions';
 import { freezeVersion } from '$lib/server/protocols/freeze-version';
 import { loadDraft } from '$lib/server/protocols/load-draft';
 import { loadProtocol } from '$lib/server/protocols/load-protocol';
+import { loadRigLimits } from '$lib/server/protocols/load-draft';
 import { saveDraft } from '$lib/server/protocols/save-draft';
 import { startDraft } from '$lib/server/protocols/start-draft';
 import { canonicalJson, sha256Hex } from '$lib/server/record/canonical-json';
@@ -115,6 +116,27 @@ describe('saving a draft', () => {
 			});
 		const outcomes = await Promise.all([save('a'), save('b')]);
 		expect(outcomes.map(({ ok }) => ok).sort()).toEqual([false, true]);
+	});
+
+	it('is refused in words while a limit lies above what the rigs allow', async () => {
+		const grant = await investigator.grantFor('protocol:edit');
+		const [rig] = await loadRigLimits(handle.db, labId);
+		const draft = finishedDraft();
+		draft.limits.trialsPerVisit = (rig?.trialsPerVisit ?? 0) + 1;
+		const refused = await saveDraft(handle.db, grant, { number: 1, revision: 0, draft });
+		expect(refused).toMatchObject({ ok: false, reason: 'out-of-range' });
+		expect(!refused.ok && refused.reason === 'out-of-range' ? refused.faults : []).toEqual([
+			expect.stringMatching(new RegExp(`^Trials a visit: .*${rig?.name} allows\\.$`))
+		]);
+		expect((await draftOf(investigator)).revision).toBe(0);
+	});
+
+	it('is refused in words while a limit is out of its range', async () => {
+		const grant = await investigator.grantFor('protocol:edit');
+		const draft = finishedDraft();
+		draft.limits.penaltyShareMax = 1.5;
+		const refused = await saveDraft(handle.db, grant, { number: 1, revision: 0, draft });
+		expect(refused).toMatchObject({ ok: false, reason: 'out-of-range' });
 	});
 
 	it('keeps a number that is not typed yet', async () => {

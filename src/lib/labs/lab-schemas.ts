@@ -116,6 +116,17 @@ export const rigSchema = z
 			.max(20_000, 'At most 20,000 trials.')
 			.default(1000),
 		variableMax: variableLimits,
+		shiftMax: z
+			.number()
+			.positive('A number above zero, or leave it empty.')
+			.nullable()
+			.default(null),
+		penaltyShareMax: z
+			.number()
+			.gt(0, 'A share above 0, or leave it empty.')
+			.max(1, 'A share from 0 to 1.')
+			.nullable()
+			.default(null),
 		limitsChecked: z.boolean().default(false)
 	})
 	.superRefine((rig, context) => {

@@ -17,6 +17,11 @@ export type RigLimit = {
 	name: string;
 	minutesPerVisit: number;
 	trialsPerVisit: number;
+	isPowered?: boolean;
+	/** Left out: the rig states none. */
+	variableMax?: Readonly<Record<string, number>>;
+	shiftMax?: number | null;
+	penaltyShareMax?: number | null;
 };
 
 type NumberRule = {

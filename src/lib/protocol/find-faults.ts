@@ -4,6 +4,8 @@ import { findComparisonFaults } from './find-comparison-faults';
 import { findGapFaults } from './find-gap-faults';
 import { findPolicyFaults } from './find-policy-faults';
 import { findRuleFaults } from './find-rule-faults';
+import { findDoseFaults } from './limits/find-dose-faults';
+import { findEnvelopeFaults } from './limits/find-envelope-faults';
 import { findDueBlockFaults } from './policy/find-due-block-faults';
 import { findSettingFaults } from './policy/find-setting-faults';
 import { findTaskFaults } from './find-task-faults';
@@ -21,6 +23,8 @@ export function findFaults(draft: ProtocolDraft, rigs: readonly RigLimit[]): Fau
 		...findSettingFaults(draft),
 		...findDueBlockFaults(draft),
 		...findPolicyFaults(draft),
-		...findComparisonFaults(draft)
+		...findComparisonFaults(draft),
+		...findEnvelopeFaults(draft, rigs),
+		...findDoseFaults(draft)
 	];
 }

@@ -9,7 +9,6 @@ export function findRuleFaults(draft: ProtocolDraft): Fault[] {
 		...findArmFaults(draft),
 		...findHourFaults(draft),
 		...findTimelineFaults(draft),
-		...findLimitFaults(draft),
 		...checkText({
 			value: draft.consentTextVersion,
 			place: 'Consent',
@@ -154,13 +153,4 @@ function findTimelineFaults(draft: ProtocolDraft): Fault[] {
 		faults.push(faultAt('start-too-late', where, text, 'Lower it, or lengthen the gap.'));
 	}
 	return faults;
-}
-
-function findLimitFaults({ limits }: ProtocolDraft): Fault[] {
-	const number = (value: number | null, field: string, name: string, max: number) =>
-		checkNumber({ value, place: 'Limits', field, name, min: 1, max, isWhole: true });
-	return [
-		...number(limits.minutesPerVisit, 'limits.minutesPerVisit', 'Minutes a visit', 600),
-		...number(limits.trialsPerVisit, 'limits.trialsPerVisit', 'Trials a visit', 20000)
-	];
 }

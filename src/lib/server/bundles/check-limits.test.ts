@@ -58,4 +58,42 @@ describe('findLimitFaults', () => {
 		expect(listFaults('transfer', transfer)).toEqual([]);
 		expect(listFaults('transfer', transfer, { release_speed: 1 })).toEqual(['target']);
 	});
+
+	const withLimits = (own: Partial<typeof protocol.limits>, ofRig: object = {}) => ({
+		protocol: { ...protocol, limits: { ...protocol.limits, ...own } },
+		rig: { ...rig, ...ofRig },
+		visitNumber: 2
+	});
+	const moved = (by: number) => ({
+		kind: 'shift',
+		parameters: { trials: 2, levels: [0, by], rule }
+	});
+	const caught = (share: number) => ({
+		kind: 'region',
+		parameters: { trials: 60, region: { ...region, share } }
+	});
+	const codesOf = (...given: Parameters<typeof findLimitFaults>) =>
+		findLimitFaults(...given).map(({ code }) => code);
+
+	it.each([
+		['protocol', withLimits({ shiftMax: 0.3, penaltyShareMax: 0.6 })],
+		['rig', withLimits({}, { shiftMax: 0.3, penaltyShareMax: 0.6 })],
+		['rig, where both say it', withLimits({ shiftMax: 2 }, { shiftMax: 0.3, penaltyShareMax: 0.6 })]
+	])('refuses a shift or a penalty above the limit of the %s, and not at it', (_, limits) => {
+		expect(codesOf(moved(-0.3), limits)).toEqual([]);
+		expect(codesOf(moved(-0.31), limits)).toEqual(['shift']);
+		expect(codesOf(caught(0.6), limits)).toEqual([]);
+		expect(codesOf(caught(0.61), limits)).toEqual(['penalty']);
+	});
+
+	it('refuses a shift whose goal lies beyond the limit, however small its first levels', () => {
+		expect(codesOf(moved(0.01), withLimits({ shiftMax: 0.29 }))).toEqual(['shift']);
+	});
+
+	it('refuses a region beyond what the protocol itself may ask for', () => {
+		const placed = { ...region, centerInUnits: [1.1, 0] };
+		const plan = { kind: 'region', parameters: { trials: 60, region: placed } };
+		expect(codesOf(plan, withLimits({ variableMax: { release_speed: 1.2 } }))).toEqual([]);
+		expect(codesOf(plan, withLimits({ variableMax: { release_speed: 1 } }))).toEqual(['variable']);
+	});
 });

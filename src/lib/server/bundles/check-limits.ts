@@ -7,7 +7,8 @@ import type { ProtocolContent } from '$scheduler/protocol/protocol-content';
 import type { RigLimits } from '$lib/server/db/schema';
 import { readPlan, type BlockPlanToRun, type PlanFault } from './check-plan';
 
-export type LimitFault = PlanFault | { code: 'trials' | 'variable' | 'target'; message: string };
+export type LimitFault =
+	PlanFault | { code: 'trials' | 'variable' | 'target' | 'shift' | 'penalty'; message: string };
 
 type Limits = { protocol: ProtocolContent; rig: RigLimits; visitNumber: number };
 
@@ -20,37 +21,93 @@ export function findLimitFaults(plan: BlockPlanToRun, limits: Limits): LimitFaul
 	if (!read.ok) return [read.fault];
 	const { parameters } = read;
 	const task = taskRecordSchema.parse(limits.protocol.task);
+	const variableMax = joinVariableMax(limits.protocol, limits.rig);
 	return [
 		...findTrialFaults(parameters, limits),
-		...findVariableFaults(parameters, task, limits.rig),
-		...findTargetFaults(parameters, task, limits.rig)
+		...findVariableFaults(parameters, task, variableMax),
+		...findTargetFaults(parameters, task, variableMax),
+		...findDoseFaults(parameters, task.resultUnit, limits)
 	];
 }
 
 function findTrialFaults(parameters: BlockParameters, limits: Limits): LimitFault[] {
 	const { protocol, rig, visitNumber } = limits;
 	const trials = parameters.trials ?? 0;
-	const others = protocol.visits.find((visit) => visit.number === visitNumber)?.blocks ?? [];
-	const planned = others.reduce((sum, block) => sum + block.trials, 0);
+	const visit = protocol.visits.find(({ number }) => number === visitNumber);
+	const lists = visit ? [visit.blocks, ...Object.values(visit.armBlocks ?? {})] : [];
+	const planned = Math.max(0, ...lists.map((list) => list.reduce((sum, b) => sum + b.trials, 0)));
 	const mostTrials = Math.min(protocol.limits.trialsPerVisit, rig.trialsPerVisit);
 	if (trials >= 1 && Math.max(trials, planned) <= mostTrials) return [];
 	return [{ code: 'trials', message: `${trials} trials; the visit's limit is ${mostTrials}.` }];
+}
+
+type VariableMax = Readonly<Record<string, number>>;
+
+/** The narrower of what the protocol and the rig allow, variable by variable. */
+export function joinVariableMax(protocol: ProtocolContent, rig: RigLimits): VariableMax {
+	const own = protocol.limits.variableMax ?? {};
+	const names = new Set([...Object.keys(own), ...Object.keys(rig.variableMax)]);
+	const least = (name: string) =>
+		Math.min(
+			own[name] ?? Number.POSITIVE_INFINITY,
+			rig.variableMax[name] ?? Number.POSITIVE_INFINITY
+		);
+	return Object.fromEntries([...names].map((name) => [name, least(name)]));
+}
+
+/** How far a target moves, and how many of a person's own trials a region catches. */
+function findDoseFaults(
+	{ level, levels = [], rule, region }: BlockParameters,
+	unit: string,
+	{ protocol, rig }: Limits
+): LimitFault[] {
+	const shiftMax = leastOf(protocol.limits.shiftMax, rig.shiftMax);
+	const penaltyMax = leastOf(protocol.limits.penaltyShareMax, rig.penaltyShareMax);
+	const moves = [level ?? 0, rule?.goal ?? 0, ...levels].map(Math.abs);
+	const farthest = moves.reduce((most, move) => Math.max(most, move), 0);
+	const caught = Math.max(region?.share ?? 0, region?.catch ?? 0);
+	return [
+		...exceed(
+			'shift',
+			farthest,
+			shiftMax,
+			(most) => `a target moved by ${farthest} ${unit}; the limit is ${most}.`
+		),
+		...exceed(
+			'penalty',
+			caught,
+			penaltyMax,
+			(most) => `a region that catches ${caught} of own trials; the limit is ${most}.`
+		)
+	];
+}
+
+const leastOf = (...limits: readonly (number | undefined)[]): number =>
+	Math.min(...limits.map((limit) => limit ?? Number.POSITIVE_INFINITY));
+
+function exceed(
+	code: 'shift' | 'penalty',
+	value: number,
+	most: number,
+	say: (most: number) => string
+): LimitFault[] {
+	return value <= most ? [] : [{ code, message: say(most) }];
 }
 
 /** The region's centre, and the way out where it is known, must be movements that the rig allows. */
 function findVariableFaults(
 	{ region }: BlockParameters,
 	task: TaskRecord,
-	rig: RigLimits
+	variableMax: VariableMax
 ): LimitFault[] {
 	if (!region) return [];
 	const center = region.centerInUnits ?? createScaledTask(createTask(task)).toUnits(region.center);
 	return [center, ...(region.exitInUnits ? [region.exitInUnits] : [])].flatMap((place) =>
 		task.variables.flatMap(({ name, unit }, index): LimitFault[] => {
 			const value = place[index] ?? Number.NaN;
-			const most = rig.variableMax[name];
+			const most = variableMax[name];
 			if (most === undefined || Math.abs(value) <= most) return [];
-			const message = `${name} ${value} ${unit}; the rig's limit is ${most}.`;
+			const message = `${name} ${value} ${unit}; the limit is ${most}.`;
 			return [{ code: 'variable', message }];
 		})
 	);
@@ -60,13 +117,13 @@ function findVariableFaults(
 function findTargetFaults(
 	parameters: BlockParameters,
 	task: TaskRecord,
-	rig: RigLimits
+	variableMax: VariableMax
 ): LimitFault[] {
 	const { level, levels = [], targetOffset, rule } = parameters;
 	const wanted = [level, targetOffset, rule?.goal, ...levels].filter((at) => at !== undefined);
 	if (wanted.length === 0) return [];
 	const allowed = task.variables.map((variable) => {
-		const most = rig.variableMax[variable.name] ?? Number.POSITIVE_INFINITY;
+		const most = variableMax[variable.name] ?? Number.POSITIVE_INFINITY;
 		return { ...variable, min: Math.max(variable.min, -most), max: Math.min(variable.max, most) };
 	});
 	const range = findResultRange({ ...task, variables: allowed });

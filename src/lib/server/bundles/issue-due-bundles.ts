@@ -20,7 +20,7 @@ import type { SigningKey } from '$lib/server/keys/signing-key';
 import { isPaused } from '$lib/server/pauses/is-paused';
 import { findMissingGates } from '$lib/server/studies/load-gates';
 import { recordEvent } from '$lib/server/record/record-event';
-import { findLimitFaults } from './check-limits';
+import { findLimitFaults, joinVariableMax } from './check-limits';
 import { nameBundle, sealBundle } from './seal-bundle';
 
 type Due = { decisionId: string; studyId: string };
@@ -121,7 +121,7 @@ async function issueBundle(tx: Transaction, services: Services, { decisionId, st
 					place.content.limits.trialsPerVisit,
 					place.rig.limits.trialsPerVisit
 				),
-				variableMax: place.rig.limits.variableMax
+				variableMax: joinVariableMax(place.content, place.rig.limits)
 			},
 			...describeCoordinates(place.content),
 			plan,

@@ -163,13 +163,16 @@ function findHold(person: PersonOnRecord, record: DecisionRecord): HoldReason[] 
 	if (code === 'UNCHANGED') return findInheritedHold(person, record);
 	const weighed = [...(record.facts.place ?? []), ...(record.facts.lean ?? [])];
 	const chosen = weighed.filter((rung) => rung.accepted).at(-1);
+	const { region, rule, level = 0, levels = [] } = record.parameters;
 	const choice = {
 		kind: record.kind,
 		code,
 		coverShare: chosen?.cover ?? null,
-		reachSd: record.parameters.region?.reachSd ?? null
+		reachSd: region?.reachSd ?? null,
+		catchShare: region ? Math.max(region.share, region.catch ?? 0) : null,
+		moveBy: Math.max(0, ...[level, rule?.goal ?? 0, ...levels].map(Math.abs))
 	};
-	return findHoldReasons(choice, person.content.guardRails);
+	return findHoldReasons(choice, person.content.guardRails, person.content.limits);
 }
 
 /** Before a visit: its ready hour. Inside a visit: a fixed few seconds after the trials are in. */

@@ -34,4 +34,18 @@ describe('findHoldReasons', () => {
 		};
 		expect(findHoldReasons(practice, rails)).toEqual([]);
 	});
+
+	it('holds what a limit of the protocol forbids, and not what stands at it', () => {
+		const limits = { shiftMax: 0.3, penaltyShareMax: 0.7 };
+		const hard = { ...region, catchShare: 0.71 };
+		expect(findHoldReasons(hard, rails, limits)).toEqual([
+			{ code: 'PENALTY-OVER-LIMIT', values: { share: 0.71, most: 0.7 } }
+		]);
+		const shift = { kind: 'shift' as const, code: 'AIM', coverShare: null, reachSd: null };
+		const far = findHoldReasons({ ...shift, moveBy: -0.31 }, rails, limits);
+		expect(far).toEqual([{ code: 'SHIFT-OVER-LIMIT', values: { move: 0.31, most: 0.3 } }]);
+		expect(findHoldReasons({ ...shift, moveBy: -0.3 }, rails, limits)).toEqual([]);
+		expect(findHoldReasons({ ...region, catchShare: 0.7 }, rails, limits)).toEqual([]);
+		expect(findHoldReasons({ ...shift, moveBy: 9 }, rails)).toEqual([]);
+	});
 });

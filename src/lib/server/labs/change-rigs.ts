@@ -149,8 +149,12 @@ async function findFault(
 function limitsOf(facts: RigFacts): RigLimits {
 	const found = parseVariableLimits(facts.variableMax);
 	if (!found.ok) throw new TypeError('limits are parsed before they come here');
-	const { isPowered, minutesPerVisit, trialsPerVisit } = facts;
-	return { isPowered, minutesPerVisit, trialsPerVisit, variableMax: found.variableMax };
+	const { isPowered, minutesPerVisit, trialsPerVisit, shiftMax, penaltyShareMax } = facts;
+	return {
+		...{ isPowered, minutesPerVisit, trialsPerVisit, variableMax: found.variableMax },
+		...(shiftMax === null ? {} : { shiftMax }),
+		...(penaltyShareMax === null ? {} : { penaltyShareMax })
+	};
 }
 
 function isOnCurve(key: RigPublicKey): boolean {

@@ -34,9 +34,5 @@ export async function loadRigLimits(db: Queryable, labId: string): Promise<RigLi
 		.from(rig)
 		.where(and(eq(rig.labId, labId), isNull(rig.retiredAt)))
 		.orderBy(rig.name);
-	return rows.map(({ name, limits: { minutesPerVisit, trialsPerVisit } }) => ({
-		name,
-		minutesPerVisit,
-		trialsPerVisit
-	}));
+	return rows.map(({ name, limits }) => ({ ...limits, name }));
 }

@@ -1,10 +1,12 @@
 import { and, eq, isNull } from 'drizzle-orm';
 import { assumptionFields, type ProtocolDraft } from '$lib/protocol/protocol-draft';
+import { findUnsavable } from '$lib/protocol/limits/find-envelope-faults';
 import type { Grant } from '$lib/server/access/require-permission';
 import type { Database, Queryable } from '$lib/server/db/client';
 import { protocolVersion } from '$lib/server/db/schema';
 import { loadDraftContent, storeDraft } from './draft-content';
 import { findDraftRow } from './find-versions';
+import { loadRigLimits } from './load-draft';
 
 export type SaveDraftInput = { number: number; revision: number; draft: ProtocolDraft };
 
@@ -12,7 +14,9 @@ export type SaveDraftOutcome =
 	| { ok: true; revision: number; enteredBy: Record<string, string> }
 	/** Somebody else saved meanwhile; `draft` is what stands now. */
 	| { ok: false; reason: 'stale'; revision: number; draft: ProtocolDraft }
-	| { ok: false; reason: 'no-draft' };
+	| { ok: false; reason: 'no-draft' }
+	/** Limits out of their range, or above what the lab's rigs allow. */
+	| { ok: false; reason: 'out-of-range'; faults: string[] };
 
 /** Saves the draft if it is still the one that was loaded; a stale save changes nothing. */
 export async function saveDraft(
@@ -21,6 +25,11 @@ export async function saveDraft(
 	input: SaveDraftInput
 ): Promise<SaveDraftOutcome> {
 	return db.transaction(async (tx): Promise<SaveDraftOutcome> => {
+		const unsavable = findUnsavable(input.draft, await loadRigLimits(tx, grant.labId));
+		if (unsavable.length > 0) {
+			const faults = unsavable.map(({ text, remedy }) => `${text} ${remedy}`);
+			return { ok: false, reason: 'out-of-range', faults };
+		}
 		const row = await findDraftRow(tx, grant.studyId);
 		if (row?.number !== input.number) return { ok: false, reason: 'no-draft' };
 		const before = loadDraftContent(row.content);

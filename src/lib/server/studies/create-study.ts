@@ -1,4 +1,5 @@
 import { and, eq, sql } from 'drizzle-orm';
+import { fitToRigs } from '$lib/protocol/limits/fit-to-rigs';
 import { createPatternDraft } from '$lib/protocol/patterns';
 import type { NewStudy } from '$lib/protocol/new-study';
 import type { Grant } from '$lib/server/access/require-permission';
@@ -6,6 +7,7 @@ import type { Clock } from '$lib/server/clock';
 import type { Database, Queryable } from '$lib/server/db/client';
 import { protocolVersion, study, studyRole } from '$lib/server/db/schema';
 import { storeDraft } from '$lib/server/protocols/draft-content';
+import { loadRigLimits } from '$lib/server/protocols/load-draft';
 import { actorOf, recordEvent } from '$lib/server/record/record-event';
 
 export type CreateStudyOutcome =
@@ -42,7 +44,8 @@ export async function createStudy(
 		await tx
 			.insert(studyRole)
 			.values({ studyId, personId, role, givenBy: personId, givenAt: createdAt });
-		const content = storeDraft(createPatternDraft(pattern));
+		const draft = fitToRigs(createPatternDraft(pattern), await loadRigLimits(tx, labId));
+		const content = storeDraft(draft);
 		await tx.insert(protocolVersion).values({ studyId, number: 1, content, createdAt });
 		await recordEvent(tx, clock, actorOf(grant), {
 			kind: 'study-created',

@@ -58,6 +58,10 @@ export type RigLimits = {
 	trialsPerVisit: number;
 	/** Largest values an execution variable may be asked for, by variable name. */
 	variableMax: Record<string, number>;
+	/** Largest distance by which a target may be moved, in the unit of the task's result. */
+	shiftMax?: number;
+	/** Largest share of a person's own trials that a penalized region may catch. */
+	penaltyShareMax?: number;
 };
 
 export const rig = pgTable('rig', {

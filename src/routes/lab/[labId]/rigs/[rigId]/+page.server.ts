@@ -26,6 +26,8 @@ export const load: PageServerLoad = async ({ locals, params, url }) => {
 		roomId,
 		...limits,
 		variableMax: formatVariableLimits(limits.variableMax),
+		shiftMax: limits.shiftMax ?? null,
+		penaltyShareMax: limits.penaltyShareMax ?? null,
 		// Asked for at every change: whoever changes limits has had them checked.
 		limitsChecked: false
 	};

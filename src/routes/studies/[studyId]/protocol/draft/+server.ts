@@ -16,6 +16,8 @@ export const PUT: RequestHandler = async ({ locals, params, request }) => {
 	if (saved.ok) {
 		return reply({ state: 'saved', revision: saved.revision, enteredBy: saved.enteredBy });
 	}
+	if (saved.reason === 'out-of-range')
+		return reply({ state: 'refused', faults: saved.faults }, 422);
 	if (saved.reason === 'no-draft') return reply({ state: 'gone' }, 409);
 	return reply({ state: 'stale', revision: saved.revision, draft: saved.draft }, 409);
 };
