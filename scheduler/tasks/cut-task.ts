@@ -10,6 +10,7 @@ import type { Task } from './task.ts';
  */
 export function cutTask(task: Task, axes: readonly [number, number], point: Vector): Task {
 	const [first, second] = axes;
+	const { assess } = task;
 	const variables = axes.map((axis) => {
 		const variable = task.variables[axis];
 		if (!variable) throw new RangeError(`the task has no variable ${axis}`);
@@ -26,6 +27,7 @@ export function cutTask(task: Task, axes: readonly [number, number], point: Vect
 		gradient: (x) => pick(task.gradient(complete(x))),
 		results: (x) => task.results(complete(x)),
 		jacobian: (x) => task.jacobian(complete(x)).map(pick),
-		findInvalid: (x) => task.findInvalid(complete(x))
+		findInvalid: (x) => task.findInvalid(complete(x)),
+		...(assess && { assess: (x: Vector) => assess(complete(x)) })
 	};
 }

@@ -11,6 +11,7 @@ export type ResultModel = Pick<
 	| 'jacobian'
 	| 'findInvalid'
 	| 'resultRounding'
+	| 'assess'
 >;
 
 /** A model of one result. */

@@ -46,6 +46,8 @@ export interface Task {
 	readonly resultRounding?: number;
 	/** Why an execution has no valid outcome; null: it has one. */
 	findInvalid(execution: Vector): InvalidReason | null;
+	/** Result as in `results` and validity at once, where that is cheaper than asking for each. */
+	assess?(execution: Vector): { result: number; invalid: InvalidReason | null };
 }
 
 /** Whether an execution of this result hits; an undefined result never does. */

@@ -1,13 +1,8 @@
 import { evaluateErrorGrid, type ErrorGrid, type TaskWindow } from './error-grid.ts';
+import { joinSegments, type Crossing, type PlanePoint } from './join-segments.ts';
 import type { Task } from './task.ts';
 
-export type PlanePoint = readonly [number, number];
-
-/** An edge of the grid that the zero set crosses, and where. */
-interface Crossing {
-	readonly key: string;
-	readonly point: PlanePoint;
-}
+export type { PlanePoint };
 
 const HALVINGS = 40;
 
@@ -98,53 +93,4 @@ function isCenterLikeFirst(task: Task, grid: ErrorGrid, i: number, j: number): b
 	const x = ((grid.x[i] ?? 0) + (grid.x[i + 1] ?? 0)) / 2;
 	const y = ((grid.y[j] ?? 0) + (grid.y[j + 1] ?? 0)) / 2;
 	return task.evaluate([x, y]) < 0 !== (grid.values[j]?.[i + 1] ?? 0) < 0;
-}
-
-function joinSegments(segments: readonly [Crossing, Crossing][]): PlanePoint[][] {
-	const neighbours = new Map<string, { at: Crossing; to: Crossing[] }>();
-	for (const [a, b] of segments) {
-		link(neighbours, a, b);
-		link(neighbours, b, a);
-	}
-	const seen = new Set<string>();
-	const starts = [...neighbours.values()].sort((a, b) => a.to.length - b.to.length);
-	return starts.flatMap(({ at }) => (seen.has(at.key) ? [] : [walk(neighbours, at, seen)]));
-}
-
-function link(
-	neighbours: Map<string, { at: Crossing; to: Crossing[] }>,
-	at: Crossing,
-	to: Crossing
-): void {
-	const known = neighbours.get(at.key);
-	if (known) known.to.push(to);
-	else neighbours.set(at.key, { at, to: [to] });
-}
-
-/** Follows a branch from one end, or once round when it is closed. */
-function walk(
-	neighbours: ReadonlyMap<string, { at: Crossing; to: Crossing[] }>,
-	start: Crossing,
-	seen: Set<string>
-): PlanePoint[] {
-	const points: PlanePoint[] = [];
-	let at: Crossing | undefined = start;
-	while (at) {
-		seen.add(at.key);
-		points.push(at.point);
-		const next: Crossing | undefined = neighbours
-			.get(at.key)
-			?.to.find((other) => !seen.has(other.key));
-		if (!next && points.length > 2 && isNeighbour(neighbours, at, start)) points.push(start.point);
-		at = next;
-	}
-	return points;
-}
-
-function isNeighbour(
-	neighbours: ReadonlyMap<string, { at: Crossing; to: Crossing[] }>,
-	a: Crossing,
-	b: Crossing
-): boolean {
-	return neighbours.get(a.key)?.to.some((other) => other.key === b.key) ?? false;
 }

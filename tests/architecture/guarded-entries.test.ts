@@ -24,7 +24,6 @@ const otherGuards: Record<string, RegExp> = {
 
 /** Permissions that no entry asks for yet, with the reason; take one out when an entry does. */
 const unused: Record<string, string> = {
-	'task:read': 'the task is edited inside the protocol until it has a page of its own',
 	'decision:count': 'no page shows counts of decisions by themselves yet'
 };
 

@@ -60,7 +60,8 @@ export function chooseBandStep(grid: ErrorGrid, tolerance: number | null): numbe
 	return niceStep(Math.max(large / bandCount, tolerance ?? 0, Number.MIN_VALUE * 1e10));
 }
 
-function niceStep(size: number): number {
+/** The smallest of 1, 2 and 5 times a power of ten that is at least this size. */
+export function niceStep(size: number): number {
 	const power = 10 ** Math.floor(Math.log10(size));
 	const factor = [1, 2, 5, 10].find((candidate) => candidate * power >= size * 0.999) ?? 10;
 	return factor * power;

@@ -81,3 +81,40 @@ export function solveUndampedSpeeds(
 		]
 	};
 }
+
+/** Targets that some arm angle hits at any speed lie on a circle; and how far the task's own is from it. */
+export interface FreeTargets {
+	/** m, from the center of the post. */
+	readonly center: readonly [number, number];
+	readonly radius: number;
+	/** The nearest such target, how far it is, and the angle of its line. */
+	readonly nearest: readonly [number, number];
+	readonly distance: number;
+	readonly freeAngleDeg: number;
+}
+
+/**
+ * The targets with a velocity-free line.
+ *
+ * Units:   m, degrees.
+ * Method:  |e^{γπ/ω_d}·T + P| = arm is a circle around −P·e^{−γπ/ω_d} of radius arm·e^{−γπ/ω_d}.
+ * Source:  method sheet A1; agrees with computeTetherAlignment at the target found (free-targets.test.ts).
+ */
+export function computeFreeTargets(
+	record: Parameters<typeof computeTetherAlignment>[0]
+): FreeTargets {
+	const { omegaD, gamma } = createTetherSwing(record);
+	const growth = Math.exp((gamma * Math.PI) / omegaD);
+	const center = [-record.pivot[0] / growth, -record.pivot[1] / growth] as const;
+	const radius = record.arm / growth;
+	const [dx, dy] = [record.target[0] - center[0], record.target[1] - center[1]];
+	const away = Math.hypot(dx, dy);
+	const [ux, uy] = away > 0 ? [dx / away, dy / away] : [1, 0];
+	return {
+		center,
+		radius,
+		nearest: [center[0] + radius * ux, center[1] + radius * uy],
+		distance: Math.abs(away - radius),
+		freeAngleDeg: (Math.atan2(-uy, -ux) * 180) / Math.PI
+	};
+}

@@ -83,6 +83,10 @@ export function createTetheredBall(record: TetheredBallRecord): ResultModel {
 	};
 	const gradient = (x: Vector) =>
 		computeSlopes(record, table, shorten(follow(x)), entry(x, 0) * RAD_PER_DEG, entry(x, 1));
+	const findReason = ({ postTime, signed }: TetherPass): InvalidReason | null => {
+		if (postTime !== null && record.postHit === 'penalty') return 'post-hit';
+		return Number.isFinite(signed) ? null : 'ball-at-rest';
+	};
 	return {
 		resultCount: 1,
 		evaluate: (x) => {
@@ -93,10 +97,10 @@ export function createTetheredBall(record: TetheredBallRecord): ResultModel {
 		gradient,
 		results: (x) => [shorten(follow(x)).signed],
 		jacobian: (x) => [gradient(x)],
-		findInvalid: (x): InvalidReason | null => {
+		findInvalid: (x) => findReason(follow(x)),
+		assess: (x) => {
 			const pass = follow(x);
-			if (pass.postTime !== null && record.postHit === 'penalty') return 'post-hit';
-			return Number.isFinite(pass.signed) ? null : 'ball-at-rest';
+			return { result: shorten(pass).signed, invalid: findReason(pass) };
 		}
 	};
 }

@@ -26,6 +26,7 @@ export const permissions = {
 	'lab:read': { scope: 'lab', stewardOnly: false },
 	'lab:manage': { scope: 'lab', stewardOnly: true },
 	'study:create': { scope: 'lab', stewardOnly: false },
+	'lab-task:keep': { scope: 'lab', stewardOnly: false },
 
 	'study:read': { scope: 'study', roles: 'any' },
 	'today:read': { scope: 'study', roles: 'any' },

@@ -3,6 +3,7 @@ import { isAllowed, type Permission, type Standing } from './permissions';
 /** The sections of a study in the order of its life; a role sees only its own. */
 const sections: { path: string; label: string; permission: Permission }[] = [
 	{ path: 'today', label: 'Today', permission: 'today:read' },
+	{ path: 'task', label: 'Task', permission: 'task:read' },
 	{ path: 'protocol', label: 'Protocol', permission: 'protocol:read' },
 	{ path: 'power', label: 'Power', permission: 'power:read' },
 	{ path: 'allocation', label: 'Allocation', permission: 'allocation:read' },
@@ -23,6 +24,7 @@ const labPages: { path: string; label: string; permission: Permission }[] = [
 	{ path: '/rigs', label: 'Rooms and rigs', permission: 'lab:read' },
 	{ path: '/staff', label: 'Staff', permission: 'lab:read' },
 	{ path: '/holidays', label: 'Holidays', permission: 'lab:read' },
+	{ path: '/tasks', label: 'Tasks', permission: 'lab:read' },
 	{ path: '/members', label: 'Members', permission: 'lab:manage' }
 ];
 

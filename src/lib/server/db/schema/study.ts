@@ -83,7 +83,7 @@ export const studyPause = pgTable('study_pause', {
 	liftedAt: instant('lifted_at')
 });
 
-/** A task of the lab, versioned; a protocol holds its own copy of the record. */
+/** A task of the lab, versioned; versions never change. A protocol holds its own copy of the record. */
 export const task = pgTable(
 	'task',
 	{
@@ -94,6 +94,8 @@ export const task = pgTable(
 		name: text('name').notNull(),
 		version: integer('version').notNull(),
 		record: jsonb('record').$type<Record<string, unknown>>().notNull(),
+		/** What changed and why, in the words of whoever kept it. */
+		note: text('note').notNull().default(''),
 		createdBy: uuid('created_by')
 			.notNull()
 			.references(() => person.id),
