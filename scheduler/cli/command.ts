@@ -30,7 +30,29 @@ export function command<I extends z.ZodType, O extends z.ZodType>(
 	{ input, output }: { input: I; output: O },
 	run: (input: z.output<I>) => unknown
 ): Command {
-	return { about, input, output, run: (given) => run(input.parse(given)) };
+	return { about, input, output, run: (given) => requireFinite(run(input.parse(given))) };
+}
+
+/**
+ * JSON has no word for a number that is none: it would print null, as if nothing were known.
+ *
+ * @throws {RangeError} naming the first such number of the answer
+ */
+function requireFinite(answer: unknown): unknown {
+	const path = findNonFinite(answer, []);
+	if (!path) return answer;
+	const place = path.join('.') || 'the answer';
+	throw new RangeError(`${place} cannot be computed: these inputs are too large or too small`);
+}
+
+function findNonFinite(value: unknown, path: readonly string[]): readonly string[] | null {
+	if (typeof value === 'number') return Number.isFinite(value) ? null : path;
+	if (typeof value !== 'object' || value === null) return null;
+	for (const [key, inner] of Object.entries(value)) {
+		const found = findNonFinite(inner, [...path, key]);
+		if (found) return found;
+	}
+	return null;
 }
 
 /** The same for an answer that is printed as lines instead of JSON. */

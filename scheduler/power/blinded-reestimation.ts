@@ -32,6 +32,9 @@ export type Reestimation =
 	  }
 	| { ok: false; reason: 'too-few-values' | 'no-variance' | 'beyond-limit' };
 
+/** Larger effects need two people a group as well; their noncentrality would take very long. */
+const EFFECT_MAX = 100;
+
 /**
  * Group sizes from the spread seen halfway, without looking at the groups.
  *
@@ -60,7 +63,7 @@ export function reestimateBlinded(options: ReestimationOptions): Reestimation {
 	const z = computeNormalQuantile(alpha / sides) + computeNormalQuantile(1 - power);
 	const count = (variance: number) =>
 		Math.max(2, Math.ceil((2 * z * z * variance) / (difference * difference) - 1e-9));
-	const effectSize = Math.abs(difference) / Math.sqrt(pooledVariance);
+	const effectSize = Math.min(EFFECT_MAX, Math.abs(difference) / Math.sqrt(pooledVariance));
 	const found = findSmallestN({
 		computePower: (m) => computeTwoSampleTPower({ effectSize, n1: m, n2: m, alpha, sides }),
 		power,

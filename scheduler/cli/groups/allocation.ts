@@ -16,9 +16,17 @@ import {
 import { command, type CommandGroup } from '../command.ts';
 
 const counts = z.array(z.array(z.number()));
+/** What can have been used of a block is gone through state by state. */
+const STATES_MAX = 20_000;
 const predictSchema = z.union([
 	z.strictObject({
-		places: z.array(z.number().int().min(1)).min(2).describe('places of each arm in one block')
+		places: z
+			.array(z.number().int().min(1))
+			.min(2)
+			.refine((places) => places.reduce((product, n) => product * (n + 1), 1) <= STATES_MAX, {
+				error: 'the block is too large to go through everything that can have been used of it'
+			})
+			.describe('places of each arm in one block')
 	}),
 	z.strictObject({
 		p: z

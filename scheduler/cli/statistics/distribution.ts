@@ -45,7 +45,16 @@ import {
 } from '../../statistics/student-t.ts';
 import { endSchema, toEnd } from './finite.ts';
 
-const df = z.number().positive().describe('degrees of freedom, any positive number');
+/** Beyond it a distribution is its own limit, and the series behind the noncentral ones do not end. */
+const PARAMETER_MAX = 1e12;
+const NONCENTRALITY_MAX = 1e6;
+const df = z
+	.number()
+	.positive()
+	.max(PARAMETER_MAX)
+	.describe('degrees of freedom, any positive number up to 1e12');
+const shift = z.number().min(-NONCENTRALITY_MAX).max(NONCENTRALITY_MAX).default(0);
+const noncentrality = z.number().min(0).max(NONCENTRALITY_MAX).default(0);
 const probabilities = z.array(z.number().min(0).max(1)).default([]);
 const asked = {
 	at: z.array(z.number()).default([]).describe('points whose tails are wanted'),
@@ -55,12 +64,12 @@ const asked = {
 
 export const distributionInputSchema = z.discriminatedUnion('distribution', [
 	z.strictObject({ distribution: z.literal('normal'), ...asked }),
-	z.strictObject({ distribution: z.literal('t'), df, ncp: z.number().default(0), ...asked }),
+	z.strictObject({ distribution: z.literal('t'), df, ncp: shift, ...asked }),
 	z.strictObject({
-		...{ distribution: z.literal('chi-square'), df, ncp: z.number().min(0).default(0), ...asked }
+		...{ distribution: z.literal('chi-square'), df, ncp: noncentrality, ...asked }
 	}),
 	z.strictObject({
-		...{ distribution: z.literal('f'), df1: df, df2: df, ncp: z.number().min(0).default(0) },
+		...{ distribution: z.literal('f'), df1: df, df2: df, ncp: noncentrality },
 		...asked
 	}),
 	z.strictObject({

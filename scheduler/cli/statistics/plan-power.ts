@@ -14,9 +14,13 @@ import { computeWelchPower } from '../../power/welch-power.ts';
 import { refusedSchema, sidesSchema } from './finite.ts';
 
 const positive = z.number().positive();
+/** Beyond these the power is 0 or 1, and the series behind it do not end in a lifetime. */
+const people = z.number().max(1e7);
+const effectSize = z.number().min(-100).max(100);
+const f = positive.max(100);
 const asked = {
 	n: z
-		.union([z.number(), z.array(z.number()).min(1)])
+		.union([people, z.array(people).min(1)])
 		.optional()
 		.describe('people per group (paired and one-sample: people) whose power is wanted'),
 	power: z.number().gt(0).lt(1).optional().describe('power whose n is wanted'),
@@ -32,23 +36,23 @@ const ratio = positive.default(1).describe('people of group 2 for each of group 
 
 export const powerInputSchema = z
 	.discriminatedUnion('design', [
-		z.strictObject({ design: z.literal('two-sample'), effectSize: z.number(), ratio, ...tested }),
-		z.strictObject({ design: z.literal('paired'), effectSize: z.number(), ...tested }),
+		z.strictObject({ design: z.literal('two-sample'), effectSize, ratio, ...tested }),
+		z.strictObject({ design: z.literal('paired'), effectSize, ...tested }),
 		z.strictObject({
 			...{ design: z.literal('welch'), difference: z.number(), sd1: positive, sd2: positive },
 			...{ ratio, ...asked, sides: sidesSchema.default(2) }
 		}),
 		z.strictObject({
-			...{ design: z.literal('anova'), groupCount: z.number().int().min(2), f: positive, ...asked }
+			...{ design: z.literal('anova'), groupCount: z.number().int().min(2), f, ...asked }
 		}),
 		z.strictObject({
 			...{ design: z.literal('mixed-anova'), groupCount: z.number().int().min(1) },
-			...{ measurementCount: z.number().int().min(2), correlation: z.number(), f: positive },
+			...{ measurementCount: z.number().int().min(2), correlation: z.number(), f },
 			...{ epsilon: positive.max(1).default(1) },
 			...{ effect: z.enum(['between', 'within', 'interaction']), ...asked }
 		}),
 		z.strictObject({
-			...{ design: z.literal('ancova'), effectSize: z.number(), ratio },
+			...{ design: z.literal('ancova'), effectSize, ratio },
 			...{
 				correlation: z.number().gt(-1).lt(1),
 				covariateCount: z.number().int().min(0).default(1)
