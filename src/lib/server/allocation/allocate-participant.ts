@@ -12,6 +12,8 @@ import {
 import { createAllocationStream, openAllocation } from '$lib/server/keys/allocation-seal';
 import { isPaused } from '$lib/server/pauses/is-paused';
 import { recordEvent } from '$lib/server/record/record-event';
+import { findStartBehind } from '$lib/server/yoking/find-start-behind';
+import { pairParticipant } from '$lib/server/yoking/pair-participant';
 import { findSeal } from './find-seal';
 
 type Services = { clock: Clock; settings: Pick<Settings, 'OVALRY_ALLOCATION_KEY'> };
@@ -20,8 +22,9 @@ const quarterHourMs = 900_000;
 
 /**
  * Releases the next entry of the sealed sequence for one person whose baseline passed, and gives
- * them an earliest start, drawn from one distribution whatever the arm. Only that entry is derived;
- * nothing is kept from which a later one could be read.
+ * them an earliest start, drawn from one distribution whatever the arm; a yoked person starts no sooner
+ * than their master's chain allows. Only that entry is derived; nothing is kept from which a later one
+ * could be read.
  *
  * @returns false while the person is not ready, is allocated already, is paused, or nothing is sealed
  */
@@ -48,13 +51,22 @@ export async function allocateParticipant(
 	const at = new Date(clock.now());
 	const entry = { participantId, studyId: person.studyId, sealId: seal.id, sequenceIndex };
 	await tx.insert(allocation).values({ ...entry, arm: armId, allocatedAt: at });
-	const earliestStartAt = drawEarliestStart(seed, { sequenceIndex, at, ...person.earliest });
+	const { studyId, content } = person;
+	const masterId = await pairParticipant(tx, clock, {
+		participantId,
+		studyId,
+		arm: armId,
+		content
+	});
+	const drawn = drawEarliestStart(seed, { sequenceIndex, at, ...content.earliestStartHours });
+	const earliestStartAt = masterId
+		? await findStartBehind(tx, { masterId, content, drawn })
+		: drawn;
 	await tx
 		.update(participant)
 		.set({ state: 'allocated', allocatedAt: at, earliestStartAt })
 		.where(eq(participant.id, participantId));
 	const system = { kind: 'system' } as const;
-	const { studyId } = person;
 	const kind = 'participant-allocated';
 	await recordEvent(tx, clock, system, { kind, item: 'participant-state', studyId, participantId });
 	await recordEvent(tx, clock, system, {
@@ -95,7 +107,7 @@ async function loadReady(tx: Transaction, participantId: string) {
 		.where(and(eq(participant.id, participantId), eq(participant.state, 'baseline-done')))
 		.for('update', { of: participant });
 	if (!row?.hash) return null;
-	return { studyId: row.studyId, hash: row.hash, earliest: row.content.earliestStartHours };
+	return { studyId: row.studyId, hash: row.hash, content: row.content };
 }
 
 type Draw = { sequenceIndex: number; at: Date; min: number; max: number };

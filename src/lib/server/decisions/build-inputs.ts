@@ -14,10 +14,21 @@ import { EXECUTED_KINDS } from '$scheduler/policies/policy-memory';
 import { findEffectiveBlock, type BlockPlanned } from './effective-block';
 import { slotKey, type Slot } from './find-next-slot';
 import type { PersonOnRecord, StoredDecision } from './load-person';
+import { buildYokedRule } from './build-yoked-rule';
+import type { MasterChain } from './load-master-chain';
 import { replayShiftTrials } from './replay-shift-trials';
 
 /** Trials of a stored block in the order they were made; blanks as null. */
 export type ReadTrials = (blockId: string) => Promise<(number | null)[][]>;
+
+/** Where what a decision depends on is read from. */
+export type DecisionSources = {
+	readTrials: ReadTrials;
+	/** What the master of a yoked person has run, and whether they still take part. */
+	readMaster: () => Promise<MasterChain | null>;
+	/** The instant of the decision. */
+	nowMs: number;
+};
 
 /**
  * Everything the decision for one place depends on, read from the record: the policy of the frozen
@@ -26,14 +37,15 @@ export type ReadTrials = (blockId: string) => Promise<(number | null)[][]>;
 export async function buildInputs(
 	person: PersonOnRecord,
 	slot: Slot,
-	readTrials: ReadTrials
+	sources: DecisionSources
 ): Promise<DecisionInputsInput> {
 	const { content } = person;
+	const { readTrials } = sources;
 	const before = findDecisionBefore(person, slot);
 	return {
 		task: taskRecordSchema.parse(content.task),
 		protocol: readSettings(person, slot),
-		rule: findRule(person, { slot, before }),
+		rule: await findRule(person, { slot, before, sources }),
 		state: {
 			...describeDay(person, slot),
 			release: before?.kind === 'hold' && before.state === 'settled',
@@ -49,13 +61,22 @@ export function readSettings(person: PersonOnRecord, slot: Slot): PolicySettings
 	return equaliseBlockLengths({ ...settings, blockTrials: slot.trials });
 }
 
-/** Adaptive time of an adaptive arm is the policy's; everything else is the protocol's own block. */
-function findRule(
+type RulePlace = { slot: Slot; before: StoredDecision | null; sources: DecisionSources };
+
+/**
+ * Adaptive time of an adaptive arm is the policy's, that of a yoked arm the master's; everything else is
+ * the protocol's own block.
+ */
+async function findRule(
 	person: PersonOnRecord,
-	{ slot, before }: { slot: Slot; before: StoredDecision | null }
-): DecisionInputsInput['rule'] {
+	{ slot, before, sources }: RulePlace
+): Promise<DecisionInputsInput['rule']> {
 	const arm = person.content.arms.find((found) => found.key === person.arm);
 	if (slot.purpose === 'adaptive' && arm?.rule === 'adaptive') return { kind: 'adaptive' };
+	if (slot.purpose === 'adaptive' && arm?.rule === 'yoked') {
+		const { nowMs } = sources;
+		return buildYokedRule(person, { slot, nowMs, master: await sources.readMaster() });
+	}
 	const task = createScaledTask(createTask(taskRecordSchema.parse(person.content.task)));
 	const cloud = before ? (readMemory(before)?.cloud ?? null) : null;
 	return { kind: 'fixed', block: planListedBlock(slot.plan, { task, cloud }) };
@@ -114,7 +135,7 @@ async function readLastBlock(
 	const whole = (await readTrials(stored.id)).filter(isComplete);
 	const { region, rule } = ran.parameters;
 	if (ran.kind === 'shift')
-		return replayShiftTrials(person, { trials: whole, before, planned: ran });
+		return replayShiftTrials(person, { trials: whole, before, planned: ran }).last;
 	return {
 		kind: readKind(ran.kind),
 		trials: whole,

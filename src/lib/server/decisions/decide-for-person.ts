@@ -7,10 +7,12 @@ import type { Database, Transaction } from '$lib/server/db/client';
 import { decision } from '$lib/server/db/schema';
 import { canonicalJson, sha256Hex } from '$lib/server/record/canonical-json';
 import { recordEvent } from '$lib/server/record/record-event';
+import { pairParticipant } from '$lib/server/yoking/pair-participant';
 import { buildInputs } from './build-inputs';
 import { findHoldReasons, type HoldReason } from './find-hold-reasons';
 import { findNextSlot, slotKey, type Slot } from './find-next-slot';
 import { findInheritedHold } from './find-inherited-hold';
+import { loadMasterChain } from './load-master-chain';
 import { loadPerson, type PersonOnRecord } from './load-person';
 import { passBaseline } from './pass-baseline';
 import { readStoredTrials } from './read-stored-trials';
@@ -55,8 +57,9 @@ async function decideOne(
 	const loaded = passed ? await loadPerson(tx, participantId, { lock: false }) : locked;
 	const person = loaded && (await followAmendment(tx, clock, loaded));
 	if (!person) return false;
-	const slot = findNextSlot(person.slots, describeProgress(person, clock));
-	if (!slot) return false;
+	const progress = describeProgress(person, clock);
+	const slot = findNextSlot(person.slots, progress);
+	if (!slot || isTooEarly(person, slot, progress)) return false;
 	await decideSlot(tx, services, { person, slot });
 	return true;
 }
@@ -72,6 +75,20 @@ async function followAmendment(
 	const { id: participantId, studyId } = person;
 	const isMoved = await moveIfDue(tx, clock, { studyId, participantId });
 	return isMoved ? loadPerson(tx, participantId, { lock: false }) : person;
+}
+
+/**
+ * A yoked person's next visit is decided at its ready hour and no sooner: until then the master may still
+ * run the block. When it is shown as ready does not change.
+ */
+function isTooEarly(
+	person: PersonOnRecord,
+	slot: Slot,
+	{ isDue, stored }: ReturnType<typeof describeProgress>
+): boolean {
+	const arm = person.content.arms.find(({ key }) => key === person.arm);
+	if (arm?.rule !== 'yoked' || slot.purpose !== 'adaptive' || slot.indexInVisit > 0) return false;
+	return !isDue(slot.visitNumber) && !stored.has(slotKey(slot));
 }
 
 function describeProgress(person: PersonOnRecord, clock: Clock) {
@@ -100,7 +117,12 @@ type Place = { person: PersonOnRecord; slot: Slot };
 
 async function decideSlot(tx: Transaction, services: DecideServices, { person, slot }: Place) {
 	const { clock } = services;
-	const inputs = await buildInputs(person, slot, (blockId) => readStoredTrials(tx, blockId));
+	const nowMs = clock.now();
+	const readTrials = (blockId: string) => readStoredTrials(tx, blockId);
+	const inputs = await buildInputs(person, slot, {
+		...{ readTrials, nowMs },
+		readMaster: async () => loadMasterChain(tx, await findMaster(tx, clock, person), readTrials)
+	});
 	const policyHash = hashPolicy(person.content);
 	const record = decideNextBlock({
 		...inputs,
@@ -120,7 +142,7 @@ async function decideSlot(tx: Transaction, services: DecideServices, { person, s
 			...splitRecord(record),
 			holdReasons,
 			state: holdReasons.length > 0 ? 'held' : 'automatic',
-			decidedAt: new Date(clock.now()),
+			decidedAt: new Date(nowMs),
 			readyAt: findReadyAt({ person, slot }, clock)
 		})
 		.returning({ id: decision.id });
@@ -141,6 +163,13 @@ async function decideSlot(tx: Transaction, services: DecideServices, { person, s
 		const reason = 'Inside a visit nobody is waited for.';
 		await applyFallback(tx, clock, { studyId: person.studyId, decisionId: row.id, reason });
 	}
+}
+
+/** The master of a yoked person; one that was not free at allocation may be by now. */
+async function findMaster(tx: Transaction, clock: Clock, person: PersonOnRecord) {
+	if (person.arm === null) return null;
+	const { id: participantId, studyId, arm, content } = person;
+	return pairParticipant(tx, clock, { participantId, studyId, arm, content });
 }
 
 function splitRecord(record: DecisionRecord) {

@@ -14,19 +14,25 @@ type ShiftTrials = { trials: number[][]; before: StoredDecision | null; planned:
  * A block under a moving target, from its executions: the rule is deterministic, so the level at
  * each trial, and with it the error against the moved target, follow from the results themselves. A
  * course that was given trial by trial is taken as it was given.
+ *
+ * @returns the block as the engine reads it, and where the target lay in each trial
  */
 export function replayShiftTrials(
 	person: PersonOnRecord,
 	{ trials, before, planned }: ShiftTrials
-): NonNullable<PolicyStateInput['last']> {
+): { last: NonNullable<PolicyStateInput['last']>; levels: number[] } {
 	const task = createTask(taskRecordSchema.parse(person.content.task));
 	const { levels, rule: declared } = blockParametersSchema.parse(planned.parameters);
-	if (levels && !declared) return { kind: 'shift', trials, ...followCourse(task, trials, levels) };
+	if (levels && !declared) {
+		return { last: { kind: 'shift', trials, ...followCourse(task, trials, levels) }, levels };
+	}
 	const rule = shiftRuleSchema.parse(declared);
 	const shift = new TargetShift(rule, findRunningState(before));
 	const errors: number[] = [];
 	const hits: boolean[] = [];
+	const given: number[] = [];
 	for (const [index, execution] of trials.entries()) {
+		given.push(shift.level);
 		const error = shift.level - task.evaluate(execution);
 		const hit = isHit(task, error);
 		errors.push(error);
@@ -34,7 +40,7 @@ export function replayShiftTrials(
 		const isLastOfBlock = index === trials.length - 1;
 		shift.observe({ error, hit, leftToday: null, isLastOfBlock });
 	}
-	return { kind: 'shift', trials, errors, hits, rule };
+	return { last: { kind: 'shift', trials, errors, hits, rule }, levels: given };
 }
 
 /** Errors against a course of the target; beyond its end the last level stands. */

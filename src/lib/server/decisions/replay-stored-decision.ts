@@ -2,16 +2,25 @@ import { eq } from 'drizzle-orm';
 import { canonicalJson as engineText } from '$scheduler/policies/canonical-json';
 import { replayDecision, type Replay } from '$scheduler/policies/replay-decision';
 import type { DecisionInputsInput } from '$scheduler/policies/decision-record';
+import type { ProtocolContent } from '$scheduler/protocol/protocol-content';
 import { taskRecordSchema } from '$scheduler/tasks/task-record';
 import type { Mapping } from '$lib/intake/column-use';
 import type { Queryable } from '$lib/server/db/client';
-import { block, decision, participant, upload } from '$lib/server/db/schema';
+import {
+	block,
+	decision,
+	participant,
+	protocolVersion,
+	upload,
+	yokedPair
+} from '$lib/server/db/schema';
 import { checkRows } from '$lib/server/intake/check-rows';
 import type { Roster } from '$lib/server/intake/roster';
 import { readTable } from '$lib/server/intake/read-table';
 import { canonicalJson, sha256Hex } from '$lib/server/record/canonical-json';
 import { buildInputs } from './build-inputs';
 import { slotKey } from './find-next-slot';
+import { loadMasterChain } from './load-master-chain';
 import { loadPerson, type PersonOnRecord, type StoredDecision } from './load-person';
 import { currentVersions, hashPolicy } from './versions';
 
@@ -39,7 +48,11 @@ export async function replayStoredDecision(
 	const slot = person.slots.find((found) => slotKey(found) === slotKey(stored));
 	if (!slot) throw new RangeError('the protocol has no such block');
 	const asThen = rewindPerson(person, stored);
-	const inputs = await buildInputs(asThen, slot, (blockId) => readRawTrials(db, person, blockId));
+	const inputs = await buildInputs(asThen, slot, {
+		readTrials: (blockId) => readRawTrials(db, blockId, person.content),
+		readMaster: () => readMaster(db, person.id),
+		nowMs: stored.decidedAt.getTime()
+	});
 	return describeReplay(person, stored, withRecordedPlace(inputs, stored));
 }
 
@@ -47,6 +60,14 @@ export async function replayStoredDecision(
 function loadAsThen(db: Queryable, row: { participantId: string; protocolHash: string }) {
 	const { participantId, protocolHash } = row;
 	return loadPerson(db, participantId, { lock: false, protocolHash });
+}
+
+async function readMaster(db: Queryable, participantId: string) {
+	const [pair] = await db
+		.select({ masterId: yokedPair.masterId })
+		.from(yokedPair)
+		.where(eq(yokedPair.participantId, participantId));
+	return loadMasterChain(db, pair?.masterId ?? null, (blockId) => readRawTrials(db, blockId));
 }
 
 /** The person as they were when the decision was made: later decisions and settlements do not count. */
@@ -73,9 +94,19 @@ function withRecordedPlace(
 	const { gapHours, last } = recorded.state;
 	return {
 		...inputs,
-		rule: inputs.rule,
+		rule: withRecordedGap(inputs.rule, recorded.rule),
 		state: { ...inputs.state, gapHours, ...(last === null ? { last: null } : {}) }
 	};
+}
+
+/** A yoked person's own gap, as it was booked then. */
+function withRecordedGap(
+	rule: DecisionInputsInput['rule'],
+	recorded: DecisionInputsInput['rule']
+): DecisionInputsInput['rule'] {
+	if (rule?.kind !== 'yoked' || recorded?.kind !== 'yoked') return rule;
+	const { previousEndHours, gapMaxHours, pool } = recorded;
+	return { ...rule, previousEndHours, gapMaxHours, pool };
 }
 
 function describeReplay(
@@ -120,14 +151,21 @@ function show(value: unknown): string {
 /** Trials of one block, read anew from the raw file with the mapping it was stored by. */
 async function readRawTrials(
 	db: Queryable,
-	person: PersonOnRecord,
-	blockId: string
+	blockId: string,
+	content?: ProtocolContent
 ): Promise<(number | null)[][]> {
 	const [row] = await db
-		.select({ block, content: upload.content, mapping: upload.mapping, code: participant.code })
+		.select({
+			block,
+			content: upload.content,
+			mapping: upload.mapping,
+			code: participant.code,
+			protocol: protocolVersion.content
+		})
 		.from(block)
 		.innerJoin(upload, eq(upload.id, block.uploadId))
 		.innerJoin(participant, eq(participant.id, block.participantId))
+		.innerJoin(protocolVersion, eq(protocolVersion.id, participant.protocolVersionId))
 		.where(eq(block.id, blockId));
 	if (!row) throw new RangeError('there is no such block');
 	const read = readTable(row.content);
@@ -137,7 +175,11 @@ async function readRawTrials(
 		...read.table,
 		rows: read.table.rows.filter(({ fields }) => fields[own] === row.code)
 	};
-	const checked = checkRows(table, withoutDates(row.mapping), rosterOf(person, row.code));
+	const checked = checkRows(
+		table,
+		withoutDates(row.mapping),
+		rosterOf(content ?? row.protocol, row.code)
+	);
 	const found = checked.blocks.find(
 		({ visitNumber, blockNumber }) =>
 			visitNumber === row.block.visitNumber && blockNumber === row.block.blockNumber
@@ -162,13 +204,13 @@ function findKeyColumn(columns: Record<string, { use: string }>, use: string): s
 }
 
 /** Everything the file may hold counts as expected: it was checked when it came. */
-function rosterOf(person: PersonOnRecord, code: string): Roster {
+function rosterOf(content: ProtocolContent, code: string): Roster {
 	const visits = new Map(
-		person.content.visits.map((visit) => [
+		content.visits.map((visit) => [
 			visit.number,
 			{ bookedOn: '', hasStarted: true, blocks: visit.blocks, stored: [] }
 		])
 	);
-	const { variables } = taskRecordSchema.parse(person.content.task);
+	const { variables } = taskRecordSchema.parse(content.task);
 	return { people: new Map([[code, visits]]), variables };
 }

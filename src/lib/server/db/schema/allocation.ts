@@ -1,4 +1,12 @@
-import { integer, jsonb, pgTable, text, uniqueIndex, uuid } from 'drizzle-orm/pg-core';
+import {
+	doublePrecision,
+	integer,
+	jsonb,
+	pgTable,
+	text,
+	uniqueIndex,
+	uuid
+} from 'drizzle-orm/pg-core';
 import { person } from './account';
 import { bytes, instant, randomId } from './columns';
 import { participant } from './participant';
@@ -48,3 +56,24 @@ export const allocation = pgTable(
 	},
 	(table) => [uniqueIndex('allocation_sequence').on(table.sealId, table.sequenceIndex)]
 );
+
+/** Spread of the two traits by which people are paired, over all baselines known at the first pairing. */
+export type PairScales = { logVolumeSd: number; meanErrorSd: number };
+
+/** Whom a participant of a yoked arm follows. Rows are only ever added; a master has one partner. */
+export const yokedPair = pgTable('yoked_pair', {
+	participantId: uuid('participant_id')
+		.primaryKey()
+		.references(() => participant.id),
+	masterId: uuid('master_id')
+		.notNull()
+		.unique()
+		.references(() => participant.id),
+	studyId: uuid('study_id')
+		.notNull()
+		.references(() => study.id),
+	/** How unlike the two baselines are, in spreads of all baselines. */
+	distance: doublePrecision('distance').notNull(),
+	scales: jsonb('scales').$type<PairScales>().notNull(),
+	pairedAt: instant('paired_at').notNull()
+});
