@@ -90,12 +90,16 @@ export async function computeResults(
 export function drawMap(map: ResultMap, request: MapRequest, startedMs: number): MapPicture {
 	const { record, pixels, theme, quality, window } = request;
 	const task = cutAt(request);
-	const evaluate = isSlow(record) ? undefined : (p: Point) => task.results(p)[0] ?? Number.NaN;
-	const hasOne = map.results.length === 1;
-	const zero = hasOne ? traceLevel(map, 0, evaluate) : null;
+	const followed = findFollowed(map);
+	const evaluate = isSlow(record)
+		? undefined
+		: (p: Point) => task.results(p)[followed ?? 0] ?? Number.NaN;
+	const hasOne = followed !== null;
+	const signed = { ...map, results: map.results.slice(followed ?? 0, (followed ?? 0) + 1) };
+	const zero = hasOne ? traceLevel(signed, 0, evaluate) : null;
 	const misses = listMisses(map);
 	const top = request.top ?? chooseTop(misses, map, record.tolerance);
-	const trace = (level: number) => (hasOne ? traceLevel(map, level, evaluate).lines : []);
+	const trace = (level: number) => (hasOne ? traceLevel(signed, level, evaluate).lines : []);
 	const painting = { ...pixels, colours: listMapColours(theme), top, tolerance: record.tolerance };
 	return {
 		window,
@@ -122,6 +126,17 @@ export function drawMap(map: ResultMap, request: MapRequest, startedMs: number):
 			computeMs: performance.now() - startedMs
 		}
 	};
+}
+
+/**
+ * The one result whose sign can be followed: the only one, or the only one that is not 0 all over this map,
+ * as when a throw is aimed straight ahead. Null where several have to be 0 at once.
+ */
+function findFollowed({ results }: ResultMap): number | null {
+	const varying = results.flatMap((list, k) =>
+		list.some((value) => Math.abs(value) > 1e-12) ? [k] : []
+	);
+	return varying.length <= 1 ? (varying[0] ?? 0) : null;
 }
 
 function isSlow(record: TaskRecord): boolean {

@@ -44,6 +44,8 @@ export function describeProbe(record: TaskRecord, x: readonly number[]): ProbeWo
 
 function tellOutcome(record: TaskRecord, x: readonly number[], result: number): string {
 	const size = writeResult(Math.abs(result), record);
+	if (record.type !== 'tethered-ball' && !/[1-9]/.test(size.split(' ')[0] ?? ''))
+		return 'Perfect, to the digits shown.';
 	const side = (above: string, below: string) => (result > 0 ? above : below);
 	switch (record.type) {
 		case 'tethered-ball': {

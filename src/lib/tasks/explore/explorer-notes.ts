@@ -124,7 +124,8 @@ function noteDegenerate({ record, map, axes }: Explorer): ExplorerNote[] {
 		);
 	if (share > 0)
 		text.push(`${share} % of the map has no valid trial; regions are not placed there.`);
-	if (map && map.zero.length === 0 && map.solutions.length === 0)
+	const isEmpty = map && map.zero.length === 0 && map.solutions.length === 0;
+	if (isEmpty && map.facts.least > record.tolerance)
 		text.push(
 			'No trial of this map is perfect: widen the ranges, move the target or change what is held.'
 		);

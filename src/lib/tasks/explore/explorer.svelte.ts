@@ -133,7 +133,8 @@ export class Explorer {
 			onMap: (picture, { quality }) => {
 				this.map = picture;
 				this.failure = '';
-				if (quality === 'coarse') this.lastMapMs = performance.now() - this.#askedMs;
+				if (quality === 'coarse' && this.isDragging)
+					this.lastMapMs = performance.now() - this.#askedMs;
 			},
 			onCloud: (picture) => {
 				this.cloudPicture = picture;

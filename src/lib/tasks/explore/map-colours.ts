@@ -24,7 +24,7 @@ const stops: Readonly<Record<Theme, readonly Rgb[]>> = {
 /** How the band of hits looks over the map. */
 const bands: Readonly<Record<Theme, { colour: Rgb; share: number }>> = {
 	light: { colour: [118, 172, 158], share: 0.62 },
-	dark: { colour: [140, 214, 192], share: 0.42 }
+	dark: { colour: [20, 62, 56], share: 0.74 }
 };
 
 /** Entries of the table below, one colour each. */

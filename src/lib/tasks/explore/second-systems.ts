@@ -30,11 +30,13 @@ function listOwn(record: TaskRecord): SecondSystem[] {
 	const axes = record.variables.map(({ name, unit }) => ({ label: name, unit }));
 	switch (record.type) {
 		case 'tethered-ball':
-			return [velocity(axes, { angleAxis: 0, speedAxis: 1, turnRad: Math.PI / 2 })];
+			return [
+				velocity(axes, { angleAxis: 0, speedAxis: 1, turnRad: Math.PI / 2, across: 'sideways' })
+			];
 		case 'projectile':
 		case 'throw-height':
 		case 'throw-azimuth':
-			return [velocity(axes, { angleAxis: 1, speedAxis: 0, turnRad: 0 })];
+			return [velocity(axes, { angleAxis: 1, speedAxis: 0, turnRad: 0, across: 'forward' })];
 		case 'puck':
 		case 'puck-friction':
 			return [
@@ -119,16 +121,16 @@ function listGeneral({ variables }: TaskRecord): SecondSystem[] {
 
 function velocity(
 	axes: readonly { label: string; unit: string }[],
-	place: { angleAxis: number; speedAxis: number; turnRad: number }
+	{ across, ...place }: { angleAxis: number; speedAxis: number; turnRad: number; across: string }
 ): SecondSystem {
 	const unit = axes[place.speedAxis]?.unit ?? 'm/s';
 	return {
 		key: 'velocity',
-		label: 'velocity, sideways and upward',
+		label: `velocity, ${across} and upward`,
 		phrase: 'as velocities',
 		system: createVelocitySystem({ ...place, radPerUnit }),
 		axes: axes.map((axis, i) => {
-			if (i === place.angleAxis) return { label: 'velocity sideways', unit };
+			if (i === place.angleAxis) return { label: `velocity ${across}`, unit };
 			return i === place.speedAxis ? { label: 'velocity upward', unit } : axis;
 		})
 	};

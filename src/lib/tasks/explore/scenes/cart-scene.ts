@@ -44,7 +44,7 @@ export function drawCart(record: CartPendulumRecord, x: readonly number[]): Scen
 			'guide'
 		),
 		line(bob, 'way'),
-		box([-cart, -cart / 2], [cart, cart / 2], 'thing'),
+		box([-cart, -cart / 2], [cart, cart / 2], 'ground'),
 		line([[0, 0], bob[0] ?? [0, 0]], 'body'),
 		dot(bob[0] ?? [0, 0], 'way', 7),
 		box(
@@ -80,7 +80,7 @@ export function drawCart(record: CartPendulumRecord, x: readonly number[]): Scen
 			keys: { x: 'target' },
 			readX: (at) => ((at + 0.9 * half) / (1.8 * half)) * scaleEnd,
 			detail: `${formatFixed(target, 1)} ${record.resultUnit}`,
-			...{ tolerance: null, shape: 'upright' }
+			...{ tolerance: null, shape: 'upright', words: 'above' }
 		},
 		lens: null,
 		ruler: { length: 0.2, text: '20 cm' },

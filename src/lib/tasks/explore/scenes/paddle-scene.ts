@@ -53,7 +53,7 @@ export function drawPaddle(record: PaddleBounceRecord, x: readonly number[]): Sc
 		line(curve(ball, rise, 2 * rise), 'after'),
 		...(rise > 0 ? [line([[rise, targetHeight], apex], 'miss'), dot(apex, 'way', 5)] : []),
 		text(apex, rise > 0 ? 'apex' : 'the ball does not rise', rise > 0 ? 'way' : 'miss', {
-			offsetPx: [10, -6]
+			offsetPx: [10, 21]
 		}),
 		text([span[1], low], 'time', 'ground', { anchor: 'end', offsetPx: [-4, -6] })
 	];
@@ -65,7 +65,7 @@ export function drawPaddle(record: PaddleBounceRecord, x: readonly number[]): Sc
 			at: [span[1] - 0.12, targetHeight],
 			keys: { y: 'targetHeight' },
 			detail: `${formatFixed(targetHeight, 2)} m`,
-			...{ tolerance, shape: 'level' }
+			...{ tolerance, shape: 'level', words: 'above' }
 		},
 		lens: null,
 		ruler: null,

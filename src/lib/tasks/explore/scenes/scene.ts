@@ -43,6 +43,8 @@ export interface SceneTarget {
 	/** Half width of the band of hits around it in the picture's units, where it can be drawn. */
 	readonly tolerance: number | null;
 	readonly shape: 'point' | 'upright' | 'level';
+	/** Where its words stand; beside it when nothing is said. */
+	readonly words?: 'above';
 }
 
 /** A closer look at the miss. */

@@ -19,6 +19,7 @@ export function drawSum(record: LinearRecord | TwoFingerRecord, x: readonly numb
 	});
 	const low = Math.min(0, target, reaches.reduce((sum, reach) => sum + reach.low, 0) / 1.5);
 	const high = Math.max(target * 1.4, reaches.reduce((sum, reach) => sum + reach.high, 0) / 1.5);
+	const margin = 0.08 * (high - low);
 	const rows = parts.length;
 	let end = 0;
 	const shapes: SceneShape[] = [
@@ -65,7 +66,7 @@ export function drawSum(record: LinearRecord | TwoFingerRecord, x: readonly numb
 		dot([end, -0.1], 'way', 5)
 	];
 	return {
-		bounds: { x: [low, high], y: [-0.6, rows + 1] },
+		bounds: { x: [low - margin, high + margin], y: [-0.6, rows + 1.2] },
 		isToScale: false,
 		shapes,
 		target: {

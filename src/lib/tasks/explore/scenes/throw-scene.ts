@@ -41,7 +41,7 @@ export function drawThrow(record: ThrowRecord, x: readonly number[]): Scene {
 		line(curve(at, 0, arrival), 'way', true),
 		line([[D, H], passed], 'miss'),
 		dot([0, h], 'way', 5),
-		text([0, h], 'release', 'way', { anchor: 'end', offsetPx: [-9, 4] })
+		text([0, h], 'release', 'way', { offsetPx: [9, 19] })
 	];
 	return {
 		bounds: { x: [-1, D + 1.6], y: [bottom - 0.25, top] },
