@@ -81,19 +81,20 @@ export function pieceFigure({ purpose, trials, restMinutes }: TimedBlock): strin
 	return String(trials ?? '?');
 }
 
-/** What a reader hears of a piece: '2 of 4, probe, 40 trials, 5.3 min'. */
+/** What a reader hears of a piece, what stands on it first: 'probe 40 trials, 2 of 4, 5.3 min'. */
 export function pieceText(
 	block: TimedBlock & { warmUpTrials?: number | null | undefined },
 	look: PieceLook,
 	{ index, count, trialSeconds }: { index: number; count: number; trialSeconds: number | null }
 ): string {
 	const minutes = blockMinutes(block, trialSeconds);
+	const isRest = block.purpose === 'rest';
 	return [
+		`${look.word} ${pieceFigure(block)}${isRest ? '' : ' trials'}`,
+		...(look.name === look.word ? [] : [look.name]),
 		`${index + 1} of ${count}`,
-		look.name,
-		...(block.purpose === 'rest' ? [] : [`${block.trials ?? 'no number of'} trials`]),
 		...(block.warmUpTrials ? [`${block.warmUpTrials} of them warm-up`] : []),
-		...(minutes === null ? [] : [`${Math.round(minutes * 10) / 10} min`]),
+		...(minutes === null || isRest ? [] : [`${Math.round(minutes * 10) / 10} min`]),
 		...(block.restAfterMinutes ? [`then ${block.restAfterMinutes} min rest`] : [])
 	].join(', ');
 }

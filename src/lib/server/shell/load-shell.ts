@@ -14,6 +14,8 @@ export type Shell = {
 	lab: { id: string; name: string; zone: string } | null;
 	study: { id: string; workingTitle: string; state: string; versionNumber: number | null } | null;
 	sections: Section[];
+	/** The lab's pages that are offered beside a study's sections. */
+	labPages: Section[];
 	nowMs: number;
 	nowText: string;
 	zoneText: string;
@@ -39,6 +41,7 @@ export async function loadShell(
 		lab: found?.lab ?? null,
 		study: found?.study ?? null,
 		sections: found?.sections ?? [],
+		labPages: found?.labPages ?? [],
 		nowMs: locals.clock.now(),
 		nowText,
 		zoneText,
@@ -59,7 +62,7 @@ function splitZone(text: string): string[] {
 	return cut < 0 ? [text, ''] : [text.slice(0, cut), text.slice(cut + 1)];
 }
 
-type Place = Pick<Shell, 'study' | 'sections'> & {
+type Place = Pick<Shell, 'study' | 'sections' | 'labPages'> & {
 	lab: NonNullable<Shell['lab']>;
 	/** What the person is here, in words. */
 	roleText: string;
@@ -80,10 +83,12 @@ async function findPlace(
 	const home = memberships.find((row) => row.id === labId) ?? memberships[0];
 	if (!home) return null;
 	const member = { isMember: true, isSteward: home.isSteward };
+	const labPages = findLabPages(home.id, { ...member, roles: [] });
 	const place: Place = {
 		lab: { id: home.id, name: home.name, zone: home.zone },
 		study: null,
-		sections: findLabPages(home.id, { ...member, roles: [] }),
+		sections: labPages,
+		labPages,
 		roleText: home.isSteward ? 'steward' : 'member of the lab'
 	};
 	if (!own || own.labId !== home.id) return place;

@@ -1,5 +1,5 @@
 /** The value that all have; undefined when they differ, or when there are none. */
-export function sharedValue<Value>(values: readonly Value[]): Value | undefined {
+export function sameValue<Value>(values: readonly Value[]): Value | undefined {
 	const [first, ...others] = values;
 	return others.every((value) => value === first) ? first : undefined;
 }
