@@ -11,7 +11,6 @@ const words: Record<string, string> = {
 	'comment-resolved': 'settled a comment on the protocol',
 	'comment-reopened': 'opened a comment on the protocol again',
 	'protocol-imported': 'imported a protocol into the draft',
-	'envelope-breached': 'found a block outside the approved envelope',
 	'allocation-sealed': 'sealed the allocation',
 	'role-given': 'gave a role',
 	'role-confirmed': 'confirmed a role',

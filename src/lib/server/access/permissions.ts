@@ -40,6 +40,14 @@ export const permissions = {
 	'task:read': study('investigator', 'statistician'),
 	'protocol:read': { scope: 'study', roles: 'any' },
 	'protocol:edit': study('investigator'),
+	// The whole document, the rule included: not for roles that must not know it.
+	'protocol:export': study(
+		'investigator',
+		'statistician',
+		'unblinded-statistician',
+		'approver',
+		'monitor'
+	),
 	'comment:write': study('investigator', 'statistician', 'coordinator', 'monitor', 'approver'),
 	'protocol:freeze': study('investigator'),
 	'ethics:record': study('investigator'),

@@ -1,5 +1,6 @@
 import { workAmendments } from '$lib/server/amendments/amendment-work';
 import { workDecide, workDueDecisions } from '$lib/server/decisions/decision-work';
+import { workEnvelopes } from '$lib/server/envelope/envelope-work';
 import { workMail } from '$lib/server/invitations/mail-work';
 import type { QueueName } from './queues';
 import type { WorkContext } from './start-work';
@@ -17,5 +18,6 @@ export const queueWork: QueueWork[] = [{ queue: 'decide', work: workDecide }];
 export const dueWork: DueWork[] = [
 	{ name: 'amendments', work: workAmendments },
 	{ name: 'decisions', work: workDueDecisions },
+	{ name: 'envelopes', work: workEnvelopes },
 	{ name: 'send-mail', work: workMail }
 ];

@@ -2,12 +2,13 @@ import { taskRecordSchema, type TaskRecord } from '$scheduler/tasks/task-record'
 import { eq } from 'drizzle-orm';
 import { describeTerms } from '$lib/protocol/amendment';
 import { describeProtocol, type ProtocolPart } from '$lib/protocol/describe-protocol';
+import { readableContent } from '$lib/protocol/readable-content';
 import { listDifferences, type Difference } from '$lib/protocol/list-differences';
-import type { VisitPlan } from '$scheduler/protocol/visit-plan';
 import type { ProtocolContent } from '$scheduler/protocol/protocol-content';
 import type { Grant } from '$lib/server/access/require-permission';
 import type { Queryable } from '$lib/server/db/client';
 import { amendment } from '$lib/server/db/schema';
+import { loadEnvelope, type LoadedEnvelope } from '$lib/server/envelope/load-envelope';
 import { findDraftRow, findFrozenVersions, headOf, type VersionHead } from './find-versions';
 import { mayReadRule } from './may-read-rule';
 
@@ -21,6 +22,8 @@ export type LoadedProtocol = {
 					parts: ProtocolPart[];
 					/** Null for a task that no picture is known for. */
 					task: TaskRecord | null;
+					/** Approved numbers and breaches; null for who may not read the rule. */
+					envelope: LoadedEnvelope | null;
 				})
 		| null;
 	/** What the version declares of people in flight; null where it amends nothing. */
@@ -50,8 +53,9 @@ export async function loadProtocol(
 					id: version.id,
 					parts: describeProtocol(version.content, { withRule }),
 					arms: version.content.arms,
-					visits: withRule ? version.content.visits : version.content.visits.map(withoutRule),
-					task: taskRecordSchema.safeParse(version.content.task).data ?? null
+					visits: readableContent(version.content, { withRule }).visits,
+					task: taskRecordSchema.safeParse(version.content.task).data ?? null,
+					envelope: await loadEnvelope(db, grant, version)
 				}
 			: null,
 		amendment: version ? await loadTerms(db, version.id) : null,
@@ -69,12 +73,4 @@ export async function loadProtocol(
 async function loadTerms(db: Queryable, versionId: string) {
 	const [row] = await db.select().from(amendment).where(eq(amendment.protocolVersionId, versionId));
 	return row ? describeTerms(row) : null;
-}
-
-/** A visit as everybody may read it: neither what single arms run, nor how a block is set. */
-function withoutRule({ armBlocks: _, blocks, ...visit }: VisitPlan): VisitPlan {
-	return {
-		...visit,
-		blocks: blocks.map(({ number, purpose, trials }) => ({ number, purpose, trials }))
-	};
 }

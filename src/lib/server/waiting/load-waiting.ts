@@ -8,6 +8,7 @@ import { decision, type StudyRole } from '$lib/server/db/schema';
 import { loadPersonRecords, type PersonRecord } from '$lib/server/people/load-person-records';
 import { findMissingGates, type MissingGate } from '$lib/server/studies/load-gates';
 import { listApprovalItems } from './approval-items';
+import { listBreachItems } from './breach-items';
 import { listChainItems, loadLabZone } from './chain-items';
 import { loadMessages } from './load-messages';
 import { listPersonItems, type ItemContext } from './person-items';
@@ -28,6 +29,7 @@ export async function loadWaiting(
 	const items = gates.map((gate) => gateItem(grant, gate));
 	items.push(...(await findVersionSteps(db, grant, gates)));
 	items.push(...(await listApprovalItems(db, clock, grant)));
+	items.push(...(await listBreachItems(db, grant)));
 	if (has('coordinator')) items.push(...(await loadCoordinatorItems(db, clock, grant)));
 	if (has('approver')) items.push(...(await loadHeldDecisions(db, grant)));
 	return sortByUrgency(items);
