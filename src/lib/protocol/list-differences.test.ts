@@ -64,9 +64,9 @@ describe('the difference of two versions', () => {
 				expect([...named].sort()).toEqual(listChangedLeaves(content, after).sort());
 				for (const path of paths) expectShown(path, after);
 			}),
-			{ numRuns: 30 }
+			{ numRuns: 20 }
 		);
-	});
+	}, 30_000);
 
 	/** Undoing one value alone changes or removes the entry that names it. */
 	function expectShown(path: string, after: ProtocolContent) {
