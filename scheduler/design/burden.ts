@@ -91,8 +91,10 @@ function measureSpan({ visits, booking }: Design): ArmBurden['spanDays'] {
 		gaps.map((gap) => gap?.[name] ?? 0);
 	const { count, maxHours } = booking.pauses;
 	// Pauses go where they lengthen the chain most.
-	const gained = hours('maxHours')
-		.map((longest) => Math.max(0, (maxHours ?? 0) - longest))
+	const gained = visits
+		.slice(1)
+		.filter(({ kind }) => kind === 'practice')
+		.map(({ gapBefore }) => Math.max(0, (maxHours ?? 0) - (gapBefore?.maxHours ?? 0)))
 		.sort((a, b) => b - a)
 		.slice(0, count ?? 0);
 	return {

@@ -6,6 +6,8 @@ export interface ChainGap {
 	readonly rule: Pick<GapRule, 'minHours' | 'maxHours' | 'nightsBetween'>;
 	/** The first visit of a chain that starts at about the same time each day: any clock time may follow. */
 	readonly isAnchor: boolean;
+	/** Whether it may be one of the chain's longer gaps: only before a practice visit. */
+	readonly mayPause: boolean;
 }
 
 export interface ChainRules {
@@ -80,10 +82,11 @@ export function forEachStep(
 
 /** Whole days and moves of the clock that keep the hours of a gap. */
 export function listMoves(
-	{ rule }: ChainGap,
-	{ pauses }: Pick<ChainRules, 'pauses'>,
+	{ rule, mayPause }: ChainGap,
+	rules: Pick<ChainRules, 'pauses'>,
 	{ spread, lostSlots }: { spread: number; lostSlots: number }
 ): { days: number; move: number; isPause: boolean }[] {
+	const pauses = mayPause ? rules.pauses : { ...rules.pauses, count: 0 };
 	const judged = { ...rule, targetHours: rule.minHours, allowedPauses: pauses };
 	const longest = Math.max(rule.maxHours, pauses.count > 0 ? pauses.maxHours : 0);
 	const lastDay = Math.ceil((longest * HOUR_SLOTS + spread + lostSlots) / DAY_SLOTS);

@@ -38,7 +38,7 @@ export interface Steadiness {
 /**
  * How often the selector changes its mind about people who do not change, and how fast it sees a change.
  *
- * Method:  plain blocks of 60 trials one after another, offers never run; task of two variables.
+ * Method:  plain blocks of the policy's length one after another, offers never run; task of two variables.
  * Decision: people, policy, seed.
  * Source:  method sheet D0 (Measured).
  */
@@ -93,9 +93,9 @@ function isSameOffer(a: Decision, b: Decision): boolean {
 	return left?.share === right?.share && isSamePlace;
 }
 
-/** Blocks of 60 trials in task units, drawn about the origin of the scaled task. */
+/** Blocks in task units, drawn about the origin of the scaled task. */
 function createBlocks(
-	{ task: given, people }: { task: Task; people: SteadyPeople },
+	{ task: given, people, settings }: Parameters<typeof measureSteadiness>[0],
 	seed: number
 ): (block: number) => number[][] {
 	const task = createScaledTask(given);
@@ -112,7 +112,7 @@ function createBlocks(
 		const change = people.change && block >= people.change.block ? people.change : null;
 		const [sd, moved] = [change?.spread ?? 1, change?.moveSd ?? 0];
 		const place = moved + people.wanderSd * drawNormal(stream);
-		return Array.from({ length: 60 }, () => {
+		return Array.from({ length: settings.blockTrials }, () => {
 			const along = people.along * (place + sd * noiseAlong());
 			const aside = people.across * sd * noiseAcross();
 			return task.toUnits(add(scale(tangent, along), scale(across, aside)));

@@ -12,7 +12,7 @@ import { policyStateSchema, type LastBlock } from '../policies/policy-state.ts';
 import type { Uint32Stream } from '../random/random-stream.ts';
 import { createScaledTask, type ScaledTask } from '../tasks/scaled-task.ts';
 import type { Task } from '../tasks/task.ts';
-import { findRunnable, runBlock } from './run-block.ts';
+import { findRunnable, runBlock, type RunResult } from './run-block.ts';
 
 export interface SimulatedDecision {
 	readonly day: number;
@@ -41,6 +41,16 @@ export interface SimulatePersonOptions {
 	readonly days: number;
 	readonly blocksPerDay: number;
 	readonly gapHours: number;
+	/** Called after every decision: to step through a run. */
+	readonly observe?: (step: ObservedStep) => void;
+}
+
+/** One decision of a run, and the block that it let run; null: none ran. */
+export interface ObservedStep {
+	readonly day: number;
+	readonly block: number;
+	readonly decision: Decision;
+	readonly ran: RunResult | null;
 }
 
 /** A rest, or a person who looked: how often one place in the day may be asked again. */
@@ -90,9 +100,10 @@ function runDay(options: SimulatePersonOptions, run: Course, day: number): void 
 		for (let ask = 0; ask < ASKS_MAX; ask++) {
 			const decision = decide(options, run, { ...asked, isReleased: ask > 0 });
 			const runnable = findRunnable(decision);
-			if (decision.kind === 'stop') return void note(run, asked, decision, null);
-			if (!runnable || runnable.kind === 'rest') {
+			if (decision.kind === 'stop' || !runnable || runnable.kind === 'rest') {
 				note(run, asked, decision, null);
+				options.observe?.({ day, block, decision, ran: null });
+				if (decision.kind === 'stop') return;
 				continue;
 			}
 			const ran = runBlock({
@@ -106,6 +117,7 @@ function runDay(options: SimulatePersonOptions, run: Course, day: number): void 
 				hitShare: ran.hitCount / Math.max(1, runnable.parameters.trials ?? 0),
 				meanError: ran.meanError
 			});
+			options.observe?.({ day, block, decision, ran });
 			break;
 		}
 	}

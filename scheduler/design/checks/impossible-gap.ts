@@ -29,7 +29,8 @@ function judge(design: Design, asksClocks = true): ChainVerdict | null {
 		if (minHours === null || maxHours === null) return null;
 		return {
 			rule: { minHours, maxHours, nightsBetween: nightsBetween ?? 0 },
-			isAnchor: index === 0
+			isAnchor: index === 0,
+			mayPause: visit.kind === 'practice'
 		};
 	});
 	const known = gaps.flatMap((gap) => gap ?? []);

@@ -71,11 +71,12 @@ function findShortest(design: Design, index: number): Shortest[] {
 }
 
 /** Real hours between two visits at the least; null: not said yet. */
-function findShortestGap(design: Design, { gapBefore }: DesignVisit): number | null {
+function findShortestGap(design: Design, { kind, gapBefore }: DesignVisit): number | null {
 	const least = gapBefore?.minHours ?? null;
 	if (least === null) return null;
 	const { count, minHours } = design.booking.pauses;
-	const shortest = (count ?? 0) > 0 && minHours !== null ? Math.min(least, minHours) : least;
+	const mayPause = kind === 'practice' && (count ?? 0) > 0;
+	const shortest = mayPause && minHours !== null ? Math.min(least, minHours) : least;
 	const { byClockChange, byRelaxation } = findLostHours(design);
 	return Math.max(0, shortest - byClockChange - byRelaxation);
 }
@@ -105,8 +106,6 @@ function lengthenGap(design: Design, index: number, hours: number): Repair | und
 	const elsewhere = hours - own;
 	const minHours = DESIGN_LIMITS.retentionHours - elsewhere + byClockChange + byRelaxation;
 	const rising = (...values: (number | null)[]) => Math.max(...values.map((value) => value ?? 0));
-	const { pauses } = design.booking;
-	const mayPause = (pauses.count ?? 0) > 0 && (pauses.minHours ?? minHours) < minHours;
 	return {
 		label: `Let at least ${writeNumber(minHours)} h pass`,
 		operations: [
@@ -123,18 +122,7 @@ function lengthenGap(design: Design, index: number, hours: number): Repair | und
 						visit.gapBefore.maxHours
 					)
 				} as JsonObject
-			},
-			...(mayPause
-				? [
-						{
-							...{ kind: 'set-value' as const, path: ['booking', 'pauses'] },
-							value: {
-								...{ count: pauses.count, minHours },
-								maxHours: rising(minHours, pauses.maxHours)
-							}
-						}
-					]
-				: [])
+			}
 		]
 	};
 }

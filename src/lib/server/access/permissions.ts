@@ -50,6 +50,8 @@ export const permissions = {
 	),
 	'comment:write': study('investigator', 'statistician', 'coordinator', 'monitor', 'approver'),
 	'protocol:freeze': study('investigator'),
+	// Who designs the rule tries it; blinded roles see settings, never what a person got.
+	'protocol:rehearse': study('investigator', 'statistician'),
 	'ethics:record': study('investigator'),
 	// A letter may say what is done to the task: not for roles that must not know it.
 	'ethics:read': study(

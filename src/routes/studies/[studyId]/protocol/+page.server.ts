@@ -53,6 +53,7 @@ export const load: PageServerLoad = async ({ locals, params, url }) => {
 		approvalEnd: await loadApprovalEnd(db, clock, grant),
 		progress: await loadProgress(db, clock, grant),
 		mayEdit,
+		mayRehearse: mayEdit || grant.roles.includes('statistician'),
 		ethicsForm: mayEdit
 			? await superValidate(defaults, zod4(ethicsApprovalSchema), { errors: false })
 			: null
