@@ -93,12 +93,13 @@ export function toProblem({ participant, content, lab, nowMs }: ProblemParts): B
 
 /** What the protocol says about visits; the same in every arm. Longer pauses may lie between practice days. */
 export function toChainPlan({ visits, booking }: ProtocolContent): ChainPlan {
+	const hoursMean = booking.dayMeaning === 'clock-time' ? 'clock' : 'elapsed';
 	return {
 		visits: visits.map(
 			({ number, label, kind, minutes, setupMinutes, cleanupMinutes, gapBefore }) => {
 				const allowedPauses =
 					kind === 'practice' ? booking.pauses : { ...booking.pauses, count: 0 };
-				const gap = gapBefore && { ...gapBefore, allowedPauses };
+				const gap = gapBefore && { ...gapBefore, allowedPauses, hoursMean };
 				return { number, label, kind, minutes, setupMinutes, cleanupMinutes, gapBefore: gap };
 			}
 		),
