@@ -4,6 +4,10 @@ import { findComparisonFaults } from './find-comparison-faults';
 import { findGapFaults } from './find-gap-faults';
 import { findPolicyFaults } from './find-policy-faults';
 import { findRuleFaults } from './find-rule-faults';
+import { findAnalysisFaults } from './analysis/find-analysis-faults';
+import { findRelaxationFaults } from './booking/find-relaxation-faults';
+import { findInstructionFaults } from './find-instruction-faults';
+import { findYokingFaults } from './find-yoking-faults';
 import { findDoseFaults } from './limits/find-dose-faults';
 import { findEnvelopeFaults } from './limits/find-envelope-faults';
 import { findDueBlockFaults } from './policy/find-due-block-faults';
@@ -18,12 +22,16 @@ export function findFaults(draft: ProtocolDraft, rigs: readonly RigLimit[]): Fau
 		...findTaskFaults(draft),
 		...findVisitFaults(draft, rigs),
 		...findBlindingFaults(draft),
+		...findYokingFaults(draft),
 		...findGapFaults(draft),
+		...findRelaxationFaults(draft),
 		...findRuleFaults(draft),
 		...findSettingFaults(draft),
 		...findDueBlockFaults(draft),
 		...findPolicyFaults(draft),
 		...findComparisonFaults(draft),
+		...findAnalysisFaults(draft),
+		...findInstructionFaults(draft),
 		...findEnvelopeFaults(draft, rigs),
 		...findDoseFaults(draft)
 	];

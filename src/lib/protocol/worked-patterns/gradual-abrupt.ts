@@ -56,7 +56,13 @@ export function createGradualAbrupt(): ProtocolDraft {
 				population: 'Everybody allocated who came to the baseline visit',
 				treatment: 'The same shift of the target in small steps against at once',
 				variable: 'Mean signed error over the first 20 trials of the washout block',
-				events: treatmentPolicy('missed-practice-day', 'withdrawal-from-practice'),
+				events: treatmentPolicy(
+					'missed-practice-day',
+					'withdrawal-from-practice',
+					'withdrawal-from-study',
+					'adverse-event-pause',
+					'rig-failure'
+				),
 				summary: 'Difference of the means of the two arms'
 			},
 			analysis: 'Analysis of covariance with the signed error at baseline as covariate.',

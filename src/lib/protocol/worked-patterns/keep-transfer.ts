@@ -39,7 +39,13 @@ export function createKeepTransfer(): ProtocolDraft {
 				population: 'Everybody who came to the baseline visit',
 				treatment: 'Three days of plain practice',
 				variable: 'Mean absolute error at retention less that at baseline',
-				events: treatmentPolicy('missed-practice-day'),
+				events: treatmentPolicy(
+					'missed-practice-day',
+					'withdrawal-from-practice',
+					'withdrawal-from-study',
+					'adverse-event-pause',
+					'rig-failure'
+				),
 				summary: 'Mean change with its 95 % interval'
 			},
 			analysis: 'Paired t test of retention against baseline; the same for transfer.',

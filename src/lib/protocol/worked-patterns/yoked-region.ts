@@ -63,7 +63,15 @@ export function createYokedRegion(): ProtocolDraft {
 				population: 'Everybody allocated who came to the baseline visit',
 				treatment: 'Regions chosen for the person against the same regions chosen for a partner',
 				variable: 'Mean absolute error over the 60 trials of the retention block',
-				events: treatmentPolicy('missed-practice-day', 'fallback-block', 'rule-overridden'),
+				events: treatmentPolicy(
+					'missed-practice-day',
+					'withdrawal-from-practice',
+					'fallback-block',
+					'rule-overridden',
+					'withdrawal-from-study',
+					'adverse-event-pause',
+					'rig-failure'
+				),
 				summary: 'Difference of the means of the two arms'
 			},
 			analysis:

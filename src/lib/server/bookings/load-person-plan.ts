@@ -5,7 +5,13 @@ import type { Clock } from '$lib/server/clock';
 import type { Queryable } from '$lib/server/db/client';
 import { protocolVersion, study } from '$lib/server/db/schema';
 import { loadParticipant, type StudyParticipant } from '$lib/server/people/load-participants';
-import type { BookingProblem, ChainPlan, PlacedVisit, Weekday } from '$scheduler/booking/types.ts';
+import type {
+	BookingProblem,
+	ChainPlan,
+	GapRule,
+	PlacedVisit,
+	Weekday
+} from '$scheduler/booking/types.ts';
 import { loadLabCalendar, type NamedCalendar } from './load-lab-calendar';
 import { isLive, loadVisits, type StudyVisit } from './load-visits';
 
@@ -93,7 +99,7 @@ export function toProblem({ participant, content, lab, nowMs }: ProblemParts): B
 
 /** What the protocol says about visits; the same in every arm. Longer pauses may lie between practice days. */
 export function toChainPlan({ visits, booking }: ProtocolContent): ChainPlan {
-	const hoursMean = booking.dayMeaning === 'clock-time' ? 'clock' : 'elapsed';
+	const hoursMean: GapRule['hoursMean'] = booking.dayMeaning === 'clock-time' ? 'clock' : 'elapsed';
 	return {
 		visits: visits.map(
 			({ number, label, kind, minutes, setupMinutes, cleanupMinutes, gapBefore }) => {
