@@ -1,5 +1,6 @@
 import { eq } from 'drizzle-orm';
 import { afterAll, beforeAll, beforeEach, describe, expect, it } from 'vitest';
+import type { AmendmentTerms } from '$lib/protocol/amendment';
 import { openDatabase, type DatabaseHandle } from '$lib/server/db/client';
 import { study, type StudyRole } from '$lib/server/db/schema';
 import { sealVersion } from '$lib/server/allocation/seal-version';
@@ -8,6 +9,9 @@ import { recordApproval } from '$lib/server/ethics/record-approval';
 import { revokeApproval } from '$lib/server/ethics/revoke-approval';
 import { pauseStudy } from '$lib/server/pauses/pause-study';
 import { signOffVersion } from '$lib/server/power/sign-off-version';
+import { freezeVersion } from '$lib/server/protocols/freeze-version';
+import { loadDraft } from '$lib/server/protocols/load-draft';
+import { saveDraft } from '$lib/server/protocols/save-draft';
 import { startDraft } from '$lib/server/protocols/start-draft';
 import { findMissingGates, loadRunningVersion } from '$lib/server/studies/load-gates';
 import { createDatabase, type TestDatabase } from '../support/create-database';
@@ -166,6 +170,67 @@ describe('the gates', () => {
 			.set({ closedAt: new Date(clock.now()) })
 			.where(eq(study.id, studyId));
 		expect(await missing()).toEqual(['paused investigator', 'closed investigator']);
+	});
+});
+
+describe('an amendment', () => {
+	const terms = { follows: 'in-flight', renewal: 'nobody', withoutRenewal: 'stays' } as const;
+
+	async function freezeNext(amendment: AmendmentTerms, consentTextVersion = '2') {
+		const edit = await investigator.grantFor('protocol:edit');
+		await startDraft(handle.db, clock, edit);
+		const loaded = await loadDraft(handle.db, edit);
+		if (!loaded) throw new Error('there is no draft');
+		const draft = { ...finishedDraft(), consentTextVersion };
+		const { number, revision } = loaded;
+		const saved = await saveDraft(handle.db, edit, { number, revision, draft });
+		if (!saved.ok) throw new Error(saved.reason);
+		const grant = await investigator.grantFor('protocol:freeze');
+		const input = { number, revision: saved.revision, reason: 'A clearer text', amendment };
+		return freezeVersion(handle.db, clock, grant, input);
+	}
+
+	async function open() {
+		const { hash } = await freeze();
+		await Promise.all([approve(hash), seal(hash)]);
+		await sign(hash);
+	}
+
+	it('runs from its date on, and the earlier version until then', async () => {
+		await open();
+		const next = await freezeNext({ ...terms, effectiveOn: '2027-03-10' });
+		if (!next.ok) throw new Error(next.reason);
+		await Promise.all([approve(next.hash), seal(next.hash)]);
+		await sign(next.hash);
+		expect(await loadRunningVersion(handle.db, clock, studyId)).toMatchObject({ number: 1 });
+		expect(await missing()).toEqual([]);
+		clock.set(Date.UTC(2027, 2, 10, 0, 1));
+		expect(await loadRunningVersion(handle.db, clock, studyId)).toMatchObject({ number: 2 });
+	});
+
+	it('is refused a day that is over, and a renewed consent without a new text', async () => {
+		await open();
+		const past = await freezeNext({ ...terms, effectiveOn: '2027-03-01' });
+		expect(past).toEqual({ ok: false, reason: 'in-the-past' });
+		const renewing = { ...terms, renewal: 'everybody', effectiveOn: '2027-03-10' } as const;
+		const same = await freezeNext(renewing, '1');
+		expect(same).toMatchObject({ ok: false, reason: 'unchanged' });
+		const edit = await investigator.grantFor('protocol:edit');
+		const loaded = await loadDraft(handle.db, edit);
+		const draft = { ...finishedDraft(), readyLeadHours: 6 };
+		const { number = 0, revision = 0 } = loaded ?? {};
+		await saveDraft(handle.db, edit, { number, revision, draft });
+		const grant = await investigator.grantFor('protocol:freeze');
+		const input = { number, revision: revision + 1, reason: 'Sooner', amendment: renewing };
+		const refused = await freezeVersion(handle.db, clock, grant, input);
+		expect(refused).toEqual({ ok: false, reason: 'same-consent-text' });
+		expect((await loadDraft(handle.db, edit))?.number).toBe(2);
+	});
+
+	it('is refused where no version runs', async () => {
+		await freeze();
+		const refused = await freezeNext({ ...terms, effectiveOn: '2027-03-10' });
+		expect(refused).toEqual({ ok: false, reason: 'nothing-runs' });
 	});
 });
 

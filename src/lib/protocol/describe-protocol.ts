@@ -47,7 +47,12 @@ function describeUntold(
 	const told = new Set(parts.flatMap(({ lines }) => lines.flatMap(({ tells }) => tells)));
 	const lines = [...readLeaves(content)]
 		.filter(([path]) => !plain.has(path) && !told.has(path) && isReadable(path, reader))
-		.map(([path, text]) => ({ key: path, term: nameLeaf(path), text, tells: [path] }));
+		.map(([path, text]) => ({
+			key: path,
+			term: nameLeaf(path.replace(/^policy\./, '')),
+			text,
+			tells: [path]
+		}));
 	const ofRule = (line: ProtocolLine) => line.key.startsWith('policy.');
 	return [
 		{ key: 'settings', title: 'Every other setting of the rule', lines: lines.filter(ofRule) },
