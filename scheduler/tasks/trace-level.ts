@@ -40,6 +40,7 @@ export function traceLevel(
 	for (let j = 0; j + 1 < ny; j++)
 		for (let i = 0; i + 1 < nx; i++) {
 			const corner = j * nx + i;
+			if (!passesLevel(values, level, corner, nx)) continue;
 			const [a, b, c, d] = [corner, corner + 1, corner + nx + 1, corner + nx];
 			const sides = [cutEdge(a, b), cutEdge(b, c), cutEdge(d, c), cutEdge(a, d)];
 			if (sides.includes('jump')) jumps[j * (nx - 1) + i] = 1;
@@ -47,6 +48,16 @@ export function traceLevel(
 			segments.push(...pairCrossings(found, isCenterLike(values, [a, b, c, d], level)));
 		}
 	return { lines: joinSegments(segments), jumps };
+}
+
+/** Whether the corners of a cell lie on both sides of the level; most cells are done with here. */
+function passesLevel(values: Float64Array, level: number, corner: number, nx: number): boolean {
+	const isLow = (values[corner] ?? 0) < level;
+	return (
+		(values[corner + 1] ?? 0) < level !== isLow ||
+		(values[corner + nx] ?? 0) < level !== isLow ||
+		(values[corner + nx + 1] ?? 0) < level !== isLow
+	);
 }
 
 /** Four crossings are a saddle: joined by the sign in the middle of the cell. */

@@ -33,8 +33,8 @@ export function chooseGrid(
 	quality: MapRequest['quality']
 ): readonly [number, number] {
 	const isFine = quality === 'fine';
-	if (record.type === 'tethered-ball') return isFine ? [181, 137] : [65, 49];
-	if (record.type !== 'cart-pendulum') return isFine ? [201, 151] : [121, 91];
+	if (record.type === 'tethered-ball') return isFine ? [181, 137] : [57, 43];
+	if (record.type !== 'cart-pendulum') return isFine ? [201, 151] : [81, 61];
 	if (record.measure === 'predictability') return isFine ? [49, 37] : [17, 13];
 	return isFine ? [73, 55] : [25, 19];
 }
@@ -144,7 +144,9 @@ function isSlow(record: TaskRecord): boolean {
 }
 
 function listMisses(map: ResultMap): Float64Array {
-	return Float64Array.from({ length: map.nx * map.ny }, (_, place) => missAt(map, place));
+	return map.results.length === 1
+		? (map.results[0]?.map(Math.abs) ?? new Float64Array())
+		: Float64Array.from({ length: map.nx * map.ny }, (_, place) => missAt(map, place));
 }
 
 /** A round miss that all but a few valid executions stay below. */

@@ -9,8 +9,8 @@ import type { SpacePicture, SpacePoint, SpaceRequest } from './cloud-request';
 import { createShareReader } from './forgiveness';
 
 /** Tiles that the longest range is cut into. */
-const TILES = 22;
-const TILES_MAX = 1600;
+const TILES = 18;
+const TILES_MAX = 1000;
 /** Steps along a curve, in scales. */
 const CURVE_STEP = 0.25;
 const CURVE_LENGTH = 120;

@@ -185,6 +185,7 @@ export class Explorer {
 	askCloud(): void {
 		const { map, record, region } = this;
 		if (!map || map.facts.quality !== 'fine' || this.second === '') return;
+		if (!isUsable(this.cloud, region)) return;
 		this.#client?.askCloud({
 			...{ record, axes: this.axes, point: this.point, place: this.cloudPlace, seed: SEED },
 			...$state.snapshot(this.cloud),
@@ -206,6 +207,20 @@ export class Explorer {
 	valueAt(axis: number): number {
 		return entry(this.point, axis);
 	}
+}
+
+/** Whether the fields of the cloud and the region hold numbers that can be drawn; a field may be empty. */
+function isUsable(
+	cloud: { trials: number; alongSd: number; acrossSd: number },
+	region: { isOn: boolean; alongSd: number; acrossSd: number }
+): boolean {
+	const isSize = (value: number | null) => value !== null && value > 0 && value <= 20;
+	const isCloud = Number.isInteger(cloud.trials) && cloud.trials >= 8 && cloud.trials <= 200;
+	const isSpread =
+		cloud.alongSd !== null && cloud.acrossSd !== null && cloud.alongSd + cloud.acrossSd > 0;
+	return (
+		isCloud && isSpread && (!region.isOn || (isSize(region.alongSd) && isSize(region.acrossSd)))
+	);
 }
 
 /** Stands in until a task is opened. */
