@@ -6,17 +6,10 @@ import {
 } from '../../learners/redundant-person.ts';
 import { redundantTraitsSchema, type RedundantTraits } from '../../learners/redundant-traits.ts';
 import { decideNextBlock } from '../../policies/decide.ts';
-import type { DecisionRecord, DecisionInputsInput } from '../../policies/decision-record.ts';
+import type { DecisionRecord } from '../../policies/decision-record.ts';
 import type { PolicyMemory } from '../../policies/policy-memory.ts';
-import {
-	equaliseBlockLengths,
-	policySettingsSchema,
-	type PolicySettings
-} from '../../policies/policy-settings.ts';
 import type { LastBlock } from '../../policies/policy-state.ts';
 import type { MasterBlock } from '../../policies/yoking/yoked-rule.ts';
-import type { BlockPlan } from '../../protocol/block-plan.ts';
-import { planListedBlock } from '../../protocol/plan-listed-block.ts';
 import type { ProtocolContent } from '../../protocol/protocol-content.ts';
 import { blocksOfArm } from '../../protocol/visit-plan.ts';
 import type { Uint32Stream } from '../../random/random-stream.ts';
@@ -25,14 +18,13 @@ import { createTask } from '../../tasks/create-task.ts';
 import { createScaledTask, type ScaledTask } from '../../tasks/scaled-task.ts';
 import { taskRecordSchema, type TaskRecord } from '../../tasks/task-record.ts';
 import type { Attended } from './attend-visits.ts';
+import {
+	describeDecision,
+	type DryPlace,
+	type DryState,
+	type MasterCourse
+} from './describe-decision.ts';
 import type { DeadEnd, DeadEndCode, DryVisit } from './dry-settings.ts';
-
-/** What a partner can be given of a master: blocks of adaptive time in order, and when they were scored. */
-export interface MasterCourse {
-	readonly code: string;
-	readonly withdrawn: boolean;
-	readonly blocks: readonly MasterBlock[];
-}
 
 export interface PractiseRequest {
 	readonly content: ProtocolContent;
@@ -66,13 +58,6 @@ export function practisePerson(request: PractiseRequest): Practised {
 		visit.came ? course.run(visit) : course.skip(visit)
 	);
 	return { visits, deadEnds: course.deadEnds, course: course.scored };
-}
-
-interface Place {
-	readonly visit: Attended;
-	readonly plan: BlockPlan;
-	readonly index: number;
-	readonly blocks: readonly BlockPlan[];
 }
 
 class Course {
@@ -139,7 +124,7 @@ class Course {
 	}
 
 	/** The kind that ran; null: nothing more can run today. */
-	#runPlace(place: Place): { kind: string; isFallback: boolean } | null {
+	#runPlace(place: DryPlace): { kind: string; isFallback: boolean } | null {
 		for (let ask = 0; ask < ASKS_MAX; ask++) {
 			const decided = this.#decide(place, ask > 0);
 			if (!decided) return null;
@@ -157,11 +142,10 @@ class Course {
 		return { kind: 'practice', isFallback: true };
 	}
 
-	#decide(place: Place, release: boolean): DecisionRecord | null {
+	#decide(place: DryPlace, release: boolean): DecisionRecord | null {
 		try {
 			return decideNextBlock({
-				...{ task: this.#record, protocol: this.#settings(place), rule: this.#rule(place) },
-				state: this.#describe(place, release),
+				...{ task: this.#record, ...describeDecision(this.#describe(), place, release) },
 				versions: { engineVersion: 'dry', runtimeVersion: 'dry' },
 				digest: () => 'dry'
 			});
@@ -175,48 +159,17 @@ class Course {
 		}
 	}
 
-	#settings({ plan }: Place): PolicySettings {
-		const policy = policySettingsSchema.parse(this.#request.content.policy);
-		return equaliseBlockLengths({ ...policy, blockTrials: plan.trials });
-	}
-
-	#rule(place: Place): NonNullable<DecisionInputsInput['rule']> {
+	#describe(): DryState {
 		const { content, person, master } = this.#request;
-		const arm = content.arms.find(({ key }) => key === person.arm);
-		const isAdaptive = place.plan.purpose === 'adaptive';
-		if (isAdaptive && arm?.rule === 'adaptive') return { kind: 'adaptive' };
-		if (isAdaptive && arm?.rule === 'yoked' && master) return this.#follow(place, master);
-		const cloud = this.#memory?.cloud ?? null;
-		return { kind: 'fixed', block: planListedBlock(place.plan, { task: this.#task, cloud }) };
-	}
-
-	#follow({ visit }: Place, master: MasterCourse): NonNullable<DecisionInputsInput['rule']> {
-		const { content } = this.#request;
-		const plan = content.visits.find(({ number }) => number === visit.number);
 		return {
-			...{ kind: 'yoked', settings: content.yoking ?? {}, block: this.scored.length },
-			nowHours: visit.startMs / HOUR_MS,
-			previousEndHours: (this.#lastEndMs ?? visit.startMs) / HOUR_MS,
-			gapMaxHours: plan?.gapBefore?.maxHours ?? 0,
-			master: { ...master, blocks: [...master.blocks] }
-		};
-	}
-
-	#describe({ visit, index, blocks }: Place, release: boolean): DecisionInputsInput['state'] {
-		const later = blocks.slice(index).filter(({ purpose }) => purpose !== 'rest');
-		const gap = this.#lastEndMs === null ? null : (visit.startMs - this.#lastEndMs) / HOUR_MS;
-		return {
-			...{ day: visit.number, blockInDay: index, blocksLeftToday: later.length, release },
-			trialsToday: this.#trialsToday,
-			trialsLeftToday: later.reduce((sum, { trials }) => sum + trials, 0),
-			gapHours: index === 0 && gap !== null ? Math.max(0, gap) : null,
-			last: this.#last,
-			...(this.#memory ? { memory: this.#memory } : {})
+			...{ content, arm: person.arm, master, task: this.#task, memory: this.#memory },
+			...{ last: this.#last, lastEndMs: this.#lastEndMs, trialsToday: this.#trialsToday },
+			adaptiveBlocks: this.scored.length
 		};
 	}
 
 	#runOne(
-		place: Place,
+		place: DryPlace,
 		decided: DecisionRecord | null,
 		runnable: NonNullable<ReturnType<typeof findRunnable>>
 	): void {
@@ -244,7 +197,7 @@ class Course {
 		return startMs + (plan?.minutes ?? 0) * 60_000;
 	}
 
-	#noteStop({ visit, index }: Place): null {
+	#noteStop({ visit, index }: DryPlace): null {
 		this.#note('day-full', visit.number, [
 			`After ${this.#trialsToday} trials the day is full: block ${index + 1} and what follows it cannot run.`,
 			'Raise the trials a visit, or plan fewer trials on this day.'
@@ -252,7 +205,7 @@ class Course {
 		return null;
 	}
 
-	#noteWait({ visit, index }: Place): null {
+	#noteWait({ visit, index }: DryPlace): null {
 		const { master, content } = this.#request;
 		this.#note('master-behind', visit.number, [
 			`Block ${index + 1} waits: ${master?.code ?? 'the master'} has not run the block that it repeats.`,

@@ -11,7 +11,8 @@ import {
 } from './book-person.ts';
 import { DryCalendar, planChain } from './dry-calendar.ts';
 import type { DeadEnd, DryPerson, DryRunReport, DryRunRequest } from './dry-settings.ts';
-import { practisePerson, type MasterCourse } from './practise-person.ts';
+import type { MasterCourse } from './describe-decision.ts';
+import { practisePerson } from './practise-person.ts';
 
 /** How far a dry run has come. */
 export interface DryProgress {
