@@ -55,8 +55,10 @@ describe('trying a protocol', () => {
 		await press('Try 3 people on 4 values');
 		await ivy.page.getByText(/^12 of 12 runs/).waitFor();
 		await ivy.page.getByRole('img', { name: 'False triggers without a true change' }).waitFor();
-		const table = ivy.page.getByRole('region', { name: /^Table of False triggers/ });
-		expect(await table.getByText(/ of \d+$/).count()).toBeGreaterThanOrEqual(4);
+		// The table behind the picture is folded away until it is asked for.
+		const table = ivy.page.locator('[aria-label^="Table of False triggers"]');
+		const numbers = (await table.textContent()) ?? '';
+		expect(numbers.match(/\d+ of \d+/g)?.length).toBeGreaterThanOrEqual(4);
 		await keepScreenshot(ivy.page, 'workbench-curves');
 	});
 
@@ -74,11 +76,8 @@ describe('trying a protocol', () => {
 		await fill('Miss a visit', '40');
 		await press('Let 4 people walk it');
 		await ivy.page.getByText(/ of 4 finished/).waitFor();
-		await ivy.page.getByRole('region', { name: 'Dead ends of the dry run' }).waitFor();
-		await ivy.page
-			.getByText(/^Declare a rule for missed days|^Allow|^Extend|^Open/)
-			.first()
-			.waitFor();
+		const ends = ivy.page.getByRole('region', { name: 'Dead ends of the dry run' });
+		await ends.getByText('Declare a rule for missed days.').first().waitFor();
 		await keepScreenshot(ivy.page, 'dry-run');
 	});
 
