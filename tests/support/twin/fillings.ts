@@ -37,6 +37,9 @@ export async function loadFillings(sql: postgres.Sql, studyId: string, links: Li
 		select name, id as "rigId" from rig where lab_id = ${base.labId} order by name`;
 	const staff = await sql<{ name: string; staffId: string }[]>`
 		select name, id as "staffId" from staff where lab_id = ${base.labId} order by name`;
+	const tasks = await sql<Record<string, string>[]>`
+		select name || ' ' || version as says, id as "taskId" from task
+		where lab_id = ${base.labId} order by name, version`;
 	const letters = await sql<Record<string, string>[]>`
 		select file_name as says, id as "letterId" from ethics_letter
 		where study_id = ${studyId} order by file_name, id`;
@@ -52,6 +55,7 @@ export async function loadFillings(sql: postgres.Sql, studyId: string, links: Li
 		[['rigId'], named(rigs, 'name')],
 		[['staffId'], named(staff, 'name')],
 		[['letterId'], named(letters, 'says')],
+		[['taskId'], named(tasks, 'says')],
 		[['token'], links.map(({ says, values }) => ({ says, values: { ...base, ...values } }))]
 	];
 	return (entry: Entry): readonly Filling[] => {
