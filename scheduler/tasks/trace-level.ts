@@ -23,12 +23,14 @@ const REST_SHARE = 0.02;
  * Method:  marching squares on the map; with `evaluate` each crossing is found on its edge by six rounds of
  *          false position and told from a jump; without it crossings are interpolated.
  * Source:  method sheet A7; result-map.test.ts.
+ * @param skipped cells to be left out, such as those in which the sign is known to jump
  * @throws {RangeError} a map of several results, which has no change of sign to be followed
  */
 export function traceLevel(
 	map: ResultMap,
 	level: number,
-	evaluate?: (point: PlanePoint) => number
+	evaluate?: (point: PlanePoint) => number,
+	skipped?: Uint8Array
 ): LevelTrace {
 	const [values] = map.results;
 	if (!values || map.results.length > 1)
@@ -40,7 +42,7 @@ export function traceLevel(
 	for (let j = 0; j + 1 < ny; j++)
 		for (let i = 0; i + 1 < nx; i++) {
 			const corner = j * nx + i;
-			if (!passesLevel(values, level, corner, nx)) continue;
+			if (skipped?.[j * (nx - 1) + i] || !passesLevel(values, level, corner, nx)) continue;
 			const [a, b, c, d] = [corner, corner + 1, corner + nx + 1, corner + nx];
 			const sides = [cutEdge(a, b), cutEdge(b, c), cutEdge(d, c), cutEdge(a, d)];
 			if (sides.includes('jump')) jumps[j * (nx - 1) + i] = 1;

@@ -99,7 +99,10 @@ export function drawMap(map: ResultMap, request: MapRequest, startedMs: number):
 	const zero = hasOne ? traceLevel(signed, 0, evaluate) : null;
 	const misses = listMisses(map);
 	const top = request.top ?? chooseTop(misses, map, record.tolerance);
-	const trace = (level: number) => (hasOne ? traceLevel(signed, level, evaluate).lines : []);
+	// While something moves the edges of the band are interpolated; where the sign jumps there are none.
+	const exact = quality === 'fine' ? evaluate : undefined;
+	const trace = (level: number) =>
+		hasOne ? traceLevel(signed, level, exact, zero?.jumps).lines : [];
 	const painting = { ...pixels, colours: listMapColours(theme), top, tolerance: record.tolerance };
 	return {
 		window,
