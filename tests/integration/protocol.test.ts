@@ -142,9 +142,9 @@ describe('saving a draft', () => {
 	it('keeps a number that is not typed yet', async () => {
 		const grant = await investigator.grantFor('protocol:edit');
 		const draft = finishedDraft();
-		draft.task.puck.mu = null;
+		draft.task.numbers.mu = null;
 		await saveDraft(handle.db, grant, { number: 1, revision: 0, draft });
-		expect((await draftOf(investigator)).draft.task.puck.mu).toBeNull();
+		expect((await draftOf(investigator)).draft.task.numbers.mu).toBeNull();
 	});
 });
 

@@ -1,4 +1,5 @@
 import { describe, expect, it } from 'vitest';
+import { createTaskDraft } from '../tasks/task-draft';
 import { plainBlock } from './empty-parts';
 import { findFaults } from './find-faults';
 import { createPatternDraft } from './patterns';
@@ -83,12 +84,20 @@ describe('findFaults', () => {
 	});
 });
 
-const unitVariable = { unit: 'm', min: -1, max: 1, origin: 0, scale: 0.1, resolution: null };
+const unitVariable = {
+	unit: 'm',
+	min: -1,
+	max: 1,
+	origin: 0,
+	scale: 0.1,
+	resolution: null,
+	weight: null
+};
 
 describe('a visit too long for every rig', () => {
 	it('is a caution where nothing is issued to a rig', () => {
 		const draft = createPatternDraft('single-visit');
-		draft.task.type = 'puck';
+		draft.task = createTaskDraft('puck');
 		draft.visits[0]?.blocks.push(plainBlock('baseline', 980));
 		const found = findFaults(draft, rigs).map(({ code, level }) => [code, level]);
 		expect(found).toEqual([['over-every-rig', 'caution']]);
@@ -98,9 +107,9 @@ describe('a visit too long for every rig', () => {
 describe('a formula of one’s own', () => {
 	function formulaDraft(formula: string): ProtocolDraft {
 		return draftWith(({ task }) => {
-			task.type = 'formula';
 			const variables = ['a', 'b'].map((name) => ({ ...unitVariable, name }));
-			task.formula = { formula, resultUnit: 'm', tolerance: 0.1, variables };
+			const held = { numbers: {}, choices: {}, formula, resultUnit: 'm', tolerance: 0.1 };
+			Object.assign(task, { type: 'formula', ...held, variables });
 		});
 	}
 
@@ -120,16 +129,16 @@ describe('a formula of one’s own', () => {
 
 	it('brings a caution when regions cannot be placed for its variables', () => {
 		const draft = formulaDraft('a + b');
-		draft.task.formula.variables.push({ ...unitVariable, name: 'c' });
+		draft.task.variables.push({ ...unitVariable, name: 'c' });
 		expect(findFaults(draft, rigs)).toEqual([]);
-		draft.task.formula.variables.push({ ...unitVariable, name: 'd' });
+		draft.task.variables.push({ ...unitVariable, name: 'd' });
 		const [caution] = findFaults(draft, rigs);
 		expect(caution).toMatchObject({ code: 'region-unplaceable', level: 'caution' });
 		expect(caution?.text).toContain('3 directions');
 	});
 
 	it('brings a caution when a puck may be let go beyond its target', () => {
-		const draft = draftWith(({ task }) => Object.assign(task.puck, { D: 1 }));
+		const draft = draftWith(({ task }) => Object.assign(task.numbers, { D: 1 }));
 		const caution = findFaults(draft, rigs).find(({ code }) => code === 'release-beyond-target');
 		expect(caution).toMatchObject({ level: 'caution', place: 'Task' });
 		expect(caution?.text).toContain('1 m');
@@ -137,7 +146,7 @@ describe('a formula of one’s own', () => {
 
 	it('refuses two variables of one name', () => {
 		const draft = formulaDraft('a');
-		Object.assign(draft.task.formula.variables[1] ?? {}, { name: 'a' });
+		Object.assign(draft.task.variables[1] ?? {}, { name: 'a' });
 		expect(blockingCodes(draft)).toContain('name-twice');
 	});
 });
@@ -152,8 +161,8 @@ function setTrials(draft: ProtocolDraft, visit: number, block: number, trials: n
 	Object.assign(draft.visits[visit]?.blocks[block] ?? {}, { trials });
 }
 
-type Variable = ProtocolDraft['task']['puck']['variables'][number];
+type Variable = ProtocolDraft['task']['variables'][number];
 
 function setVariable(draft: ProtocolDraft, index: number, change: Partial<Variable>): void {
-	Object.assign(draft.task.puck.variables[index] ?? {}, change);
+	Object.assign(draft.task.variables[index] ?? {}, change);
 }

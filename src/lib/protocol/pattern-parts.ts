@@ -1,6 +1,7 @@
 import type { BlockDraft, GapDraft, VisitDraft } from './draft-parts';
 import { emptyAnalysis, plainBlock, usualMissedDay, usualYoking } from './empty-parts';
-import type { ProtocolDraft, VariableDraft } from './protocol-draft';
+import { createTaskDraft } from '../tasks/task-draft';
+import type { ProtocolDraft } from './protocol-draft';
 
 export const dailyGap: GapDraft = { minHours: 20, targetHours: 24, maxHours: 28, nightsBetween: 1 };
 export const firstPracticeGap: GapDraft = {
@@ -20,11 +21,7 @@ export const retentionGap: GapDraft = {
 export function createBlank(): ProtocolDraft {
 	return {
 		format: 1,
-		task: {
-			type: 'puck',
-			puck: { mu: 0.18, g: 9.81, D: 2, tolerance: 0.12, variables: puckVariables() },
-			formula: { formula: '', resultUnit: '', tolerance: null, variables: [emptyVariable()] }
-		},
+		task: createTaskDraft('puck'),
 		arms: [{ key: 'arm-1', name: 'Arm 1', rule: 'fixed', master: null }],
 		visits: [visit('Baseline', 'baseline', [60], dailyGap)],
 		booking: {
@@ -89,42 +86,6 @@ export function visitOf(
 		gapBefore: { ...gapBefore },
 		blocks,
 		armBlocks: {}
-	};
-}
-
-function puckVariables(): VariableDraft[] {
-	return [
-		{
-			name: 'release_speed',
-			unit: 'm/s',
-			min: 0.5,
-			max: 4,
-			origin: 2.486,
-			scale: 0.09,
-			resolution: 0.002
-		},
-		{
-			name: 'release_position',
-			unit: 'm',
-			min: -0.4,
-			max: 1.1,
-			origin: 0.25,
-			scale: 0.07,
-			resolution: 0.001
-		}
-	];
-}
-
-/** A variable of which nothing has been said yet. */
-export function emptyVariable(): VariableDraft {
-	return {
-		name: '',
-		unit: '',
-		min: null,
-		max: null,
-		origin: null,
-		scale: null,
-		resolution: null
 	};
 }
 

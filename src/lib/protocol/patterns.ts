@@ -1,3 +1,4 @@
+import { createTaskDraft } from '../tasks/task-draft';
 import type { ProtocolDraft } from './protocol-draft';
 import {
 	createBlank,
@@ -93,7 +94,7 @@ function createSingleVisit(): ProtocolDraft {
 	const blank = createBlank();
 	return {
 		...blank,
-		task: { ...blank.task, type: 'formula' },
+		task: createTaskDraft('formula'),
 		arms: [{ key: 'recorded', name: 'Recorded', rule: 'fixed', master: null }],
 		visits: [visit('Recorded visit', 'baseline', [60], dailyGap)],
 		limits: { ...blank.limits, minutesPerVisit: 120, trialsPerVisit: 2000 }

@@ -12,7 +12,9 @@ import {
 	visitDraftSchema,
 	yokingDraftSchema
 } from './draft-parts';
+import { taskDraftSchema } from '../tasks/task-draft';
 import { emptyAnalysis, usualYoking } from './empty-parts';
+import { upgradeTask } from './upgrade-task';
 
 /**
  * A version that is still being written: the shape of the protocol's forms. A number that is not
@@ -22,37 +24,10 @@ import { emptyAnalysis, usualYoking } from './empty-parts';
 const number = draftNumber;
 const text = draftText;
 
-const variableDraftSchema = z.object({
-	name: text(64),
-	unit: text(32),
-	min: number,
-	max: number,
-	origin: number,
-	scale: number,
-	resolution: number
-});
-
-/** Both kinds of task are kept, so that choosing the other loses nothing. */
-const taskDraftSchema = z.object({
-	type: z.enum(['puck', 'formula']),
-	puck: z.object({
-		mu: number,
-		g: number,
-		D: number,
-		tolerance: number,
-		variables: z.array(variableDraftSchema).length(2)
-	}),
-	formula: z.object({
-		formula: text(1000),
-		resultUnit: text(32),
-		tolerance: number,
-		variables: z.array(variableDraftSchema).max(12, 'A formula has at most 12 variables')
-	})
-});
-
 export const protocolDraftSchema = z.object({
 	format: z.literal(1),
-	task: taskDraftSchema,
+	/** A draft of the older form, with a puck or a formula, opens as one of any model. */
+	task: z.preprocess(upgradeTask, taskDraftSchema),
 	arms: z.array(armDraftSchema).min(1).max(6, 'A study has at most 6 arms'),
 	visits: z.array(visitDraftSchema).max(40, 'A protocol has at most 40 visits'),
 	booking: bookingDraftSchema,
@@ -98,8 +73,6 @@ export const protocolDraftSchema = z.object({
 });
 
 export type ProtocolDraft = z.infer<typeof protocolDraftSchema>;
-export type TaskDraft = ProtocolDraft['task'];
-export type VariableDraft = TaskDraft['formula']['variables'][number];
 
 /** The assumptions of the comparison whose source and author the power page names. */
 export const assumptionFields = [

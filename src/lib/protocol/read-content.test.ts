@@ -1,21 +1,15 @@
 import { describe, expect, it } from 'vitest';
 import { listDifferences } from './list-differences';
 import { createPatternDraft } from './patterns';
-import type { ProtocolContent } from '$scheduler/protocol/protocol-content';
 import type { ProtocolDraft } from './protocol-draft';
 import { readContent } from './read-content';
+import { contentOf } from './read-content.test-data';
 import { writeDraft } from './write-draft';
 
 function finishedDraft(): ProtocolDraft {
 	const draft = createPatternDraft('two-arms');
 	Object.assign(draft.comparison, { effectD: 0.8, effectSource: 'pilot', peoplePerArm: 30 });
 	return draft;
-}
-
-function contentOf(draft: ProtocolDraft): ProtocolContent {
-	const read = readContent(draft);
-	if (!read.ok) throw new Error(read.faults.map(({ text }) => text).join('\n'));
-	return read.content;
 }
 
 describe('readContent', () => {
@@ -68,7 +62,7 @@ describe('writeDraft', () => {
 	it('gives back a draft that freezes to the same content', () => {
 		const content = contentOf(finishedDraft());
 		const draft = writeDraft(content, createPatternDraft('blank'));
-		expect(draft && contentOf(draft)).toEqual(content);
+		expect(contentOf(draft)).toEqual(content);
 	});
 
 	it('keeps settings of the policy that have no field of their own', () => {
@@ -76,7 +70,7 @@ describe('writeDraft', () => {
 		draft.otherPolicy = { place: { coverMax: 0.4 }, settle: { margin: 0.3 } };
 		const content = contentOf(draft);
 		const again = writeDraft(content, createPatternDraft('blank'));
-		expect(again && contentOf(again)).toEqual(content);
+		expect(contentOf(again)).toEqual(content);
 		expect(content.policy).toMatchObject({ place: { coverMax: 0.4 }, settle: { margin: 0.3 } });
 	});
 });

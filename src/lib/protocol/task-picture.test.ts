@@ -17,9 +17,17 @@ describe('the picture of a task', () => {
 
 	it('holds the third variable of a formula at its origin', () => {
 		const { task } = createPatternDraft('single-visit');
-		const variable = { unit: '', min: -1, max: 1, origin: 0.5, scale: 0.1, resolution: 0 };
+		const variable = {
+			unit: '',
+			min: -1,
+			max: 1,
+			origin: 0.5,
+			scale: 0.1,
+			resolution: 0,
+			weight: null
+		};
 		const variables = ['a', 'b', 'c'].map((name) => ({ ...variable, name }));
-		task.formula = { formula: 'a + b - c', resultUnit: '', tolerance: 0.1, variables };
+		Object.assign(task, { formula: 'a + b - c', tolerance: 0.1, variables });
 		const record = readTask(task);
 		const points = (record && pictureTask(record)?.zeroSet.flat()) ?? [];
 		expect(points.length).toBeGreaterThan(50);
@@ -28,8 +36,17 @@ describe('the picture of a task', () => {
 
 	it('is none for one variable', () => {
 		const { task } = createPatternDraft('single-visit');
-		const variable = { unit: '', min: -1, max: 1, origin: 0, scale: 0.1, resolution: 0, name: 'a' };
-		task.formula = { formula: 'a', resultUnit: '', tolerance: 0.1, variables: [variable] };
+		const variable = {
+			unit: '',
+			min: -1,
+			max: 1,
+			origin: 0,
+			scale: 0.1,
+			resolution: 0,
+			weight: null,
+			name: 'a'
+		};
+		Object.assign(task, { formula: 'a', tolerance: 0.1, variables: [variable] });
 		const record = readTask(task);
 		expect(record && pictureTask(record)).toBeNull();
 	});

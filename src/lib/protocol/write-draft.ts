@@ -3,6 +3,7 @@ import { taskRecordSchema } from '$scheduler/tasks/task-record';
 import type { BlockPlan } from '$scheduler/protocol/block-plan';
 import type { ProtocolContent } from '$scheduler/protocol/protocol-content';
 import type { VisitPlan } from '$scheduler/protocol/visit-plan';
+import { writeTaskDraft } from '../tasks/task-draft';
 import { writeClockText } from './clock-text';
 import { blockDraftSchema, limitsDraftSchema, type VisitDraft } from './draft-parts';
 import { emptyAnalysis, usualYoking } from './empty-parts';
@@ -17,13 +18,9 @@ const hasOwnField = new Set([
 	'recoveryTrials'
 ]);
 
-/**
- * A frozen version as a draft to go on from; `blank` fills what its kind of task leaves open. Null
- * for a task that the forms cannot hold.
- */
-export function writeDraft(content: ProtocolContent, blank: ProtocolDraft): ProtocolDraft | null {
-	const task = writeTaskDraft(content, blank);
-	if (!task) return null;
+/** A frozen version as a draft to go on from; `blank` fills what it leaves open. */
+export function writeDraft(content: ProtocolContent, blank: ProtocolDraft): ProtocolDraft {
+	const task = writeTaskDraft(taskRecordSchema.parse(content.task));
 	const { booking, comparison, visits } = content;
 	const { policy } = content;
 	const parsed = policySettingsSchema.safeParse(policy);
@@ -86,20 +83,4 @@ function writeVisit({ number: _number, armBlocks, gapBefore, ...visit }: VisitPl
 			Object.entries(armBlocks ?? {}).map(([arm, blocks]) => [arm, write(blocks)])
 		)
 	};
-}
-
-function writeTaskDraft(
-	{ task }: ProtocolContent,
-	{ task: blank }: ProtocolDraft
-): ProtocolDraft['task'] | null {
-	const record = taskRecordSchema.parse(task);
-	if (record.type === 'puck') {
-		const { mu, g, D, tolerance, variables } = record;
-		return { ...blank, type: 'puck', puck: { mu, g, D, tolerance, variables } };
-	}
-	if (record.type === 'formula') {
-		const { formula, resultUnit, tolerance, variables } = record;
-		return { ...blank, type: 'formula', formula: { formula, resultUnit, tolerance, variables } };
-	}
-	return null;
 }

@@ -5,13 +5,13 @@ import { buildContent } from '../build-content';
 import { buildPolicy } from '../build-policy';
 import { hasAdaptiveTime } from '../has-adaptive-time';
 import type { ProtocolDraft } from '../protocol-draft';
-import { buildTaskRecord } from '../read-task';
+import { readTask } from '../read-task';
 
 /** A draft as the checker reads it: its content as far as it is written, with task and policy. */
 export function buildDesign(draft: ProtocolDraft): Design {
 	return designSchema.parse({
 		...buildContent(draft),
-		task: buildTaskRecord(draft.task),
+		task: readTask(draft.task) ?? draft.task,
 		policy: hasAdaptiveTime(draft) ? buildPolicy(draft) : {}
 	});
 }

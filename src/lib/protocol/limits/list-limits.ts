@@ -1,6 +1,7 @@
 import type { RigLimit } from '../fault';
 import type { ProtocolDraft } from '../protocol-draft';
-import { listVariables, readResultUnit } from './task-facts';
+import { readResultUnit } from '../../tasks/task-draft';
+import { listVariables } from './task-facts';
 
 /** One limit of a draft, with its range and what the lab's rigs allow. */
 export type LimitRow = {

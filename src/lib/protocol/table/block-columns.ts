@@ -4,7 +4,7 @@ import type { TextColumn } from '../../ui/table-text';
 import type { BlockDraft } from '../draft-parts';
 import { draftVariables } from '../ladder/draft-variables';
 import { feedbackWords } from '../ladder/feedback-words';
-import type { TaskDraft } from '../protocol-draft';
+import type { TaskDraft } from '$lib/tasks/task-draft';
 import { purposeWords } from '../purpose-words';
 
 /** A column of the table of blocks. */

@@ -34,7 +34,6 @@ export async function importProtocol(
 	const found = sha256Hex(canonicalJson(content));
 	if (found !== hash) return { ok: false, reason: 'hash-differs', stated: hash, found };
 	const draft = writeDraft(content, createPatternDraft('blank'));
-	if (!draft) return { ok: false, reason: 'not-holdable', faults: ['task'] };
 	const back = readContent(draft);
 	if (!back.ok) {
 		const faults = back.faults.map(({ place, text: words }) => `${place}: ${words}`);

@@ -62,8 +62,7 @@ export const load: PageServerLoad = async ({ locals, params, url }) => {
 
 const draftRefusals = {
 	'draft-exists': 'Another version is being written already.',
-	'nothing-frozen': 'No version is frozen yet: go on with the first draft.',
-	'task-not-editable': 'The forms cannot hold the task of the frozen version.'
+	'nothing-frozen': 'No version is frozen yet: go on with the first draft.'
 };
 
 const letterRefusals = {
