@@ -13,6 +13,8 @@ type Start = { address: string; number: number; revision: number; draft: Protoco
 type SaveState = 'saved' | 'waiting' | 'saving' | 'offline' | 'stale' | 'gone' | 'refused';
 
 const quietMs = 900;
+/** Until a change is kept in the browser, and until it is checked. */
+const restMs = 120;
 const retryMs = [2_000, 4_000, 8_000, 15_000];
 
 /**
@@ -33,6 +35,8 @@ export class DraftEditor {
 	/** Whether something was brought back that an earlier page had not saved. */
 	isRestored = $state(false);
 	revision = $state(0);
+	/** The draft once typing rests for a moment: what is worth checking as a whole. */
+	settled: ProtocolDraft = $state.raw() as ProtocolDraft;
 
 	readonly #address: string;
 	readonly #history: EditHistory<ProtocolDraft>;
@@ -40,6 +44,8 @@ export class DraftEditor {
 	#saved: ProtocolDraft;
 	#theirRevision = 0;
 	#timer: ReturnType<typeof setTimeout> | undefined;
+	#restTimer: ReturnType<typeof setTimeout> | undefined;
+	#keepTimer: ReturnType<typeof setTimeout> | undefined;
 	#failures = 0;
 	#running: Promise<void> | null = null;
 
@@ -49,6 +55,7 @@ export class DraftEditor {
 		this.revision = revision;
 		this.#address = address;
 		this.#saved = draft;
+		this.settled = draft;
 		this.#history = new EditHistory(draft);
 	}
 
@@ -142,8 +149,19 @@ export class DraftEditor {
 		this.undo();
 	}
 
+	/** Keeps in the browser what the server does not have. */
+	keepNow(): void {
+		clearTimeout(this.#keepTimer);
+		this.#keepTimer = undefined;
+		const { state } = this.#history;
+		if (state === this.#saved) this.#keeper?.forget();
+		else this.#keeper?.keep(this.revision, writeDraftText(state));
+	}
+
 	stop(): void {
 		clearTimeout(this.#timer);
+		clearTimeout(this.#restTimer);
+		this.keepNow();
 		void this.flush({ keepalive: true });
 	}
 
@@ -164,8 +182,10 @@ export class DraftEditor {
 		this.undoLabel = this.#history.undoLabel;
 		this.redoLabel = this.#history.redoLabel;
 		const isSaved = this.#history.state === this.#saved;
-		if (isSaved) this.#keeper?.forget();
-		else this.#keeper?.keep(this.revision, writeDraftText(this.#history.state));
+		if (isSaved) this.keepNow();
+		else this.#keepTimer ??= setTimeout(() => this.keepNow(), restMs);
+		clearTimeout(this.#restTimer);
+		this.#restTimer = setTimeout(() => (this.settled = this.#history.state), restMs);
 		if (this.#isStuck()) return;
 		if (isSaved) clearTimeout(this.#timer);
 		if (this.#running) return;

@@ -153,6 +153,7 @@ describe('the draft in the page', () => {
 		first.keepWith(keeper(store));
 		answer = () => null;
 		type(first, '2');
+		await vi.advanceTimersByTimeAsync(200);
 		const second = createEditor();
 		second.keepWith(keeper(store));
 		expect(second.isRestored).toBe(true);
@@ -165,11 +166,12 @@ describe('the draft in the page', () => {
 		expect(second.draft.consentTextVersion).toBe('1');
 	});
 
-	it('asks when the server has gone on since the page was killed', () => {
+	it('asks when the server has gone on since the page was killed', async () => {
 		const store = memory();
 		const first = createEditor();
 		first.keepWith(keeper(store));
 		type(first, 'mine');
+		await vi.advanceTimersByTimeAsync(200);
 		const theirs = { ...createPatternDraft('two-arms'), consentTextVersion: 'theirs' };
 		const second = new DraftEditor({ address: '/draft', number: 1, revision: 4, draft: theirs });
 		second.keepWith(keeper(store));
