@@ -4,6 +4,7 @@ import type { Grant } from '$lib/server/access/require-permission';
 import { items, type Item, type Level } from '$lib/server/access/visibility';
 import type { Database } from '$lib/server/db/client';
 import { lab, participant, person, recordEvent } from '$lib/server/db/schema';
+import { loadEventTags } from './load-event-tags';
 import { verifyChain } from './verify-chain';
 
 export type RecordRow = {
@@ -13,6 +14,8 @@ export type RecordRow = {
 	who: string;
 	what: string;
 	about: string | null;
+	/** What it counts as in the estimand, with the strategy; null: nothing declared. */
+	countsAs: string | null;
 };
 export type RecordPage = {
 	zone: string;
@@ -57,6 +60,10 @@ export async function loadRecord(
 		.orderBy(desc(recordEvent.seq))
 		.offset(total - newest)
 		.limit(pageSize);
+	const tags = await loadEventTags(
+		db,
+		rows.flatMap(({ event }) => event.participantId ?? [])
+	);
 	return {
 		zone: place?.zone ?? 'UTC',
 		rows: rows.map(({ event, actor, code }, index) => ({
@@ -64,7 +71,8 @@ export async function loadRecord(
 			atMs: event.at.getTime(),
 			who: actor ?? (event.actorKind === 'participant' ? 'a participant' : 'Ovalry'),
 			what: describeEvent(event.kind),
-			about: code
+			about: code,
+			countsAs: tags.get(event.seq) ?? null
 		})),
 		before: newest > pageSize ? newest - pageSize : null,
 		isWhole: (await verifyChain(db)).ok
