@@ -72,12 +72,16 @@ describe('trying a protocol', () => {
 	});
 
 	test('invented people walk the protocol, and dead ends are listed with their remedy', async () => {
-		await fill('People', '4');
-		await fill('Miss a visit', '40');
-		await press('Let 4 people walk it');
-		await ivy.page.getByText(/ of 4 finished/).waitFor();
+		await fill('People', '8');
+		await fill('Miss a visit', '60');
+		await press('Let 8 people walk it');
+		await ivy.page.getByText(/ of 8 finished/).waitFor();
 		const ends = ivy.page.getByRole('region', { name: 'Dead ends of the dry run' });
-		await ends.getByText('Declare a rule for missed days.').first().waitFor();
+		// The demo makes missed days up within 48 h: over a weekend that cannot be.
+		await ends
+			.getByText(/Allow more hours for making up|longer gap|weekdays/)
+			.first()
+			.waitFor();
 		await keepScreenshot(ivy.page, 'dry-run');
 	});
 
