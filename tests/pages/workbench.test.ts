@@ -76,13 +76,11 @@ describe('trying a protocol', () => {
 		await fill('Miss a visit', '60');
 		await press('Let 8 people walk it');
 		await ivy.page.getByText(/ of 8 finished/).waitFor();
-		const ends = ivy.page.getByRole('region', { name: 'Dead ends of the dry run' });
-		// The demo makes missed days up within 48 h: over a weekend that cannot be.
-		await ends
-			.getByText(/Allow more hours for making up|longer gap|weekdays/)
-			.first()
-			.waitFor();
 		await keepScreenshot(ivy.page, 'dry-run');
+		// The demo makes missed days up within 48 h: over a weekend that cannot be.
+		const ends = ivy.page.getByRole('table', { name: 'Dead ends of the dry run' });
+		const [, first] = await ends.getByRole('row').all();
+		expect(await first?.innerText()).toMatch(/Allow more hours|longer gap|weekdays|Declare/);
 	});
 
 	test('the exported protocol gets its verdicts from the command line', async () => {
