@@ -49,7 +49,7 @@ export function describeObstacle(
 ): string {
 	const label = plan.visits.find(({ number }) => number === visitNumber)?.label ?? '';
 	const most = blockedBy.slice(0, 2).map(({ rule }) => RULES[rule]);
-	return `${label || `Visit ${visitNumber}`} finds no place${most.length > 0 ? `: ${joinWords(most)} take the starts that its gap leaves` : ''}.`;
+	return `${label || `Visit ${visitNumber}`} finds no place${most.length > 0 ? `: ${joinWords(most)} ${most.length === 1 ? 'takes' : 'take'} the starts that its gap leaves` : ''}.`;
 }
 
 /** What would let the chain be, each alone; nothing known: a gap itself must change. */
