@@ -28,7 +28,10 @@ async function openLargeDraft(): Promise<void> {
 	const person = app.people.find(({ role }) => role === 'investigator');
 	await page.goto(`${app.origin}/demo`);
 	await page.getByRole('button', { name: `Enter as ${person?.name}` }).click();
-	await page.getByRole('link', { name: 'Protocol', exact: true }).first().click();
+	await page.waitForURL((url) => url.pathname !== '/demo');
+	const link = await page.locator('a[href*="/studies/"]').first().getAttribute('href');
+	const [study] = /\/studies\/[0-9a-f-]+/.exec(link ?? '') ?? [];
+	await page.goto(`${app.origin}${study}/protocol`);
 	await page
 		.getByRole('button', { name: /^Write version/ })
 		.first()
