@@ -116,7 +116,8 @@ describe('a yoked person', () => {
 		await decideAll();
 		const arms = await owner.db.select({ arm: allocation.arm }).from(allocation);
 		expect(arms.map(({ arm }) => arm).sort()).toEqual([...['adaptive', 'adaptive', 'yoked']]);
-		for (const code of masters) expect(await readDecision(code, 2)).toBeDefined();
+		const decided = await Promise.all(masters.map((code) => readDecision(code, 2)));
+		expect(decided.map((found) => found?.kind)).toEqual(['region', 'region']);
 		expect(await readDecision(partner, 2)).toBeUndefined();
 	});
 
@@ -144,13 +145,17 @@ describe('a yoked person', () => {
 		const pairs = await owner.db.select().from(yokedPair);
 		expect(pairs).toHaveLength(1);
 		expect(pairs[0]?.participantId).toBe(idOf(partner));
+		// NumPy on the first day's file: ½·ln det np.cov(scaled) and mean |error|, over their spreads
+		// (ddof 1) of the three: 2.1416518998 to Q11, 1.6871354242 to Q23.
+		expect(await findMaster()).toBe('Q23');
+		expect(pairs[0]?.distance).toBeCloseTo(1.6871354242, 6);
 		await expect(owner.db.update(yokedPair).set({ distance: 0 })).rejects.toThrow();
 		await expect(
 			app.db.insert(yokedPair).values({ ...pairs[0], participantId: idOf('Q23') } as never)
 		).rejects.toThrow();
 	});
 
-	it('waits, and then practises, when the master’s block is late', async () => {
+	it('waits for a master’s block that is late', async () => {
 		nowMs = start + 2 * dayMs + 9 * hourMs;
 		expect(await uploadDay(2, [partner])).toMatchObject({ ok: true });
 		nowMs = start + 3 * dayMs - 8 * hourMs;
